@@ -1,0 +1,24 @@
+//! The engine: from a recording and the reader's judgement to every number of the report.
+//!
+//! Pure by construction: no file, clock, environment, thread, randomness from outside, hash map or
+//! serialisation. Start at [`analyse::derive`].
+
+pub mod analyse;
+pub mod breaths;
+pub mod decisions;
+pub mod facts;
+pub mod fick;
+pub mod note;
+pub mod o2_pulse;
+pub mod predicted;
+pub mod quantity;
+pub mod reasoning;
+pub mod recording;
+pub mod results;
+pub mod settings;
+pub mod slopes;
+mod stage;
+pub mod thresholds;
+pub mod unit;
+
+pub use analyse::derive;
