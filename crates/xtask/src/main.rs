@@ -1,1 +1,20 @@
-fn main() {}
+//! `cargo xtask VERB`: the project's own chores.
+
+use std::process::ExitCode;
+
+const USAGE: &str = "cargo xtask VERB
+
+  ci      everything the repository checks without a display or outside data
+  tidy    rules of the tree: file sizes, banned words, stubs";
+
+fn main() -> ExitCode {
+    let args: Vec<String> = std::env::args().skip(1).collect();
+    match args.first().map(String::as_str) {
+        Some("ci") => xtask::ci::run(),
+        Some("tidy") => xtask::tidy::run(),
+        _ => {
+            eprintln!("{USAGE}");
+            ExitCode::from(2)
+        }
+    }
+}

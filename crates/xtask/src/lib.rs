@@ -1,0 +1,13 @@
+//! The project's own chores, as functions: each verb of `cargo xtask` is one module.
+
+pub mod ci;
+pub mod tidy;
+
+use std::path::PathBuf;
+
+/// The root of the repository.
+#[must_use]
+pub fn root() -> PathBuf {
+    let here = PathBuf::from(env!("CARGO_MANIFEST_DIR"));
+    here.ancestors().nth(2).map_or(here.clone(), PathBuf::from)
+}

@@ -1,0 +1,7 @@
+//! Checks that need something from outside the repository: open data, a display, a browser.
+//!
+//! They fail when it is missing; nothing here is skipped.
+
+mod browser;
+mod tools;
+mod window;
