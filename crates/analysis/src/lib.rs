@@ -4,12 +4,16 @@
 //! serialisation. Start at [`analyse::derive`].
 
 pub mod analyse;
+mod averaging;
 pub mod breaths;
+mod clean;
 pub mod decisions;
 pub mod facts;
 pub mod fick;
 pub mod note;
 pub mod o2_pulse;
+mod peak;
+mod phases;
 pub mod predicted;
 pub mod quantity;
 pub mod reasoning;
@@ -18,6 +22,7 @@ pub mod results;
 pub mod settings;
 pub mod slopes;
 mod stage;
+pub mod table;
 pub mod thresholds;
 pub mod unit;
 
