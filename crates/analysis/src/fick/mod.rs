@@ -1,10 +1,13 @@
 //! Stroke volume and extraction: what the O₂ pulse allows to be said.
 
+mod detail;
+
 use crate::stage::Stage;
 
-/// Chart data of the Fick reasoning.
-#[derive(Clone, Debug, Default, PartialEq)]
-pub struct FickDetail {}
+pub use detail::{
+    Bound, FactorRow, FactorTable, FickDetail, Model, Path, PathPoint, Ranged, RatePoint, Region,
+    ShuntStep, equal_pulse_sv,
+};
 
 /// Derives the Fick outcomes; runs after the course and the predictions.
 pub(crate) fn derive(_stage: &mut Stage<'_>) {}

@@ -1,10 +1,10 @@
 //! The course of the O₂ pulse over the ramp.
 
+mod detail;
+
 use crate::stage::Stage;
 
-/// Chart data of the course.
-#[derive(Clone, Debug, Default, PartialEq)]
-pub struct CourseDetail {}
+pub use detail::{Bin, Course, CourseDetail, CourseNumbers, CurvePoint, Estimate, Line, Onset};
 
 /// Derives the O₂-pulse course and magnitude outcomes.
 pub(crate) fn derive(_stage: &mut Stage<'_>) {}
