@@ -10,6 +10,7 @@ mod clean;
 pub mod decisions;
 pub mod facts;
 pub mod fick;
+pub mod model;
 pub mod note;
 pub mod o2_pulse;
 mod peak;
