@@ -154,7 +154,7 @@ mod tests {
     #[test]
     fn a_cough_is_clipped() {
         let t: Vec<f64> = (0..300).map(|i| 2.0 * f64::from(i)).collect();
-        let wiggle = |i: usize| if i % 2 == 0 { 10.0 } else { -10.0 };
+        let wiggle = |i: usize| if i.is_multiple_of(2) { 10.0 } else { -10.0 };
         let mut vo2: Vec<f64> = (0..300).map(|i| 1500.0 + wiggle(i)).collect();
         vo2[200] = 4000.0;
         let hr = vec![120.0; 300];

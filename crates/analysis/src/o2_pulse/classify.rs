@@ -60,7 +60,7 @@ struct Parts {
 /// `load-not-rising`, `course-not-fitted`.
 pub fn classify(input: &CourseInput<'_>) -> Result<CourseDetail, Note> {
     let ramp_s = input.load_end_s - input.ramp_start_s;
-    if !(ramp_s >= SHORTEST_RAMP_S) {
+    if ramp_s.is_nan() || ramp_s < SHORTEST_RAMP_S {
         return Err(Note::new("ramp-too-short").with("duration", Arg::Duration(ramp_s.max(0.0))));
     }
     let parts = prepare(input)?;
@@ -101,7 +101,7 @@ fn prepare(input: &CourseInput<'_>) -> Result<Parts, Note> {
     };
     let (vo2, hr) =
         (fit(Variable::Vo2, &vo2, &binned.vo2_level)?, fit(Variable::Hr, &hr, &binned.hr_level)?);
-    if vo2.curve.iter().chain(&hr.curve).any(|x| !(*x > 0.0)) {
+    if vo2.curve.iter().chain(&hr.curve).any(|x| x.is_nan() || *x <= 0.0) {
         return Err(Note::new("course-not-fitted"));
     }
     let minutes = binned.bins.iter().map(|b| b.t_s / 60.0).collect();
@@ -278,7 +278,8 @@ fn decide(numbers: &CourseNumbers) -> Course {
 /// The onset is given only above the upper line and where the evidence is for a real loss of slope.
 fn onset(course: Course, evidence: &bayes::Evidence, end_s: f64) -> Option<Onset> {
     let (near, far) = evidence.onset_set_min;
-    (course.is_flat_or_falling() && evidence.ratio <= 0.5 && far - near <= 2.0).then(|| Onset {
+    let strict = course.is_flat_or_falling() && evidence.ratio <= 0.5 && far - near <= 2.0;
+    strict.then_some(Onset {
         t_s: end_s - 60.0 * evidence.onset_min,
         set_s: Interval { low: end_s - 60.0 * far, high: end_s - 60.0 * near },
         before_end_min: evidence.onset_min,

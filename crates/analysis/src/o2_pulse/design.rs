@@ -59,7 +59,9 @@ pub(crate) fn design(load: &Trace, start_s: f64, end_s: f64, bins: &[Bin]) -> Op
     let raw: Vec<f64> = (0..seconds)
         .map(|i| {
             let t = (origin + i as f64).min(end_s);
-            if load.t_s.is_empty() { (t - start_s).max(0.0) } else { load.at(t).unwrap_or(0.0) }
+            // Before its first point the trace is taken as its first value.
+            let held = || load.at(t).or_else(|| load.value.first().copied()).unwrap_or(0.0);
+            if load.t_s.is_empty() { (t - start_s).max(0.0) } else { held() }
         })
         .collect();
     let lag = bin_means(&lagged(raw.iter().copied()), origin, bins);
