@@ -123,6 +123,17 @@ impl Breaths {
         self.columns.get(&quantity).is_some_and(|c| c.iter().any(Option::is_some))
     }
 
+    /// The same breaths with only the columns of `quantities`.
+    #[must_use]
+    pub fn only(&self, quantities: &[Quantity]) -> Self {
+        let columns = self.columns.iter().filter(|(q, _)| quantities.contains(q));
+        Self {
+            end_s: self.end_s.clone(),
+            duration_s: self.duration_s.clone(),
+            columns: columns.map(|(q, c)| (*q, c.clone())).collect(),
+        }
+    }
+
     /// The same table without the column of `quantity`.
     #[must_use]
     pub fn without(&self, quantity: Quantity) -> Self {

@@ -5,15 +5,20 @@ use std::ops::Range;
 
 use crate::breaths::{Breaths, Column};
 use crate::decisions::Exclusion;
+use crate::errant;
 use crate::facts::{Event, EventKind};
 use crate::note::{Arg, Note};
 use crate::quantity::Quantity;
 use crate::recording::{Recording, RowKind};
-use crate::results::{BreathFlag, FlagKind};
+use crate::results::{BreathFlag, FlagKind, Phases};
+use crate::unit::Unit;
 
 /// Time kept out around an inspiratory-capacity manoeuvre, s before and after its instant (common
 /// practice: the manoeuvre and the breath that follows it).
 const MANOEUVRE_S: (f64, f64) = (5.0, 10.0);
+
+/// Share of errant breaths that is a loud doubt.
+const MANY_ERRANT: f64 = 0.05;
 
 /// The quantities that a gas analyser holds from breath to breath.
 const GAS: [Quantity; 5] =
@@ -22,6 +27,8 @@ const GAS: [Quantity; 5] =
 /// Breaths to work with, and the marks on those of the file.
 pub(crate) struct Cleaned {
     pub breaths: Breaths,
+    /// Rows of the file behind each breath.
+    rows: Vec<Range<usize>>,
     pub flags: Vec<BreathFlag>,
 }
 
@@ -43,7 +50,52 @@ pub(crate) fn clean(recording: &Recording, excluded: &[Exclusion], events: &[Eve
             None => kept.push(group),
         }
     }
-    Cleaned { breaths: regroup(raw, &kept), flags }
+    Cleaned { breaths: regroup(raw, &kept), rows: kept, flags }
+}
+
+/// Merges errant breaths with the next two, looking within rest and warm-up, the increments and
+/// recovery by themselves.
+pub(crate) fn merge_errant(
+    cleaned: Cleaned,
+    phases: &Phases,
+    k: f64,
+    doubts: &mut Vec<Note>,
+) -> Cleaned {
+    let stretches = stretches(phases, &cleaned.breaths);
+    let errant = errant::flag(&cleaned.breaths, &stretches, k);
+    let count = errant.iter().filter(|e| **e).count();
+    if count == 0 {
+        return cleaned;
+    }
+    let share = count as f64 / errant.len() as f64;
+    if share > MANY_ERRANT {
+        let share = Arg::Number(100.0 * share, Unit::Percent);
+        doubts.push(Note::new("many-errant-breaths").with("share", share));
+    }
+    let groups = errant::groups(&cleaned.breaths, &errant, &stretches);
+    let mut flags = cleaned.flags;
+    for group in groups.iter().filter(|g| errant[g.start]) {
+        for i in group.clone() {
+            let code = if errant[i] { "breath-errant" } else { "breath-merged-with-errant" };
+            flags.extend(cleaned.rows[i].clone().map(|breath| BreathFlag {
+                breath,
+                kind: FlagKind::Merged,
+                note: Note::new(code),
+            }));
+        }
+    }
+    let rows = groups.iter().map(|g| cleaned.rows[g.start].start..cleaned.rows[g.end - 1].end);
+    let rows = rows.collect();
+    Cleaned { breaths: regroup(&cleaned.breaths, &groups), rows, flags }
+}
+
+/// Stretches within which errant breaths are looked for.
+fn stretches(phases: &Phases, breaths: &Breaths) -> Vec<(f64, f64)> {
+    let end = breaths.end_s().last().copied().unwrap_or(0.0);
+    match phases.ramp() {
+        None => vec![(f64::MIN, end)],
+        Some((from, to)) => vec![(f64::MIN, from), (from, to), (to, end)],
+    }
 }
 
 fn taken_out(t_s: f64, excluded: &[Exclusion], events: &[Event]) -> Option<(FlagKind, Note)> {

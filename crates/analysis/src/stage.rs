@@ -6,7 +6,8 @@ use crate::decisions::{Decisions, Phase};
 use crate::facts::Facts;
 use crate::note::Note;
 use crate::quantity::Quantity;
-use crate::recording::Recording;
+use crate::ramp_series::RampSeries;
+use crate::recording::{Recording, RowKind};
 use crate::results::{At, LoadShape, Outcome, Results};
 use crate::settings::Settings;
 
@@ -20,6 +21,10 @@ pub(crate) struct Stage<'a> {
     pub breaths: Breaths,
     /// Means of these breaths over any window.
     pub means: Means,
+    /// Series of the increments for every fit; `None` without increments.
+    pub ramp_series: Option<RampSeries>,
+    /// Whether breathing oscillates.
+    pub oscillating: bool,
     /// What is known so far.
     pub results: Results,
 }
@@ -97,5 +102,36 @@ impl Stage<'_> {
     /// The first of `needed` that the recording lacks, as a reason.
     pub fn missing(&self, needed: &[Quantity]) -> Option<Note> {
         needed.iter().find(|q| !self.recording.has(**q)).map(|q| Note::missing_channel(*q))
+    }
+
+    /// Whether intervals of *this recording* stand: breaths, and no oscillation.
+    pub fn intervals_hold(&self) -> bool {
+        !self.oscillating && !matches!(self.recording.row_kind, RowKind::Averaged { .. })
+    }
+
+    /// Says on `outcome` why its interval is missing or weaker.
+    pub fn doubt_interval(&self, mut outcome: Outcome) -> Outcome {
+        if outcome.value.is_none() {
+            return outcome;
+        }
+        if self.oscillating {
+            outcome.doubts.push(Note::new("no-interval-oscillation"));
+        } else if matches!(self.recording.row_kind, RowKind::Averaged { .. }) {
+            outcome.doubts.push(Note::new("no-interval-averaged-table"));
+        } else if self.ramp_series.as_ref().is_some_and(|s| s.pre_smoothed) {
+            outcome.doubts.push(Note::new("pre-smoothed-export"));
+        }
+        outcome
+    }
+
+    /// Middle times and values of `quantity` of the whole breaths inside `window`.
+    pub fn points(&self, quantity: Quantity, window: (f64, f64)) -> (Vec<f64>, Vec<f64>) {
+        let (end, d) = (self.breaths.end_s(), self.breaths.duration_s());
+        let from = end.partition_point(|e| *e <= window.0);
+        let to = end.partition_point(|e| *e <= window.1).max(from);
+        (from..to)
+            .filter(|i| end[*i] - d[*i] >= window.0)
+            .filter_map(|i| Some((self.breaths.mid_s(i), self.breaths.value(quantity, i)?)))
+            .unzip()
     }
 }
