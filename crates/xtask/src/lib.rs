@@ -1,6 +1,7 @@
 //! The project's own chores, as functions: each verb of `cargo xtask` is one module.
 
 pub mod ci;
+pub mod demo;
 pub mod tidy;
 
 use std::path::PathBuf;

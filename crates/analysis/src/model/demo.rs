@@ -41,11 +41,12 @@ pub fn case(name: &str) -> Option<&'static Case> {
 
 fn kittiwake() -> Plan {
     let mut p = Plan::healthy(20_101);
-    p.schedule.ramp_s = 570.0;
+    p.schedule.w_per_min = 15.0;
+    p.schedule.ramp_s = 625.0;
     p.metabolism.vo2_rest = 225.0;
     p.metabolism.vo2_unloaded = 500.0;
-    p.metabolism.vt1_vo2 = 1250.0;
-    p.ventilation.vt2_vo2 = Some(1820.0);
+    p.metabolism.vt1_vo2 = 1060.0;
+    p.ventilation.vt2_vo2 = Some(1590.0);
     p.ventilation.vt_rest = 0.55;
     p.ventilation.vt_max = 2.0;
     p.circulation.hr_peak = 181.0;
@@ -61,7 +62,7 @@ fn dunlin() -> Plan {
     p.metabolism.vt1_vo2 = 1190.0;
     p.ventilation.vt2_vo2 = Some(1840.0);
     p.ventilation.vt_max = 2.2;
-    p.ventilation.slope = 24.5;
+    p.ventilation.slope = 25.5;
     p.circulation.hr_rest = 70.0;
     p.circulation.hr_unloaded = 82.0;
     p.circulation.hr_peak = 146.0;
@@ -134,7 +135,9 @@ fn knot() -> Plan {
     p.metabolism.gain = 8.6;
     p.metabolism.vt1_vo2 = 690.0;
     p.ventilation.vt2_vo2 = None;
-    p.ventilation.intercept = 4.0;
+    p.ventilation.intercept = 3.5;
+    p.ventilation.dead_space = 0.2;
+    p.ventilation.dead_space_share = 0.14;
     p.ventilation.slope = 36.0;
     p.ventilation.vt_max = 1.5;
     p.ventilation.pet_gap_rise = -1.5;
@@ -159,16 +162,16 @@ fn bittern() -> Plan {
     p.metabolism.vt1_vo2 = 980.0;
     p.metabolism.v_slope_rise = 0.22;
     p.ventilation.vt2_vo2 = None;
-    p.ventilation.intercept = 6.0;
-    p.ventilation.slope = 29.0;
+    p.ventilation.intercept = 4.8;
+    p.ventilation.slope = 30.0;
     p.ventilation.ceiling = 45.0;
     p.ventilation.vt_rest = 0.68;
     p.ventilation.vt_max = 1.35;
-    p.ventilation.dead_space = 0.2;
-    p.ventilation.dead_space_share = 0.2;
+    p.ventilation.dead_space = 0.22;
+    p.ventilation.dead_space_share = 0.22;
     p.ventilation.eelv = 4.6;
-    p.ventilation.pet_gap_rest = -4.0;
-    p.ventilation.pet_gap_rise = -1.0;
+    p.ventilation.pet_gap_rest = -3.0;
+    p.ventilation.pet_gap_rise = -2.0;
     p.circulation.hr_rest = 82.0;
     p.circulation.hr_unloaded = 98.0;
     p.circulation.hr_peak = 134.0;
@@ -202,6 +205,8 @@ fn avocet() -> Plan {
     p.metabolism.vt1_vo2 = 760.0;
     p.ventilation.vt2_vo2 = Some(1000.0);
     p.ventilation.intercept = 3.5;
+    p.ventilation.dead_space = 0.21;
+    p.ventilation.dead_space_share = 0.12;
     p.ventilation.slope = 35.0;
     p.ventilation.vt2_factor = 1.25;
     p.ventilation.vt_max = 1.7;
@@ -227,8 +232,8 @@ fn plover() -> Plan {
     p.ventilation.intercept = 4.0;
     p.ventilation.slope = 42.0;
     p.ventilation.vt_max = 1.6;
-    p.ventilation.dead_space = 0.17;
-    p.ventilation.dead_space_share = 0.18;
+    p.ventilation.dead_space = 0.19;
+    p.ventilation.dead_space_share = 0.25;
     p.ventilation.pet_gap_rest = -3.0;
     p.ventilation.pet_gap_rise = -4.0;
     p.circulation.hr_rest = 84.0;
@@ -248,7 +253,7 @@ fn wagtail() -> Plan {
     p.metabolism.vo2_unloaded = 510.0;
     p.metabolism.vt1_vo2 = 1150.0;
     p.ventilation.vt2_vo2 = Some(1620.0);
-    p.ventilation.anticipation = 0.3;
+    p.ventilation.anticipation = 0.22;
     p.ventilation.slope = 26.0;
     p.ventilation.vt_max = 1.8;
     p.circulation.hr_rest = 86.0;

@@ -175,8 +175,8 @@ impl Plan {
                 let excess = (self.muscle_vco2(v_end) - 0.86 * v_end).max(0.0);
                 let dt = (i - end) as f64;
                 0.86 * vo2[i]
-                    + excess * libm::exp(-dt / 190.0)
-                    + 0.04 * v_end * dt / 40.0 * libm::exp(-dt / 55.0)
+                    + excess * libm::exp(-dt / 150.0)
+                    + 0.022 * v_end * dt / 40.0 * libm::exp(-dt / 55.0)
             })
             .collect();
         let mut out = lagged(&steady, m.vco2_lag_s);
