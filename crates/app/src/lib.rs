@@ -1,1 +1,4 @@
 //! placeholder
+pub mod describe;
+pub mod headless;
+pub mod picture;

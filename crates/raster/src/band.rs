@@ -1,11 +1,12 @@
 //! One horizontal strip of the target: everything that touches it, in painting order.
 
+use egui::Rect;
 use egui::epaint::{Mesh, Primitive, Vertex};
-use egui::{ClippedPrimitive, Rect};
 
-use crate::blend::modulate;
+use crate::blend::{modulate, pack};
 use crate::canvas::PixelRect;
 use crate::guard;
+use crate::paint::Frame;
 use crate::quad::Quad;
 use crate::setup::Corner;
 use crate::shade::{Gradient, Textured, solid};
@@ -35,8 +36,15 @@ struct Job<'a> {
 
 impl Band<'_> {
     /// Paints all primitives, in order.
-    pub fn paint(&mut self, primitives: &[ClippedPrimitive], textures: &Textures, scale: f32) {
-        for primitive in primitives {
+    pub fn paint(&mut self, frame: &Frame<'_>, textures: &Textures) {
+        if let Some(colour) = frame.background {
+            self.clear(pack(colour));
+        }
+        let scale = frame.pixels_per_point;
+        if !scale.is_finite() || scale <= 0.0 {
+            return;
+        }
+        for primitive in frame.primitives {
             let Primitive::Mesh(mesh) = &primitive.primitive else {
                 continue; // a callback into a graphics card: there is none
             };
@@ -49,6 +57,12 @@ impl Band<'_> {
             }
             let reach = ((clip.y0 as f32 - 1.0) / scale, (clip.y1 as f32 + 1.0) / scale);
             self.mesh(&Job { mesh, texture, clip, scale, reach });
+        }
+    }
+
+    fn clear(&mut self, colour: u32) {
+        for row in self.pixels.chunks_exact_mut(self.width) {
+            row[self.damage.x0..self.damage.x1].fill(colour);
         }
     }
 

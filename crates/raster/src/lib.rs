@@ -29,4 +29,4 @@ mod triangle;
 mod tests;
 
 pub use canvas::{Canvas, PixelRect, Target};
-pub use paint::Rasteriser;
+pub use paint::{Frame, Rasteriser};

@@ -2,7 +2,7 @@
 
 use std::sync::Mutex;
 
-use egui::{ClippedPrimitive, Context, TexturesDelta};
+use egui::{ClippedPrimitive, Color32, Context, TexturesDelta};
 
 use crate::band::Band;
 use crate::canvas::{Canvas, PixelRect, Target};
@@ -12,6 +12,28 @@ use crate::texture::Textures;
 const STRIPS: usize = 4;
 /// Smaller strips cost more in skipped triangles than they gain.
 const LEAST_ROWS: usize = 32;
+
+/// What to paint, and how.
+pub struct Frame<'a> {
+    /// Tessellated shapes, in points.
+    pub primitives: &'a [ClippedPrimitive],
+    /// Pixels per point.
+    pub pixels_per_point: f32,
+    /// Colour to start from; `None` paints over what is there.
+    pub background: Option<Color32>,
+    /// The only pixels that may change; `None` means all.
+    pub damage: Option<PixelRect>,
+    /// Greatest number of threads. It never shows in the picture.
+    pub threads: usize,
+}
+
+impl<'a> Frame<'a> {
+    /// A frame over what is there, in full, on one thread.
+    #[must_use]
+    pub fn new(primitives: &'a [ClippedPrimitive], pixels_per_point: f32) -> Self {
+        Self { primitives, pixels_per_point, background: None, damage: None, threads: 1 }
+    }
+}
 
 /// Paints egui's output; owns the textures that came with earlier frames.
 #[derive(Default)]
@@ -36,26 +58,18 @@ impl Rasteriser {
         self.textures.free(delta);
     }
 
-    /// Paints over `target`, on up to `threads` threads.
+    /// Paints a frame on `target`.
     ///
-    /// `primitives` are in points, `pixels_per_point` turns them into pixels. Pixels outside
-    /// `damage` (if given) stay as they are. The result does not depend on `threads`. Meshes whose
-    /// texture is missing, paint callbacks, and a scale that is not positive paint nothing.
-    pub fn paint(
-        &self,
-        target: &mut Target<'_>,
-        primitives: &[ClippedPrimitive],
-        pixels_per_point: f32,
-        damage: Option<PixelRect>,
-        threads: usize,
-    ) {
-        let area = damage.map_or(target.bounds(), |damage| damage.intersect(target.bounds()));
-        let scale_is_usable = pixels_per_point.is_finite() && pixels_per_point > 0.0;
-        if area.is_empty() || !scale_is_usable {
+    /// Meshes whose texture is missing, paint callbacks, and everything at a scale that is not a
+    /// positive number paint nothing.
+    pub fn paint(&self, target: &mut Target<'_>, frame: &Frame<'_>) {
+        let bounds = target.bounds();
+        let area = frame.damage.map_or(bounds, |damage| damage.intersect(bounds));
+        if area.is_empty() {
             return;
         }
         let width = target.width;
-        let threads = threads.max(1);
+        let threads = frame.threads.max(1);
         let rows = (area.y1 - area.y0).div_ceil(threads * STRIPS).max(LEAST_ROWS);
         let strips = target.pixels[area.y0 * width..area.y1 * width].chunks_mut(rows * width);
         let work = Mutex::new(strips.enumerate());
@@ -69,7 +83,7 @@ impl Rasteriser {
                 let bottom = top + pixels.len() / width;
                 let damage = PixelRect { y0: top, y1: bottom, ..area };
                 let mut band = Band { pixels, width, top, damage };
-                band.paint(primitives, &self.textures, pixels_per_point);
+                band.paint(frame, &self.textures);
             }
         };
         std::thread::scope(|scope| {
@@ -94,7 +108,8 @@ impl Rasteriser {
         let scale = output.pixels_per_point;
         let primitives = ctx.tessellate(std::mem::take(&mut output.shapes), scale);
         let mut canvas = Canvas::new(size[0], size[1], background);
-        self.paint(&mut canvas.target(), &primitives, scale, None, threads);
+        let frame = Frame { threads, ..Frame::new(&primitives, scale) };
+        self.paint(&mut canvas.target(), &frame);
         self.free_textures(&mut output.textures_delta);
         canvas
     }

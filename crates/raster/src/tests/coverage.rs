@@ -3,7 +3,7 @@
 use egui::{Color32, Rect, pos2};
 
 use super::{clipped, mesh, paint, painted, vertex, white};
-use crate::{Canvas, PixelRect};
+use crate::{Canvas, Frame, PixelRect};
 
 #[test]
 fn a_triangle_owns_the_pixels_whose_centres_lie_inside() {
@@ -116,11 +116,14 @@ fn clip_rectangles_round_to_whole_pixels_and_damage_limits_the_change() {
     let clip = Rect::from_min_max(pos2(1.4, 0.0), pos2(4.6, 2.0));
     let mut canvas = Canvas::new(8, 2, Color32::BLACK);
     let primitives = [clipped(all, clip)];
-    white().paint(&mut canvas.target(), &primitives, 1.0, None, 1);
+    white().paint(&mut canvas.target(), &Frame::new(&primitives, 1.0));
     assert_eq!(painted(&canvas, 0), [1, 2, 3, 4]);
     let mut canvas = Canvas::new(8, 2, Color32::BLACK);
     let damage = PixelRect { x0: 2, y0: 1, x1: 4, y1: 2 };
-    white().paint(&mut canvas.target(), &primitives, 1.0, Some(damage), 1);
+    white().paint(
+        &mut canvas.target(),
+        &Frame { damage: Some(damage), ..Frame::new(&primitives, 1.0) },
+    );
     assert!(painted(&canvas, 0).is_empty());
     assert_eq!(painted(&canvas, 1), [2, 3]);
 }
@@ -133,7 +136,7 @@ fn points_scale_to_pixels() {
     let primitives =
         [clipped(mesh(square.map(|(x, y)| vertex(x, y, w)).to_vec()), Rect::EVERYTHING)];
     let mut canvas = Canvas::new(6, 6, Color32::BLACK);
-    white().paint(&mut canvas.target(), &primitives, 2.0, None, 1);
+    white().paint(&mut canvas.target(), &Frame::new(&primitives, 2.0));
     assert!(painted(&canvas, 1).is_empty());
     assert_eq!(painted(&canvas, 2), [2, 3]);
     assert_eq!(painted(&canvas, 3), [2, 3]);

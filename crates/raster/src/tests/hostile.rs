@@ -5,7 +5,7 @@ use egui::{Color32, ColorImage, Rect, TextureId, TextureOptions, TexturesDelta, 
 use proptest::prelude::*;
 
 use super::{FONT, clipped, mesh, vertex, white, with_texture};
-use crate::{Canvas, PixelRect, Rasteriser, Target};
+use crate::{Canvas, Frame, PixelRect, Rasteriser, Target};
 
 /// Mostly coordinates near the picture, sometimes ones that no screen has.
 fn coordinate() -> impl Strategy<Value = f32> {
@@ -62,9 +62,9 @@ proptest! {
         let primitives: Vec<_> = meshes.into_iter().map(|(mesh, clip)| clipped(mesh, clip)).collect();
         let rasteriser = speckled();
         let mut one = Canvas::new(size[0], size[1], Color32::GRAY);
-        rasteriser.paint(&mut one.target(), &primitives, scale, None, 1);
+        rasteriser.paint(&mut one.target(), &Frame::new(&primitives, scale));
         let mut many = Canvas::new(size[0], size[1], Color32::GRAY);
-        rasteriser.paint(&mut many.target(), &primitives, scale, None, threads);
+        rasteriser.paint(&mut many.target(), &Frame { threads, ..Frame::new(&primitives, scale) });
         prop_assert_eq!(one.pixels(), many.pixels());
     }
 
@@ -77,12 +77,12 @@ proptest! {
         let primitives: Vec<_> = meshes.into_iter().map(|mesh| clipped(mesh, Rect::EVERYTHING)).collect();
         let rasteriser = speckled();
         let mut whole = Canvas::new(50, 50, Color32::GRAY);
-        rasteriser.paint(&mut whole.target(), &primitives, 1.0, None, 1);
+        rasteriser.paint(&mut whole.target(), &Frame::new(&primitives, 1.0));
         let mut pieces = Canvas::new(50, 50, Color32::GRAY);
         for (x0, x1) in [(0, x), (x, 50)] {
             for (y0, y1) in [(0, y), (y, 50)] {
                 let part = PixelRect { x0, y0, x1, y1 };
-                rasteriser.paint(&mut pieces.target(), &primitives, 1.0, Some(part), 2);
+                rasteriser.paint(&mut pieces.target(), &Frame { damage: Some(part), threads: 2, ..Frame::new(&primitives, 1.0) });
             }
         }
         // A span cut at a piece's border starts anew from its exact value, so a channel may round
@@ -108,7 +108,7 @@ proptest! {
         let (whole, uv) = (Rect::from_min_max(pos2(0., 0.), pos2(9., 9.)), Rect::from_min_max(pos2(-1., -1.), pos2(2., 2.)));
         rectangle.add_rect_with_uv(whole, uv, Color32::WHITE);
         let mut canvas = Canvas::new(9, 9, Color32::BLACK);
-        rasteriser.paint(&mut canvas.target(), &[clipped(rectangle, whole)], 1.0, None, 1);
+        rasteriser.paint(&mut canvas.target(), &Frame::new(&[clipped(rectangle, whole)], 1.0));
         prop_assert_eq!(canvas.pixel(0, 0).map(|p| p[3]), Some(255));
     }
 }
@@ -121,7 +121,7 @@ fn a_picture_16384_pixels_wide_is_painted_to_its_last_column() {
     let primitives =
         [clipped(mesh(corners.map(|(x, y, c)| vertex(x, y, c)).to_vec()), Rect::EVERYTHING)];
     let mut canvas = Canvas::new(16384, 2, Color32::RED);
-    white().paint(&mut canvas.target(), &primitives, 1.0, None, 2);
+    white().paint(&mut canvas.target(), &Frame { threads: 2, ..Frame::new(&primitives, 1.0) });
     // 255·(x + ½)/16384: 127.5 + 1/128 -> 128 in the middle, 254.99 -> 255 at the end.
     for (x, level) in [(0, 0), (8192, 128), (16383, 255)] {
         assert_eq!(canvas.pixel(x, 1), Some([level, level, level, 255]), "column {x}");
@@ -147,7 +147,7 @@ fn a_missing_texture_leaves_the_picture_alone() {
     nothing.texture_id = TextureId::User(7);
     let mut canvas = Canvas::new(4, 4, Color32::BLACK);
     let before = canvas.clone();
-    white().paint(&mut canvas.target(), &[clipped(nothing, Rect::EVERYTHING)], 1.0, None, 1);
+    white().paint(&mut canvas.target(), &Frame::new(&[clipped(nothing, Rect::EVERYTHING)], 1.0));
     assert_eq!(canvas, before);
     assert_eq!(FONT, TextureId::default());
 }

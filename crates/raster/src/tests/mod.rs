@@ -7,7 +7,7 @@ mod texturing;
 use egui::epaint::{ClippedPrimitive, ImageData, ImageDelta, Mesh, Primitive, Vertex};
 use egui::{Color32, ColorImage, Rect, TextureId, TextureOptions, TexturesDelta, pos2};
 
-use crate::{Canvas, Rasteriser};
+use crate::{Canvas, Frame, Rasteriser};
 
 /// The texture egui keeps its white texel and its glyphs in.
 const FONT: TextureId = TextureId::Managed(0);
@@ -40,7 +40,7 @@ fn paint(meshes: Vec<Mesh>, size: [usize; 2]) -> Canvas {
     let primitives: Vec<_> =
         meshes.into_iter().map(|mesh| clipped(mesh, Rect::EVERYTHING)).collect();
     let mut canvas = Canvas::new(size[0], size[1], Color32::BLACK);
-    white().paint(&mut canvas.target(), &primitives, 1.0, None, 1);
+    white().paint(&mut canvas.target(), &Frame::new(&primitives, 1.0));
     canvas
 }
 

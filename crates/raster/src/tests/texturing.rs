@@ -4,7 +4,7 @@ use egui::epaint::{ImageData, ImageDelta, Mesh, Vertex};
 use egui::{Color32, ColorImage, Rect, TextureOptions, TexturesDelta, pos2, vec2};
 
 use super::{FONT, clipped, with_texture};
-use crate::{Canvas, Rasteriser};
+use crate::{Canvas, Frame, Rasteriser};
 
 /// 4 × 2 texels: a white one for plain shapes, then coverages 0, 64, 128 and so on.
 fn glyphs() -> ColorImage {
@@ -21,7 +21,7 @@ fn glyph(at: [f32; 2], size: [f32; 2], uv: Rect, colour: Color32) -> Mesh {
 fn show(rasteriser: &Rasteriser, mesh: Mesh, size: [usize; 2]) -> Canvas {
     let mut canvas = Canvas::new(size[0], size[1], Color32::BLACK);
     let primitives = [clipped(mesh, Rect::EVERYTHING)];
-    rasteriser.paint(&mut canvas.target(), &primitives, 1.0, None, 1);
+    rasteriser.paint(&mut canvas.target(), &Frame::new(&primitives, 1.0));
     canvas
 }
 

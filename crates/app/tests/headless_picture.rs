@@ -1,0 +1,31 @@
+//! The picture of a small interface, painted through the test harness and without it.
+
+mod support;
+
+use app::headless::{Headless, Screen};
+use egui_kittest::Harness;
+
+fn ui(ui: &mut egui::Ui) {
+    egui::CentralPanel::default().show(ui, |ui| {
+        ui.heading("Ramp 20 W/min");
+        ui.add(egui::Slider::new(&mut 30.0, 0.0..=60.0).text("averaging"));
+    });
+}
+
+#[test]
+fn the_harness_and_the_headless_window_paint_the_same_picture() {
+    let mut harness = Harness::builder()
+        .with_size([300.0, 120.0])
+        .with_theme(egui::Theme::Dark)
+        .renderer(support::CpuRenderer::default())
+        .build_ui(ui);
+    harness.run();
+    let tested = harness.render().expect("paints");
+    let screen = Screen { width: 300, height: 120, scale: 1.0, theme: egui::Theme::Dark };
+    let mut headless = Headless::new(screen, |_| {});
+    let mut output = headless.settle(ui);
+    let picture = headless.paint(&mut output, 2);
+    assert_eq!(tested.into_raw(), picture.to_rgba());
+    let colours: std::collections::BTreeSet<_> = picture.pixels().iter().collect();
+    assert!(colours.len() > 20, "text and slider have smooth edges");
+}
