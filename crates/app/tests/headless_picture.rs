@@ -16,7 +16,8 @@ fn setup(ctx: &egui::Context) {
 }
 
 fn ui(ui: &mut egui::Ui) {
-    egui::CentralPanel::default().show(ui, |ui| {
+    // At a fixed place, because the harness puts a margin around what it is given.
+    egui::Area::new(egui::Id::unique("test")).fixed_pos([20.0, 10.0]).show(ui.ctx(), |ui| {
         ui.heading("Ramp 20 W/min");
         ui.add(egui::Slider::new(&mut 30.0, 0.0..=60.0).text("averaging"));
     });
