@@ -19,6 +19,7 @@ use crate::quantity::Quantity;
 use crate::results::{FlagKind, Note};
 use crate::stage::Stage;
 
+pub(crate) use bayes::normal_cdf;
 pub use classify::{
     CourseInput, FEWEST_LATE_BREATHS, LATE_S, LINE_LOWER, LINE_UPPER, SHORTEST_RAMP_S, classify,
     vo2_fell_late,

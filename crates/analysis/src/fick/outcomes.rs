@@ -1,0 +1,175 @@
+//! Outcomes of the Fick reasoning, each under the name of its assumption.
+
+use super::bound::spo2_error;
+use super::detail::{FickDetail, Model, Ranged};
+use super::{deficit_at_peak, spo2_usable};
+use crate::quantity::Quantity;
+use crate::results::{At, Interval, Kind, Note, Outcome};
+use crate::stage::Stage;
+use crate::unit::Unit;
+
+/// Everything, absent ones with their reason.
+pub(crate) fn all(stage: &Stage<'_>, detail: &FickDetail) -> Vec<Outcome> {
+    let mut outcomes = vec![forward_bound(stage, detail), arterial(stage, detail)];
+    outcomes.extend(changes(stage, detail));
+    outcomes.push(rate(stage));
+    outcomes.push(content_share(stage));
+    outcomes.push(shunt(stage, detail));
+    outcomes
+}
+
+fn withheld(detail: &FickDetail) -> Option<Note> {
+    detail.withheld.first().cloned()
+}
+
+fn forward_bound(stage: &Stage<'_>, detail: &FickDetail) -> Outcome {
+    let (id, method, unit) = ("fick-forward-sv-bound", "cautious-inputs", Unit::Millilitre);
+    let reason = withheld(detail).or_else(|| detail.no_bound.clone());
+    match (&detail.bound, reason) {
+        (Some(bound), None) => {
+            let outcome = Outcome::quantity(id, At::Peak, method, unit, bound.stroke_volume);
+            let outcome = match stage.peak_window() {
+                Some(window) => outcome.based_on(window, stage.breaths_in(window)),
+                None => outcome,
+            };
+            bound.assumptions.iter().cloned().fold(outcome, Outcome::doubting)
+        }
+        (_, reason) => {
+            let reason = reason.unwrap_or_else(|| stage.no_ramp());
+            Outcome::absent(id, At::Peak, method, reason).in_unit(unit)
+        }
+    }
+}
+
+fn arterial(stage: &Stage<'_>, detail: &FickDetail) -> Outcome {
+    let (id, method, unit) = ("fick-arterial-content", "hb-and-saturation", Unit::MlPerDl);
+    let absent = |reason| Outcome::absent(id, At::Peak, method, reason).in_unit(unit);
+    if let Some(reason) = withheld(detail) {
+        return absent(reason);
+    }
+    if !detail.hb_stated {
+        return absent(Note::missing_fact("hb"));
+    }
+    match detail.arterial_content {
+        Some(band) => {
+            let outcome = Outcome::quantity(id, At::Peak, method, unit, band.low);
+            if spo2_usable(stage) {
+                outcome
+            } else {
+                outcome.doubting(Note::new("saturation-assumed"))
+            }
+        }
+        None => absent(stage.no_ramp()),
+    }
+}
+
+/// Changes of stroke volume and extraction between the two points: A1 is the primary row only
+/// because one must be; the rows are read together.
+fn changes(stage: &Stage<'_>, detail: &FickDetail) -> Vec<Outcome> {
+    let unit = Unit::Percent;
+    let ids = ["fick-sv-change", "fick-extraction-change"];
+    let Some(table) = &detail.table else {
+        let course = stage.results.course.as_ref().and_then(|c| c.withheld.first().cloned());
+        let reason = withheld(detail)
+            .or(course)
+            .or_else(|| reason_of(stage, "o2-pulse-course"))
+            .unwrap_or_else(|| stage.no_ramp());
+        return ids
+            .map(|id| Outcome::absent(id, At::Ramp, "a1", reason.clone()).in_unit(unit))
+            .to_vec();
+    };
+    let mut outcomes = Vec::new();
+    for row in &table.rows {
+        for (id, value) in ids.iter().zip([row.stroke_volume, row.content]) {
+            let method = match row.model {
+                Model::A1 => "a1",
+                Model::A2 => "a2",
+                Model::A3 => "a3",
+                Model::B => "b",
+            };
+            let outcome = ranged(id, At::Ramp, method, unit, value)
+                .based_on(table.between_s, stage.breaths_in(table.between_s));
+            let outcome = if row.stroke_volume_assumed && *id == "fick-sv-change" {
+                outcome.doubting(Note::new("assumed-not-derived"))
+            } else {
+                outcome
+            };
+            outcomes.push(if row.model == Model::A1 { outcome } else { outcome.alternative() });
+        }
+    }
+    outcomes
+}
+
+fn ranged(id: &'static str, at: At, method: &'static str, unit: Unit, value: Ranged) -> Outcome {
+    Outcome::quantity(id, at, method, unit, value.value)
+        .recorded_within(Some(value.interval))
+        .repeated_within(None)
+}
+
+fn reason_of(stage: &Stage<'_>, id: &str) -> Option<Note> {
+    stage.results.primary(id, At::Ramp).and_then(|o| o.reason.clone())
+}
+
+fn rate(stage: &Stage<'_>) -> Outcome {
+    let (id, method, unit) = ("fick-hr-deficit", "rest-to-predicted-peak", Unit::PerMin);
+    match deficit_at_peak(stage) {
+        Some(deficit) => ranged(id, At::Peak, method, unit, deficit),
+        None => {
+            let reason = stage
+                .missing(&[Quantity::Vo2, Quantity::Hr])
+                .unwrap_or_else(|| Note::new("no-predicted-rate-line"));
+            Outcome::absent(id, At::Peak, method, reason).in_unit(unit)
+        }
+    }
+}
+
+/// Share of the change of the O₂ pulse that saturation alone explains, ln %, rest to peak.
+fn content_share(stage: &Stage<'_>) -> Outcome {
+    let (id, method, unit) = ("fick-content-share", "ln-saturation", Unit::Percent);
+    let absent = |reason| Outcome::absent(id, At::Peak, method, reason).in_unit(unit);
+    if !spo2_usable(stage) {
+        let reason = stage
+            .missing(&[Quantity::Spo2])
+            .filter(|_| stage.results.number("spo2", At::Peak).is_none());
+        return absent(reason.unwrap_or_else(|| Note::new("spo2-not-confirmed")));
+    }
+    let first =
+        stage.results.number("spo2", At::Rest).or_else(|| stage.results.number("spo2", At::WarmUp));
+    let (Some(first), Some(peak)) = (first, stage.results.number("spo2", At::Peak)) else {
+        return absent(Note::new("spo2-not-at-both"));
+    };
+    if first <= 0.0 || peak <= 0.0 {
+        return absent(Note::new("spo2-not-at-both"));
+    }
+    let value = 100.0 * libm::log(peak / first);
+    let (a, b) = (spo2_error(first) / first, spo2_error(peak) / peak);
+    // The stated error of an oximeter is read as its 90 % interval.
+    let half = 100.0 * (a * a + b * b).sqrt();
+    Outcome::quantity(id, At::Peak, method, unit, value)
+        .recorded_within(Some(Interval::around(value, half)))
+        .repeated_within(None)
+}
+
+fn shunt(stage: &Stage<'_>, detail: &FickDetail) -> Outcome {
+    let (id, method) = ("fick-shunt-signature", "simultaneous-step");
+    let needed = [Quantity::Petco2, Quantity::Peto2, Quantity::Vco2, Quantity::Vo2];
+    if let Some(reason) = stage.missing(&needed) {
+        return Outcome::absent(id, At::Ramp, method, reason).of_kind(Kind::Reading);
+    }
+    if stage.results.phases.ramp().is_none() {
+        return Outcome::absent(id, At::Ramp, method, stage.no_ramp()).of_kind(Kind::Reading);
+    }
+    match detail.shunt {
+        Some(step) => {
+            let outcome = Outcome::reading(id, At::Ramp, method, "present")
+                .doubting(Note::new("shunt-published-in-pulmonary-hypertension"))
+                .based_on((step.t_s - 40.0, step.t_s + 75.0), 0);
+            match step.spo2 {
+                Some(change) if change <= -2.0 => outcome,
+                Some(_) => outcome.doubting(Note::new("shunt-without-desaturation")),
+                None => outcome.doubting(Note::new("spo2-not-confirmed")),
+            }
+        }
+        None => Outcome::reading(id, At::Ramp, method, "absent"),
+    }
+}
