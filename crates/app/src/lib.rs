@@ -1,4 +1,24 @@
-//! placeholder
+//! The window of Rampcrest, without a shell: `App::ui` draws one frame into any `egui::Ui`.
+
+pub mod app;
+pub mod chart;
+pub mod command;
+pub mod context;
+pub mod demo;
+pub mod derived;
 pub mod describe;
+pub mod dispatch;
+pub mod document;
 pub mod headless;
+pub mod panels;
 pub mod picture;
+pub mod preferences;
+pub mod ribbon;
+pub mod shell_eframe;
+pub mod theme;
+pub mod values;
+pub mod view_state;
+pub mod views;
+pub mod widgets;
+
+pub use app::App;

@@ -1,0 +1,202 @@
+//! The window, without any shell.
+
+use std::sync::{Arc, LazyLock};
+
+use analysis::recording::Recording;
+use egui::{Rect, Theme, Ui};
+
+use crate::chart::handles::{self, HandleKind};
+use crate::chart::interact;
+use crate::chart::layout::{Grid, Parts};
+use crate::command::{Command, Outbox};
+use crate::context::Context;
+use crate::derived::Derived;
+use crate::dispatch;
+use crate::document::Document;
+use crate::preferences::Preferences;
+use crate::theme::{self, Tokens};
+use crate::view_state::ViewState;
+use crate::{panels, views};
+
+static NO_TEST: LazyLock<Arc<Recording>> = LazyLock::new(Default::default);
+
+/// The window.
+#[derive(Debug, Default)]
+pub struct App {
+    /// The open test.
+    pub document: Document,
+    /// What follows from it.
+    pub derived: Derived,
+    /// What is shown.
+    pub view: ViewState,
+    /// Taste.
+    pub preferences: Preferences,
+}
+
+impl App {
+    /// The window on nothing.
+    #[must_use]
+    pub fn new() -> Self {
+        Self::default()
+    }
+
+    /// The window on the embedded demonstration test.
+    #[must_use]
+    pub fn on_demo() -> Self {
+        let mut app = Self::new();
+        if let Some(recording) = crate::demo::recording(crate::demo::TABLE) {
+            app.document.open(recording, analysis::facts::Facts::default(), crate::demo::LABEL);
+        }
+        app
+    }
+
+    /// Fonts and styles; every shell calls this once before the first frame.
+    pub fn setup(&self, ctx: &egui::Context) {
+        theme::install(ctx);
+        ctx.set_theme(self.preferences.theme);
+    }
+
+    /// Draws one frame into `ui`, which covers the window.
+    pub fn ui(&mut self, ui: &mut Ui) {
+        if ui.ctx().theme() != self.preferences.theme {
+            ui.ctx().set_theme(self.preferences.theme);
+        }
+        let commands = self.read_handles(ui);
+        self.carry_out(ui, commands);
+        self.derive();
+        let commands = self.draw(ui);
+        self.carry_out(ui, commands);
+    }
+
+    /// Reads pointer and keys before anything is drawn, so that this very frame shows the result.
+    fn read_handles(&mut self, ui: &Ui) -> Outbox {
+        self.derive();
+        let Some(recording) = self.document.recording().cloned() else {
+            return Outbox::new();
+        };
+        let handles = self.handles();
+        let mut out = Outbox::new();
+        let moved = interact::read(
+            ui,
+            &mut self.view.drag,
+            &handles,
+            &self.view.geometry,
+            recording.breaths.end_s(),
+        );
+        for interact::Moved::To(kind, t_s) in moved {
+            out.push(dispatch::moved(kind, t_s));
+        }
+        if let Some(drag) = self.view.drag.filter(|d| d.kind == HandleKind::Cursor) {
+            self.view.cursor_s = Some(drag.t_s);
+        }
+        out.extend(dispatch::keys(ui, self.view.dialog.is_some()));
+        out
+    }
+
+    fn handles(&self) -> Vec<handles::Handle> {
+        let whole = self.document.recording().and_then(|r| r.span_s()).unwrap_or((0.0, 60.0));
+        let results = self.derived.shown();
+        let mut all = handles::handles(results, self.document.decisions(), whole);
+        if let Some(drag) = self.view.drag.filter(|d| d.kind != HandleKind::Cursor) {
+            for handle in all.iter_mut().filter(|h| h.kind == drag.kind) {
+                handle.t_s = drag.t_s;
+                handle.range_s = drag.range_s;
+            }
+        }
+        all
+    }
+
+    /// Brings the results up to date with the session and the handle under way.
+    fn derive(&mut self) {
+        let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor).map(|d| {
+            let mut decisions = self.document.decisions().clone();
+            d.kind.set(&mut decisions, d.t_s);
+            decisions
+        });
+        self.derived.update(&self.document, moving.as_ref());
+    }
+
+    fn carry_out(&mut self, ui: &Ui, commands: Outbox) {
+        for command in commands {
+            self.dispatch(ui, command);
+            ui.ctx().request_repaint();
+        }
+    }
+
+    fn dispatch(&mut self, ui: &Ui, command: Command) {
+        dispatch::carry_out(self, ui, command);
+    }
+
+    fn draw(&mut self, ui: &mut Ui) -> Outbox {
+        let window = ui.ctx().content_rect();
+        let grid = Grid::of(window.width());
+        let parts = Parts::of(window, &grid);
+        let tokens = Tokens::of(self.preferences.theme);
+        let mut handles = self.handles();
+        let recording = self.document.recording().unwrap_or(&NO_TEST);
+        let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor);
+        let mut decisions = self.document.decisions().clone();
+        if let Some(drag) = moving {
+            drag.kind.set(&mut decisions, drag.t_s);
+        }
+        let open = self.document.recording().is_some();
+        let mut cx = Context {
+            recording,
+            facts: self.document.facts(),
+            decisions: &decisions,
+            settings: self.document.settings(),
+            results: self.derived.shown(),
+            committed: self.derived.committed(),
+            view: &self.view,
+            tokens,
+            grid,
+            handles: &[],
+            label: self.document.label(),
+            open,
+            signed: self.document.signed(),
+            can_undo: self.document.can_undo(),
+            can_redo: self.document.can_redo(),
+            provisional: self.derived.provisional(),
+            saved: self.document.saved(),
+        };
+        if open {
+            handles.push(handles::Handle {
+                kind: HandleKind::Cursor,
+                t_s: cx.cursor(),
+                proposed: self.view.cursor_s.is_none(),
+                range_s: cx.whole(),
+            });
+        }
+        cx.handles = &handles;
+        let mut out = Outbox::new();
+        let geometry = paint(ui, &cx, &mut out, window, &parts);
+        self.view.geometry = geometry;
+        out
+    }
+
+    /// Light or dark.
+    pub fn set_theme(&mut self, theme: Theme) {
+        self.preferences.theme = theme;
+    }
+}
+
+fn paint(
+    ui: &mut Ui,
+    cx: &Context<'_>,
+    out: &mut Outbox,
+    window: Rect,
+    parts: &Parts,
+) -> Vec<interact::Geometry> {
+    ui.painter().rect_filled(window, 0.0, cx.tokens.window);
+    panels::top_bar::show(ui, cx, out, parts.top_bar);
+    panels::caution::show(ui, cx, parts.caution);
+    if !cx.open {
+        crate::views::empty::show(ui, cx, out, window);
+        return Vec::new();
+    }
+    panels::view_row::show(ui, cx, out, parts.view_row);
+    panels::value_strip::show(ui, cx, parts.strip);
+    let geometry = views::show(ui, cx, out, parts.view);
+    panels::findings::show(ui, cx, out, parts.sheet);
+    geometry
+}

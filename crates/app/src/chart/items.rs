@@ -1,0 +1,214 @@
+//! The items of a chart as `egui_plot` draws them.
+
+use std::ops::RangeInclusive;
+
+use egui::{Color32, Mesh, Pos2, Shape, Stroke, Ui, pos2, vec2};
+use egui_plot::{PlotBounds, PlotGeometry, PlotItem, PlotItemBase, PlotPoint, PlotTransform};
+
+use super::spec::{Dash, Item, Mark, Point};
+
+/// One [`Item`] in a plot.
+pub struct Drawn {
+    base: PlotItemBase,
+    item: Item,
+}
+
+impl Drawn {
+    /// Wraps `item`.
+    #[must_use]
+    pub fn new(item: Item) -> Self {
+        Self { base: PlotItemBase::new(String::new()), item }
+    }
+}
+
+impl PlotItem for Drawn {
+    fn shapes(&self, _ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
+        let place = |p: &Point| transform.position_from_point(&PlotPoint::new(p[0], p[1]));
+        let frame = transform.frame();
+        match &self.item {
+            Item::Line { pieces, width, color, dash } => {
+                for piece in pieces {
+                    let points: Vec<Pos2> = piece.iter().map(place).collect();
+                    stroke(&points, Stroke::new(*width, *color), *dash, shapes);
+                }
+            }
+            Item::Points { points, mark, radius, color } => {
+                for p in points.iter().map(place) {
+                    if p.x < frame.left() || p.x > frame.right() {
+                        continue;
+                    }
+                    if p.y < frame.top() || p.y > frame.bottom() {
+                        beyond(p, frame, *color, shapes);
+                    } else {
+                        point(p, *mark, *radius, *color, shapes);
+                    }
+                }
+            }
+            Item::Band { rows, fill, edge } => band(rows, *fill, *edge, &place, shapes),
+            Item::Area { points, fill, edge } => {
+                let points: Vec<Pos2> = points.iter().map(place).collect();
+                area(&points, *fill, *edge, shapes);
+            }
+            Item::Bars { bars, color } => {
+                let stroke = Stroke::new(1.5, *color);
+                for [x, low, high] in bars {
+                    let (a, b) = (place(&[*x, *low]), place(&[*x, *high]));
+                    shapes.push(Shape::line_segment([a, b], stroke));
+                    for end in [a, b] {
+                        let cap = vec2(3.5, 0.0);
+                        shapes.push(Shape::line_segment([end - cap, end + cap], stroke));
+                    }
+                }
+            }
+            Item::Stretch { from, to, fill, edge } => {
+                let (a, b) = (place(&[*from, 0.0]).x, place(&[*to, 0.0]).x);
+                let rect = egui::Rect::from_x_y_ranges(a..=b, frame.y_range());
+                shapes.push(Shape::rect_filled(rect, 0.0, *fill));
+                if let Some(edge) = edge {
+                    for x in [a, b] {
+                        shapes.push(Shape::vline(x, frame.y_range(), Stroke::new(1.0, *edge)));
+                    }
+                }
+            }
+            Item::Hatch { from, to, every, color } => {
+                let (a, b) = (place(&[*from, 0.0]).x, place(&[*to, 0.0]).x.min(frame.right()));
+                hatch(egui::Rect::from_x_y_ranges(a..=b, frame.y_range()), *every, *color, shapes);
+            }
+        }
+    }
+
+    fn initialize(&mut self, _x_range: RangeInclusive<f64>) {}
+
+    fn color(&self) -> Color32 {
+        Color32::TRANSPARENT
+    }
+
+    fn geometry(&self) -> PlotGeometry<'_> {
+        PlotGeometry::None
+    }
+
+    fn bounds(&self) -> PlotBounds {
+        PlotBounds::NOTHING
+    }
+
+    fn base(&self) -> &PlotItemBase {
+        &self.base
+    }
+
+    fn base_mut(&mut self) -> &mut PlotItemBase {
+        &mut self.base
+    }
+}
+
+/// Adds a line with its pattern.
+pub fn stroke(points: &[Pos2], stroke: Stroke, dash: Option<Dash>, shapes: &mut Vec<Shape>) {
+    match dash {
+        _ if points.len() < 2 => {}
+        None => shapes.push(Shape::line(points.to_vec(), stroke)),
+        Some(Dash(on, off)) => shapes.extend(Shape::dashed_line(points, stroke, on, off)),
+    }
+}
+
+fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape>) {
+    let square = egui::Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
+    let thin = Stroke::new(1.0, color);
+    match mark {
+        // A square of this size is not told from a disc and costs two triangles.
+        Mark::Dot if r <= 1.2 => shapes.push(Shape::rect_filled(square, 0.0, color)),
+        Mark::Dot => shapes.push(Shape::circle_filled(p, r, color)),
+        Mark::Square => shapes.push(Shape::rect_filled(square, 0.0, color)),
+        Mark::OpenSquare => {
+            shapes.push(Shape::rect_stroke(square, 0.0, thin, egui::StrokeKind::Middle))
+        }
+        Mark::Level => {
+            let half = vec2(r, 0.5);
+            shapes.push(Shape::rect_filled(
+                egui::Rect::from_min_max(p - half, p + half),
+                0.0,
+                color,
+            ));
+        }
+        Mark::Triangle => shapes.push(Shape::convex_polygon(
+            vec![p + vec2(0.0, -r), p + vec2(r, 0.8 * r), p + vec2(-r, 0.8 * r)],
+            color,
+            Stroke::NONE,
+        )),
+        Mark::Ring => shapes.push(Shape::circle_stroke(p, r, Stroke::new(1.5, color))),
+        Mark::Cross => {
+            let (a, b) = (vec2(r, r), vec2(r, -r));
+            shapes.push(Shape::line_segment([p - a, p + a], thin));
+            shapes.push(Shape::line_segment([p - b, p + b], thin));
+        }
+    }
+}
+
+/// A breath outside the frame: a small open triangle at its edge.
+fn beyond(p: Pos2, frame: &egui::Rect, color: Color32, shapes: &mut Vec<Shape>) {
+    let (y, up) =
+        if p.y < frame.top() { (frame.top() + 3.0, -1.0) } else { (frame.bottom() - 3.0, 1.0) };
+    let c = pos2(p.x, y);
+    let corners =
+        vec![c + vec2(0.0, 2.5 * up), c + vec2(2.5, -2.0 * up), c + vec2(-2.5, -2.0 * up)];
+    shapes.push(Shape::closed_line(corners, Stroke::new(1.0, color)));
+}
+
+fn band(
+    rows: &[[f64; 3]],
+    fill: Color32,
+    edge: Color32,
+    place: &impl Fn(&Point) -> Pos2,
+    shapes: &mut Vec<Shape>,
+) {
+    let low: Vec<Pos2> = rows.iter().map(|r| place(&[r[0], r[1]])).collect();
+    let high: Vec<Pos2> = rows.iter().map(|r| place(&[r[0], r[2]])).collect();
+    let mut mesh = Mesh::default();
+    for (a, b) in low.iter().zip(&high) {
+        mesh.colored_vertex(*a, fill);
+        mesh.colored_vertex(*b, fill);
+    }
+    for i in 1..rows.len() as u32 {
+        mesh.add_triangle(2 * i - 2, 2 * i - 1, 2 * i);
+        mesh.add_triangle(2 * i - 1, 2 * i, 2 * i + 1);
+    }
+    shapes.push(Shape::mesh(mesh));
+    for line in [low, high] {
+        stroke(&line, Stroke::new(1.0, edge), None, shapes);
+    }
+}
+
+fn area(points: &[Pos2], fill: Color32, edge: Color32, shapes: &mut Vec<Shape>) {
+    if points.len() < 3 {
+        return;
+    }
+    let n = points.len() as u32;
+    let sum = points.iter().fold(egui::Vec2::ZERO, |s, p| s + p.to_vec2());
+    let mut mesh = Mesh::default();
+    mesh.colored_vertex((sum / points.len() as f32).to_pos2(), fill);
+    for p in points {
+        mesh.colored_vertex(*p, fill);
+    }
+    for i in 0..n {
+        mesh.add_triangle(0, 1 + i, 1 + (i + 1) % n);
+    }
+    shapes.push(Shape::mesh(mesh));
+    if edge != Color32::TRANSPARENT {
+        shapes.push(Shape::closed_line(points.to_vec(), Stroke::new(1.0, edge)));
+    }
+}
+
+fn hatch(rect: egui::Rect, every: f32, color: Color32, shapes: &mut Vec<Shape>) {
+    if rect.width() <= 0.0 || every <= 0.0 {
+        return;
+    }
+    let stroke = Stroke::new(1.0, color);
+    let mut offset = 0.0;
+    while offset < rect.width() + rect.height() {
+        // A stroke rising to the right, cut to the rectangle.
+        let start = offset.min(rect.height());
+        let x0 = rect.left() + (offset - start);
+        let rise = start.min(rect.right() - x0);
+        let a = pos2(x0, rect.top() + start);
+        shapes.push(Shape::line_segment([a, a + vec2(rise, -rise)], stroke));
+        offset += every;
+    }
+}

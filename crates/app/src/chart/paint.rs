@@ -1,0 +1,225 @@
+//! Draws a chart into its frame.
+
+use egui::{
+    Align, Color32, Rect, Response, Role, Sense, Stroke, Ui, UiBuilder, WidgetInfo, pos2, vec2,
+};
+use egui_plot::{Plot, PlotBounds};
+
+use super::items::Drawn;
+use super::layout::{Scale, spread};
+use super::spec::{Chart, Title};
+use super::ticks::{clock, ticks, time_step};
+use crate::theme::{Family, Tokens, size};
+use crate::widgets::text::{self, Run};
+
+/// Draws `chart` into `frame`; the response is that of the frame.
+pub fn chart(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &mut Chart) -> Response {
+    ui.painter().rect_filled(frame, 0.0, tokens.plot);
+    titles(ui, tokens, frame, chart);
+    if chart.missing.is_none() {
+        plot(ui, tokens, frame, chart, false);
+    }
+    let x = Scale::over(frame, chart.x);
+    ground(ui, tokens, frame, chart, &x);
+    if chart.missing.is_none() {
+        plot(ui, tokens, frame, chart, true);
+        end_labels(ui, tokens, frame, chart, &x);
+        remarks(ui, tokens, frame, chart, &x);
+    }
+    let id = ui.make_persistent_id(("frame", chart.id));
+    let response = ui.interact(frame, id, Sense::CLICK | Sense::DRAG);
+    response.widget_info(|| WidgetInfo::labeled(Role::GraphicsDocument, true, &chart.description));
+    response
+}
+
+/// Bands and stretches lie behind the ground lines, everything else before them.
+fn is_ground(item: &super::spec::Item) -> bool {
+    use super::spec::Item;
+    matches!(item, Item::Band { .. } | Item::Stretch { .. } | Item::Hatch { .. })
+}
+
+fn plot(ui: &mut Ui, _tokens: &Tokens, frame: Rect, chart: &mut Chart, data: bool) {
+    let (mine, rest): (Vec<_>, Vec<_>) =
+        chart.items.drain(..).partition(|item| is_ground(item) != data);
+    chart.items = rest;
+    if mine.is_empty() {
+        return;
+    }
+    let bounds = PlotBounds::from_min_max([chart.x.0, chart.y.low], [chart.x.1, chart.y.high]);
+    ui.scope_builder(UiBuilder::new().max_rect(frame).id_salt(("plot", chart.id, data)), |ui| {
+        ui.spacing_mut().item_spacing = egui::Vec2::ZERO;
+        Plot::new(("plot", chart.id, data))
+            .width(frame.width())
+            .height(frame.height())
+            .show_axes(false)
+            .show_grid(false)
+            .show_background(false)
+            .show_x(false)
+            .show_y(false)
+            .show_crosshair(false)
+            .allow_drag(false)
+            .allow_zoom(false)
+            .allow_scroll(false)
+            .allow_boxed_zoom(false)
+            .allow_double_click_reset(false)
+            .allow_axis_zoom_drag(false)
+            .sense(Sense::hover())
+            .show(ui, move |plot| {
+                plot.set_plot_bounds(bounds);
+                for item in mine {
+                    plot.add(Drawn::new(item));
+                }
+            });
+    });
+}
+
+fn runs(tokens: &Tokens, titles: &[Title]) -> Vec<Run> {
+    titles
+        .iter()
+        .enumerate()
+        .map(|(i, title)| {
+            let lead = if i == 0 { "" } else { "  " };
+            match title {
+                Title::Name(name, family) => {
+                    Run::new(format!("{lead}{name}"), size::BODY, tokens.text(*family))
+                }
+                Title::Grey(text) => Run::new(format!("{lead}{text}"), size::BODY, tokens.ink2),
+            }
+        })
+        .collect()
+}
+
+fn titles(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart) {
+    let y = frame.top() - 6.0;
+    let right = runs(tokens, &chart.right_title);
+    let mut left = runs(tokens, &chart.title);
+    let room = frame.width() - text::width(ui, &right) - 8.0;
+    while left.len() > 1 && text::width(ui, &left) > room {
+        left.pop();
+    }
+    text::line(ui, pos2(frame.left(), y), Align::Min, &left);
+    if !right.is_empty() {
+        text::line(ui, pos2(frame.right(), y), Align::Max, &right);
+    }
+}
+
+fn ground(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
+    let painter = ui.painter().clone();
+    let full = Stroke::new(1.0, tokens.grid);
+    let half = Stroke::new(1.0, tokens.grid.gamma_multiply(0.5));
+    match &chart.x_axis {
+        Some(axis) => {
+            for t in axis.ticks() {
+                painter.vline(x.place(t), frame.y_range(), full);
+                let at = pos2(x.place(t), frame.bottom() + 15.0);
+                text::paint(
+                    ui,
+                    at,
+                    Align::Center,
+                    &[Run::new(axis.label(t), size::BODY, tokens.ink2)],
+                );
+            }
+        }
+        None => {
+            let step = time_step(chart.x.1 - chart.x.0, frame.width(), 56.0);
+            let fine = if step > 60.0 { 60.0 } else { step };
+            for t in ticks(chart.x.0, chart.x.1, fine) {
+                let labelled = (t / step - (t / step).round()).abs() < 1e-9;
+                painter.vline(x.place(t), frame.y_range(), if labelled { full } else { half });
+            }
+        }
+    }
+    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
+    for tick in chart.y.ticks() {
+        painter.hline(frame.x_range(), y.place(tick), full);
+        let at = pos2(frame.left() - 6.0, y.place(tick) + 4.5);
+        let label = Run::new(chart.y.label(tick), size::BODY, tokens.ink2);
+        text::paint(ui, at, Align::Max, &[label]);
+    }
+    for (value, label) in &chart.right {
+        let at = pos2(frame.right() + 6.0, y.place(*value) + 4.5);
+        text::paint(ui, at, Align::Min, &[Run::new(label.clone(), size::BODY, tokens.ink2)]);
+    }
+    let edge = Stroke::new(1.0, tokens.frame);
+    painter.vline(frame.left(), frame.y_range(), edge);
+    painter.hline(frame.x_range(), frame.bottom(), edge);
+}
+
+fn end_labels(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
+    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
+    let shown: Vec<_> = chart.labels.iter().filter(|l| x.holds(l.at[0])).collect();
+    let wanted: Vec<f32> =
+        shown.iter().map(|l| y.place(l.at[1]).clamp(frame.top(), frame.bottom())).collect();
+    let placed = spread(&wanted, 14.0, (frame.top() + 8.0, frame.bottom() - 8.0));
+    for ((label, want), at_y) in shown.iter().zip(&wanted).zip(&placed) {
+        let run = [Run::new(label.text.clone(), size::BODY, label.color)];
+        let wide = text::width(ui, &run);
+        let line_x = x.place(label.at[0]);
+        let mut left = line_x + 26.0;
+        let mut leader = (want - at_y).abs() > 3.0 || shown.len() > 1;
+        if left + wide > frame.right() - 2.0 {
+            left = frame.right() - 2.0 - wide;
+            leader = false;
+        } else if !leader {
+            left = line_x + 10.0;
+        }
+        if leader {
+            let stroke = Stroke::new(1.0, label.color.gamma_multiply(0.7));
+            ui.painter().line_segment([pos2(line_x + 2.0, *want), pos2(left - 3.0, *at_y)], stroke);
+        }
+        let backing = Rect::from_min_size(pos2(left - 1.0, at_y - 7.0), vec2(wide + 2.0, 14.0));
+        ui.painter().rect_filled(backing, 0.0, tokens.plot.gamma_multiply(0.85));
+        text::line(ui, pos2(left, at_y + 4.5), Align::Min, &run);
+    }
+}
+
+fn remarks(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
+    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
+    for (at, remark) in &chart.remarks {
+        let run = [Run::new(remark.clone(), size::BODY, tokens.ink2)];
+        let wide = text::width(ui, &run);
+        let left = x
+            .place(at[0])
+            .clamp(frame.left() + 4.0, (frame.right() - wide - 4.0).max(frame.left()));
+        let base = (y.place(at[1]) + 4.5).clamp(frame.top() + 13.0, frame.bottom() - 4.0);
+        let backing = Rect::from_min_size(pos2(left - 2.0, base - 11.5), vec2(wide + 4.0, 15.0));
+        ui.painter().rect_filled(backing, 0.0, tokens.plot.gamma_multiply(0.85));
+        text::line(ui, pos2(left, base), Align::Min, &run);
+    }
+}
+
+/// Time labels under a column; those that `covered` hides are left out whole.
+pub fn time_labels(ui: &mut Ui, tokens: &Tokens, labels: Rect, x: &Scale, covered: &[Rect]) {
+    let step = time_step(x.value.1 - x.value.0, labels.width(), 56.0);
+    let all = ticks(x.value.0, x.value.1, step);
+    let last = all.len().saturating_sub(1);
+    for (i, t) in all.iter().enumerate() {
+        let run = [Run::new(clock(*t), size::BODY, tokens.ink2)];
+        let wide = text::width(ui, &run);
+        let centre = x.place(*t);
+        let left = (centre - 0.5 * wide).clamp(labels.left(), labels.right() - wide);
+        let left = if i == 0 || i == last { left } else { centre - 0.5 * wide };
+        let rect = Rect::from_min_size(pos2(left, labels.top()), vec2(wide, labels.height()));
+        if covered.iter().any(|c| c.intersects(rect)) {
+            continue;
+        }
+        text::paint(ui, pos2(left, labels.bottom() - 5.0), Align::Min, &run);
+    }
+}
+
+/// Rings where the cursor meets the lines of `chart`.
+pub fn rings(ui: &Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x_px: f32) {
+    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
+    for (value, color) in &chart.rings {
+        let at = pos2(x_px, y.place(*value));
+        if frame.contains(at) {
+            ui.painter().circle(at, 3.5, tokens.plot, Stroke::new(1.5, *color));
+        }
+    }
+}
+
+/// Colour of a name.
+#[must_use]
+pub fn name_color(tokens: &Tokens, family: Family) -> Color32 {
+    tokens.text(family)
+}

@@ -1,0 +1,117 @@
+//! Carries out commands: one flat match.
+
+use egui::{Theme, Ui};
+
+use crate::app::App;
+use crate::chart::column::zoomed;
+use crate::chart::handles::HandleKind;
+use crate::chart::interact::step;
+use crate::command::{Command, Outbox};
+use crate::document::Edit;
+
+/// The command of a handle that came to rest at `t_s`.
+#[must_use]
+pub fn moved(kind: HandleKind, t_s: f64) -> Command {
+    match kind {
+        HandleKind::Boundary(phase) => Command::Edit(Edit::SetBoundary { phase, t_s }),
+        HandleKind::Mark(mark) => Command::Edit(Edit::SetMark { mark, t_s }),
+        HandleKind::Cursor => Command::Cursor(t_s),
+    }
+}
+
+/// Commands of the keys pressed in this frame.
+#[must_use]
+pub fn keys(ui: &Ui, dialog_open: bool) -> Outbox {
+    let mut out = Outbox::new();
+    if dialog_open || ui.ctx().text_edit_focused() {
+        return out;
+    }
+    let focused = ui.ctx().memory(|m| m.focused()).is_some();
+    for command in Command::with_keys() {
+        let Some(shortcut) = command.shortcut() else {
+            continue;
+        };
+        // Arrows belong to whatever has the focus.
+        if focused && matches!(command, Command::StepCursor(_)) {
+            continue;
+        }
+        if ui.input_mut(|i| i.consume_shortcut(&shortcut)) {
+            out.push(command);
+        }
+    }
+    out
+}
+
+/// Carries out `command`.
+pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
+    match command {
+        Command::Undo => app.document.undo(),
+        Command::Redo => app.document.redo(),
+        Command::Show(dialog) => app.view.dialog = Some(dialog),
+        Command::CloseDialog => app.view.dialog = None,
+        Command::Go(view) => app.view.view = view,
+        Command::ToggleOverlay => {
+            let shown = !app.document.settings().overlay_shown;
+            app.document.apply(Edit::ShowOverlay(shown));
+        }
+        Command::ToggleRaw => app.view.raw = !app.view.raw,
+        Command::WidenFindings => app.view.wide_findings = !app.view.wide_findings,
+        Command::ToggleTheme => {
+            let theme = match app.preferences.theme {
+                Theme::Light => Theme::Dark,
+                Theme::Dark => Theme::Light,
+            };
+            app.set_theme(theme);
+        }
+        Command::Cursor(t_s) => app.view.cursor_s = Some(t_s),
+        Command::StepCursor(n) => step_cursor(app, n),
+        Command::Zoom(stretch) => app.view.zoom_s = stretch.filter(|s| Some(*s) != whole(app)),
+        Command::ZoomDragging(stretch) => app.view.zoom_drag = stretch,
+        Command::ZoomBy(factor) => zoom_by(app, factor),
+        Command::Select(stretch) => app.view.selected_s = stretch,
+        Command::Evidence(id) => app.view.evidence_of = id,
+        Command::Edit(edit) => app.document.apply(edit),
+        Command::Edits(edits) => edits.into_iter().for_each(|edit| app.document.apply(edit)),
+        Command::Quit => ui.ctx().send_viewport_cmd(egui::ViewportCommand::Close),
+        Command::OpenDemo => open_demo(app),
+        Command::OpenPath(_)
+        | Command::PickFile
+        | Command::Save
+        | Command::SaveTo(_)
+        | Command::ExportTo(_) => {}
+    }
+}
+
+fn open_demo(app: &mut App) {
+    if let Some(recording) = crate::demo::recording(crate::demo::TABLE) {
+        app.document.open(recording, analysis::facts::Facts::default(), crate::demo::LABEL);
+        app.view = crate::view_state::ViewState::default();
+    }
+}
+
+fn whole(app: &App) -> Option<(f64, f64)> {
+    app.document.recording().and_then(|r| r.span_s())
+}
+
+fn step_cursor(app: &mut App, n: i32) {
+    let Some(recording) = app.document.recording().cloned() else {
+        return;
+    };
+    let now = app
+        .view
+        .cursor_s
+        .or_else(|| app.derived.shown().phases.ramp().map(|(from, to)| from + 0.75 * (to - from)));
+    let ends = recording.breaths.end_s();
+    app.view.cursor_s = Some(step(now.unwrap_or(0.0), ends, n));
+}
+
+fn zoom_by(app: &mut App, factor: f64) {
+    let Some(whole) = whole(app) else {
+        return;
+    };
+    let now = app.view.zoom_s.unwrap_or(whole);
+    let centre = app.view.cursor_s.filter(|t| *t >= now.0 && *t <= now.1);
+    let centre = centre.unwrap_or(0.5 * (now.0 + now.1));
+    let next = zoomed(now, whole, centre, factor);
+    app.view.zoom_s = (next != whole).then_some(next);
+}

@@ -1,0 +1,7 @@
+//! The fixed parts of the window around the view.
+
+pub mod caution;
+pub mod findings;
+pub mod top_bar;
+pub mod value_strip;
+pub mod view_row;

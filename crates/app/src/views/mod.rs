@@ -1,0 +1,28 @@
+//! One file per view, named by it.
+
+pub mod empty;
+pub mod overlay;
+pub mod series;
+pub mod time_charts;
+pub mod time_course;
+
+use egui::{Align, Rect, Ui, pos2};
+
+use crate::chart::interact::Geometry;
+use crate::command::Outbox;
+use crate::context::Context;
+use crate::theme::size;
+use crate::view_state::View;
+use crate::widgets::text;
+
+/// Draws the chosen view; returns where its time columns stood.
+pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<Geometry> {
+    match cx.view.view {
+        View::TimeCourse => time_course::show(ui, cx, out, rect),
+        other => {
+            let at = pos2(rect.left() + 16.0, rect.top() + 32.0);
+            text::plain(ui, at, Align::Min, other.name(), size::TITLE, cx.tokens.ink);
+            Vec::new()
+        }
+    }
+}
