@@ -2,6 +2,7 @@
 
 pub mod ci;
 pub mod demo;
+pub mod references;
 pub mod tidy;
 
 use std::path::PathBuf;

@@ -6,12 +6,15 @@ const USAGE: &str = "cargo xtask VERB
 
   ci      everything the repository checks without a display or outside data
   demo    writes the demo tests below demo-sessions
+  references noise|coverage|errors [--seeds A..B]
+          simulations and data behind the calibrated figures
   tidy    rules of the tree: file sizes, banned words, stubs";
 
 fn main() -> ExitCode {
     let args: Vec<String> = std::env::args().skip(1).collect();
     match args.first().map(String::as_str) {
         Some("demo") => xtask::demo::run(),
+        Some("references") => xtask::references::run(&args[1..]),
         Some("ci") => xtask::ci::run(),
         Some("tidy") => xtask::tidy::run(),
         _ => {

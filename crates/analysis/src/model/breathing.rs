@@ -144,7 +144,7 @@ fn draw(plan: &Plan, now: &Instant, ve_drift: f64, kind: Errant, rng: &mut Rng) 
         }
         _ => {}
     }
-    vt_ml = vt_ml.min(5200.0).max(180.0);
+    vt_ml = vt_ml.clamp(180.0, 5200.0);
     let wander = (45.0 * n.breath + 120.0 * n.irregular) * rng.normal();
     let next_eelv_ml = (plan.ventilation.eelv * 1000.0 + wander).max(900.0);
     Drawn { vt_ml, duration_s: duration_s.max(0.6), next_eelv_ml }

@@ -5,6 +5,7 @@
 //! pipeline calls this module.
 
 pub mod breathing;
+pub mod course_sim;
 pub mod demo;
 pub mod mean;
 pub mod plan;

@@ -1,0 +1,72 @@
+//! `cargo xtask references noise|coverage|errors [--seeds A..B]`: simulations and data behind the
+//! calibrated figures. Tables go to standard output and to `assets/references`.
+
+pub mod binomial;
+pub mod errors;
+mod pool;
+
+use std::fs;
+use std::ops::Range;
+use std::process::ExitCode;
+
+/// Seeds from here on are for reporting; those below serve for tuning.
+const REPORTED_FROM: u64 = 10_000;
+
+/// Runs `references` with the arguments after the verb.
+#[must_use]
+pub fn run(args: &[String]) -> ExitCode {
+    let Some((what, seeds)) = parse(args) else {
+        eprintln!("cargo xtask references noise|coverage|errors [--seeds A..B]");
+        return ExitCode::from(2);
+    };
+    let tuning = seeds.start < REPORTED_FROM;
+    let text = match what {
+        "errors" => errors::report(seeds),
+        other => {
+            eprintln!("{other}: noise, coverage or errors");
+            return ExitCode::from(2);
+        }
+    };
+    print!("{text}");
+    if tuning {
+        eprintln!("seeds below 10,000 serve for tuning: printed, not written");
+        return ExitCode::SUCCESS;
+    }
+    let folder = crate::root().join("assets").join("references");
+    let written = fs::create_dir_all(&folder)
+        .and_then(|()| fs::write(folder.join(format!("{what}.md")), text.as_bytes()));
+    match written {
+        Ok(()) => ExitCode::SUCCESS,
+        Err(error) => {
+            eprintln!("{}: {error}", folder.display());
+            ExitCode::from(7)
+        }
+    }
+}
+
+/// The table asked for, and the seeds (reported on 10,000 and above when none are given).
+fn parse(args: &[String]) -> Option<(&str, Range<u64>)> {
+    match args {
+        [what] => Some((what, 10_000..12_000)),
+        [what, flag, seeds] if flag == "--seeds" => {
+            let (a, b) = seeds.split_once("..")?;
+            let range = a.parse().ok()?..b.parse().ok()?;
+            (range.start < range.end).then_some((what.as_str(), range))
+        }
+        _ => None,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn seeds_are_parsed_and_refused() {
+        let args = |s: &str| s.split(' ').map(String::from).collect::<Vec<_>>();
+        assert_eq!(parse(&args("errors")), Some(("errors", 10_000..12_000)));
+        assert_eq!(parse(&args("errors --seeds 5..9")), Some(("errors", 5..9)));
+        assert_eq!(parse(&args("errors --seeds 9..5")), None);
+        assert_eq!(parse(&args("errors --seeds x")), None);
+    }
+}
