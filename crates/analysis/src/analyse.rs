@@ -9,8 +9,8 @@ use crate::results::Results;
 use crate::settings::Settings;
 use crate::stage::Stage;
 use crate::{
-    clean, fick, o2_pulse, oscillation, peak, phases, predicted, reasoning, slopes, table,
-    thresholds,
+    clean, effort, fick, o2_pulse, oscillation, peak, phases, predicted, reasoning, recovery,
+    reserve, slopes, table, thresholds,
 };
 
 /// Derives everything from the recording and the reader's judgement. Pure and total: what cannot
@@ -28,8 +28,11 @@ pub fn derive(
     thresholds::derive(&mut stage);
     slopes::derive(&mut stage);
     table::derive(&mut stage);
+    recovery::derive(&mut stage);
 
     predicted::derive(&mut stage);
+    reserve::derive(&mut stage);
+    effort::derive(&mut stage);
     o2_pulse::derive(&mut stage);
     fick::derive(&mut stage);
     reasoning::derive(&mut stage);

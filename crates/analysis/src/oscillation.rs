@@ -37,7 +37,8 @@ impl Cycle {
     }
 }
 
-/// What was found.
+/// What was found. Every definition is confirmed by cycles that repeat: ordinary breath noise swings
+/// by as much, but not periodically.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Oscillation {
     /// Cycles of 30–140 s.
@@ -58,11 +59,10 @@ pub struct Oscillation {
 
 impl Oscillation {
     /// Whether breathing counts as oscillating for the sake of errant breaths and intervals: one
-    /// published definition, confirmed by cycles that repeat (ordinary breath noise swings by as
-    /// much, but not periodically).
+    /// published definition holds.
     #[must_use]
     pub fn present(&self) -> bool {
-        (self.aha == Some(true) || self.leite || self.sun) && self.periodicity >= PERIODIC
+        self.aha == Some(true) || self.leite || self.sun
     }
 }
 
@@ -158,20 +158,24 @@ fn cycles(turns: &[(usize, f64, bool)], level: &[f64], from_s: f64) -> Vec<Cycle
 
 fn judge(found: &mut Oscillation, exercise: (f64, f64), resting: Option<f64>) {
     let total = exercise.1 - exercise.0;
+    let repeats = found.periodicity >= PERIODIC;
     if let Some(rest) = resting.filter(|r| *r >= 5.0 && total > 0.0) {
         let wide = found.cycles.iter().filter(|c| c.amplitude >= 0.15 * rest);
         found.share = wide.map(Cycle::length).sum::<f64>() / total;
-        found.aha = Some(found.share >= 0.60);
+        found.aha = Some(repeats && found.share >= 0.60);
     }
-    found.ben_dov = in_a_row(&found.cycles, |c| c.amplitude > 0.25 * c.mean && c.length() <= 60.0);
-    found.leite = found.cycles.windows(3).any(|w| {
-        let mean = w.iter().map(Cycle::length).sum::<f64>() / 3.0;
-        let variance =
-            w.iter().map(|c| (c.length() - mean) * (c.length() - mean)).sum::<f64>() / 2.0;
-        let amplitude = w.iter().map(|c| c.amplitude).sum::<f64>() / 3.0;
-        follow(w) && variance.sqrt() <= 0.20 * mean && amplitude >= 5.0
-    });
-    found.sun = in_a_row(&found.cycles, |c| c.amplitude > 0.30 * c.mean && c.length() >= 40.0);
+    found.ben_dov =
+        repeats && in_a_row(&found.cycles, |c| c.amplitude > 0.25 * c.mean && c.length() <= 60.0);
+    found.leite = repeats
+        && found.cycles.windows(3).any(|w| {
+            let mean = w.iter().map(Cycle::length).sum::<f64>() / 3.0;
+            let variance =
+                w.iter().map(|c| (c.length() - mean) * (c.length() - mean)).sum::<f64>() / 2.0;
+            let amplitude = w.iter().map(|c| c.amplitude).sum::<f64>() / 3.0;
+            follow(w) && variance.sqrt() <= 0.20 * mean && amplitude >= 5.0
+        });
+    found.sun =
+        repeats && in_a_row(&found.cycles, |c| c.amplitude > 0.30 * c.mean && c.length() >= 40.0);
 }
 
 /// Whether three neighbouring cycles all fulfil `holds`.

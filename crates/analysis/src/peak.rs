@@ -2,8 +2,10 @@
 
 use crate::facts::EventKind;
 use crate::note::Note;
+use crate::peak_interval;
 use crate::quantity::Quantity;
-use crate::results::{At, Outcome, Text};
+use crate::repeatability::{self, CV_PEAK_O2_PULSE, CV_PEAK_VE};
+use crate::results::{At, Interval, Outcome, Text};
 use crate::stage::Stage;
 use crate::unit::Unit;
 
@@ -13,12 +15,19 @@ const HR_WINDOW_S: f64 = 10.0;
 /// Derives the peak values.
 pub(crate) fn derive(stage: &mut Stage<'_>) {
     let width = stage.settings.peak_window_s;
-    let vo2 = highest(stage, "vo2-peak", Quantity::Vo2, width);
-    stage.push(vo2);
+    let raw = highest(stage, "vo2-peak", Quantity::Vo2, width);
+    for outcome in peak_interval::vo2(stage, raw) {
+        stage.push(outcome);
+    }
+    let per_kg = per_kg(stage, "vo2-peak", "vo2-peak-per-kg", At::Peak);
+    stage.push(per_kg);
     let at_peak = o2_pulse_at_peak(stage);
     let highest_pulse = highest(stage, "o2-pulse-highest", Quantity::O2Pulse, width);
     let vco2 = highest(stage, "vco2-peak", Quantity::Vco2, width);
-    let ve = highest(stage, "ve-peak", Quantity::Ve, width);
+    let mut ve = highest(stage, "ve-peak", Quantity::Ve, width);
+    if let Some(value) = ve.number() {
+        ve = ve.repeated_within(Some(repeatability::widen(value, None, &[CV_PEAK_VE])));
+    }
     let rer = highest(stage, "rer-peak", Quantity::Rer, width);
     let hr = highest(stage, "hr-peak", Quantity::Hr, HR_WINDOW_S);
     for outcome in [at_peak, highest_pulse, vco2, ve, rer, hr] {
@@ -105,8 +114,17 @@ fn o2_pulse_at_peak(stage: &Stage<'_>) -> Outcome {
         return absent(peak.reason.clone().unwrap_or_else(|| stage.no_ramp()));
     };
     match stage.window_mean(Quantity::O2Pulse, window) {
-        Some(value) => Outcome::quantity(id, At::Peak, method, unit, value)
-            .based_on(window, stage.breaths_in(window)),
+        Some(value) => {
+            let interval = peak.recording.zip(stage.window_mean(Quantity::Hr, window)).map(
+                // HR over 30 s is known ten times better than V̇O₂; its share is left out.
+                |(i, hr)| Interval { low: i.low / hr, high: i.high / hr },
+            );
+            let repeat = repeatability::widen(value, interval, &[CV_PEAK_O2_PULSE]);
+            Outcome::quantity(id, At::Peak, method, unit, value)
+                .recorded_within(interval)
+                .repeated_within(Some(repeat))
+                .based_on(window, stage.breaths_in(window))
+        }
         None => absent(Note::new("window-not-covered")),
     }
 }
@@ -167,10 +185,7 @@ pub(crate) fn per_kg(stage: &Stage<'_>, of: &str, id: &'static str, at: At) -> O
     let Some(mass) = stage.facts.subject.mass_kg.filter(|m| *m > 0.0) else {
         return absent(Note::missing_fact("mass"));
     };
-    let scaled = |i: crate::results::Interval| crate::results::Interval {
-        low: i.low / mass,
-        high: i.high / mass,
-    };
+    let scaled = |i: Interval| Interval { low: i.low / mass, high: i.high / mass };
     let mut outcome = Outcome::quantity(id, at, source.method.clone(), unit, value / mass)
         .recorded_within(source.recording.map(scaled))
         .repeated_within(source.repeat.map(scaled));

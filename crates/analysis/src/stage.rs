@@ -31,8 +31,14 @@ pub(crate) struct Stage<'a> {
 
 impl Stage<'_> {
     /// Adds an outcome.
-    pub fn push(&mut self, outcome: Outcome) {
+    pub fn push(&mut self, mut outcome: Outcome) {
         debug_assert!(outcome.value.is_none() == outcome.reason.is_some(), "{}", outcome.id);
+        let measured = outcome.number().is_some()
+            && !["predicted-", "fick-"].iter().any(|p| outcome.id.starts_with(p));
+        let code = "no-published-repeatability";
+        if measured && outcome.repeat.is_none() && outcome.doubts.iter().all(|d| d.code != code) {
+            outcome.doubts.push(Note::new(code));
+        }
         self.results.outcomes.push(outcome);
     }
 

@@ -5,6 +5,7 @@ use crate::facts::EventKind;
 use crate::note::Note;
 use crate::peak::why_missing;
 use crate::quantity::Quantity;
+use crate::repeatability::{self, CV_EQCO2_VT1, CV_EQO2_VT1};
 use crate::results::{At, Outcome, Text};
 use crate::stage::Stage;
 
@@ -132,8 +133,14 @@ fn cell(
         return reading(stage, quantity, at, window);
     }
     if let Some(value) = stage.window_mean(quantity, window) {
-        return Outcome::quantity(id, at, method, unit, value)
+        let outcome = Outcome::quantity(id, at, method, unit, value)
             .based_on(window, stage.breaths_in(window));
+        let cv = match (quantity, at) {
+            (Quantity::EqO2, At::Vt1) => CV_EQO2_VT1,
+            (Quantity::EqCo2, At::Vt1) => CV_EQCO2_VT1,
+            _ => return outcome,
+        };
+        return outcome.repeated_within(Some(repeatability::widen(value, None, &[cv])));
     }
     if quantity == Quantity::Spo2 {
         return reading(stage, quantity, at, window);

@@ -49,6 +49,8 @@ pub enum Dimension {
     CirculatoryPower,
     /// Amount of substance per volume.
     Molarity,
+    /// Pressure times frequency.
+    PressureRate,
 }
 
 macro_rules! units {
@@ -156,6 +158,8 @@ units! {
     MmHgMlPerKgMin "mm[Hg].mL/kg/min" "mmHg·mL/kg/min" CirculatoryPower 1.0;
     /// mmol/L.
     MmolPerL "mmol/L" "mmol/L" Molarity 1.0;
+    /// mmHg per minute (heart rate times pressure).
+    MmHgPerMin "mm[Hg]/min" "mmHg/min" PressureRate 1.0;
 }
 
 impl Unit {
