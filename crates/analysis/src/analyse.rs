@@ -9,8 +9,8 @@ use crate::results::Results;
 use crate::settings::Settings;
 use crate::stage::Stage;
 use crate::{
-    clean, effort, fick, o2_pulse, oscillation, peak, phases, predicted, reasoning, recovery,
-    reserve, slopes, table, thresholds,
+    clean, effort, fick, o2_pulse, oscillation, peak, phases, predicted, quality, reasoning,
+    recovery, reserve, samples, slopes, table, thresholds,
 };
 
 /// Derives everything from the recording and the reader's judgement. Pure and total: what cannot
@@ -29,6 +29,8 @@ pub fn derive(
     slopes::derive(&mut stage);
     table::derive(&mut stage);
     recovery::derive(&mut stage);
+    samples::derive(&mut stage);
+    quality::derive(&mut stage);
 
     predicted::derive(&mut stage);
     reserve::derive(&mut stage);

@@ -388,6 +388,8 @@ pub struct Results {
     pub outcomes: Vec<Outcome>,
     /// Doubts about the test as a whole.
     pub doubts: Vec<Note>,
+    /// Plausibility findings.
+    pub quality: Vec<crate::quality::Finding>,
     /// Averaged series for charts.
     pub series: Series,
     /// Marked breaths.
