@@ -159,17 +159,16 @@ fn shunt(stage: &Stage<'_>, detail: &FickDetail) -> Outcome {
     if stage.results.phases.ramp().is_none() {
         return Outcome::absent(id, At::Ramp, method, stage.no_ramp()).of_kind(Kind::Reading);
     }
-    match detail.shunt {
-        Some(step) => {
-            let outcome = Outcome::reading(id, At::Ramp, method, "present")
-                .doubting(Note::new("shunt-published-in-pulmonary-hypertension"))
-                .based_on((step.t_s - 40.0, step.t_s + 75.0), 0);
-            match step.spo2 {
-                Some(change) if change <= -2.0 => outcome,
-                Some(_) => outcome.doubting(Note::new("shunt-without-desaturation")),
-                None => outcome.doubting(Note::new("spo2-not-confirmed")),
-            }
-        }
-        None => Outcome::reading(id, At::Ramp, method, "absent"),
-    }
+    let Some(step) = detail.shunt else {
+        return Outcome::reading(id, At::Ramp, method, "absent");
+    };
+    // The gas step alone is also what voluntary or pain hyperventilation and a leak look like.
+    let (word, doubt) = match step.spo2 {
+        Some(change) if change <= -2.0 => ("present", "shunt-published-in-pulmonary-hypertension"),
+        Some(_) => ("indeterminate", "shunt-without-desaturation"),
+        None => ("indeterminate", "spo2-not-confirmed"),
+    };
+    Outcome::reading(id, At::Ramp, method, word)
+        .doubting(Note::new(doubt))
+        .based_on((step.t_s - 40.0, step.t_s + 75.0), 0)
 }

@@ -12,10 +12,12 @@ use crate::quantity::Quantity;
 const BEFORE: (f64, f64) = (-40.0, -5.0);
 const AFTER: (f64, f64) = (10.0, 40.0);
 const LATER: (f64, f64) = (40.0, 75.0);
+/// Window of RER after the step: CO₂ is washed out at once, then its stores settle.
+const AFTER_RER: (f64, f64) = (0.0, 25.0);
 /// Window that gives the drift before the step.
 const EARLIER: (f64, f64) = (-90.0, -50.0);
 /// Smallest steps: PETCO₂ and PETO₂, mmHg; RER.
-const STEP: (f64, f64, f64) = (3.0, 4.0, 0.05);
+const STEP: (f64, f64, f64) = (4.0, 4.0, 0.04);
 /// Part of the step that must remain a minute later.
 const REMAINS: f64 = 0.6;
 
@@ -32,20 +34,25 @@ fn median(b: &Breaths, q: impl Fn(usize) -> Option<f64>, at_s: f64, w: (f64, f64
     Some(0.5 * (x[(x.len() - 1) / 2] + x[x.len() / 2]))
 }
 
-/// Step beyond the drift that was there before, and what remains of it later. Positive = up.
-fn step(b: &Breaths, q: &impl Fn(usize) -> Option<f64>, at_s: f64) -> Option<(f64, f64)> {
+/// Rise into the window `after`, less what the drift before the step already promised in that
+/// direction (a drift the other way is not held in the step's favour).
+fn rise(
+    b: &Breaths,
+    q: &impl Fn(usize) -> Option<f64>,
+    at_s: f64,
+    after: (f64, f64),
+) -> Option<f64> {
     let mid = |w: (f64, f64)| 0.5 * (w.0 + w.1);
     let (earlier, before) = (median(b, q, at_s, EARLIER)?, median(b, q, at_s, BEFORE)?);
-    let (after, later) = (median(b, q, at_s, AFTER)?, median(b, q, at_s, LATER)?);
-    let drift = (before - earlier) / (mid(BEFORE) - mid(EARLIER));
-    let jump = |value: f64, w: (f64, f64)| value - before - drift * (mid(w) - mid(BEFORE));
-    Some((jump(after, AFTER), jump(later, LATER)))
+    let drift = ((before - earlier) / (mid(BEFORE) - mid(EARLIER))).max(0.0);
+    Some(median(b, q, at_s, after)? - before - drift * (mid(after) - mid(BEFORE)))
 }
 
 /// Looks for the signature between two times; `None` where a channel is missing or nothing is
 /// found. `spo2_usable` = the oximeter trace was confirmed.
 pub(crate) fn find(b: &Breaths, window: (f64, f64), spo2_usable: bool) -> Option<ShuntStep> {
-    let petco2 = |i: usize| b.value(Quantity::Petco2, i);
+    // Upside down, so that all three rise.
+    let petco2 = |i: usize| b.value(Quantity::Petco2, i).map(|x| -x);
     let peto2 = |i: usize| b.value(Quantity::Peto2, i);
     let rer = |i: usize| Some(b.value(Quantity::Vco2, i)? / b.value(Quantity::Vo2, i)?);
     let spo2 = |i: usize| b.value(Quantity::Spo2, i);
@@ -53,28 +60,28 @@ pub(crate) fn find(b: &Breaths, window: (f64, f64), spo2_usable: bool) -> Option
     let seconds = (window.1 - LATER.1 - window.0 + EARLIER.0) / 5.0;
     for k in 0..libm::floor(seconds).max(0.0) as usize {
         let t_s = window.0 - EARLIER.0 + 5.0 * k as f64;
-        let steps = (step(b, &petco2, t_s), step(b, &peto2, t_s), step(b, &rer, t_s));
-        let (Some(co2), Some(o2), Some(r)) = steps else { continue };
-        let sustained = |(now, later): (f64, f64), least: f64| {
-            now >= least && later >= REMAINS * now.min(2.0 * least)
+        let at = |after| -> Option<(f64, f64)> {
+            Some((rise(b, &petco2, t_s, after)?, rise(b, &peto2, t_s, after)?))
         };
-        let co2 = (-co2.0, -co2.1);
-        if !(sustained(co2, STEP.0) && sustained(o2, STEP.1) && sustained(r, STEP.2)) {
+        let (Some(now), Some(later)) = (at(AFTER), at(LATER)) else { continue };
+        let Some(r) = rise(b, &rer, t_s, AFTER_RER) else { continue };
+        let stays = |now: f64, later: f64, least: f64| now >= least && later >= REMAINS * least;
+        if !(stays(now.0, later.0, STEP.0) && stays(now.1, later.1, STEP.1) && r >= STEP.2) {
             continue;
         }
-        let size = co2.0 / STEP.0 + o2.0 / STEP.1 + r.0 / STEP.2;
+        let size = now.0 / STEP.0 + now.1 / STEP.1 + r / STEP.2;
         if best.as_ref().is_none_or(|(top, _)| size > *top) {
             let saturation = spo2_usable
                 .then(|| Some(median(b, spo2, t_s, LATER)? - median(b, spo2, t_s, BEFORE)?))
                 .flatten();
-            let found = ShuntStep { t_s, petco2: -co2.0, peto2: o2.0, rer: r.0, spo2: saturation };
+            let found = ShuntStep { t_s, petco2: -now.0, peto2: now.1, rer: r, spo2: saturation };
             best = Some((size, found));
         }
     }
     best.map(|(_, found)| ShuntStep { t_s: sharpest(b, petco2, found.t_s), ..found })
 }
 
-/// The instant within ± 30 s at which `q` falls most from the 12 s before to the 12 s after:
+/// The instant within ± 30 s at which `q` rises most from the 12 s before to the 12 s after:
 /// wide windows tell that there is a step, short ones when.
 fn sharpest(b: &Breaths, q: impl Fn(usize) -> Option<f64>, near_s: f64) -> f64 {
     let end = b.end_s();
@@ -87,9 +94,9 @@ fn sharpest(b: &Breaths, q: impl Fn(usize) -> Option<f64>, near_s: f64) -> f64 {
     for k in -15..=15 {
         let t = near_s + 2.0 * f64::from(k);
         if let (Some(before), Some(after)) = (mean(t - 12.0, t), mean(t, t + 12.0))
-            && before - after > best.0
+            && after - before > best.0
         {
-            best = (before - after, t);
+            best = (after - before, t);
         }
     }
     best.1
