@@ -15,10 +15,12 @@ pub mod picture;
 pub mod preferences;
 pub mod ribbon;
 pub mod shell_eframe;
+pub mod shown;
 pub mod theme;
 pub mod values;
 pub mod view_state;
 pub mod views;
 pub mod widgets;
+pub mod words;
 
 pub use app::App;

@@ -122,7 +122,7 @@ fn diamond(
     }
 }
 
-fn grip(ui: &Ui, cx: &Context<'_>, ribbon: Rect, x: f32, handle: &Handle) {
+pub(crate) fn grip(ui: &Ui, cx: &Context<'_>, ribbon: Rect, x: f32, handle: &Handle) {
     let t = cx.tokens;
     let held = cx.view.drag.is_some_and(|d| d.kind == handle.kind);
     let active = held || hovered(ui, handle);
@@ -148,7 +148,7 @@ fn focus_ring(ui: &Ui, cx: &Context<'_>, rect: Rect) {
 }
 
 /// The focusable slider of a handle.
-fn slider(ui: &mut Ui, cx: &Context<'_>, ribbon: Rect, scale: &Scale, handle: &Handle) {
+pub(crate) fn slider(ui: &mut Ui, cx: &Context<'_>, ribbon: Rect, scale: &Scale, handle: &Handle) {
     let x = scale.place(handle.t_s).clamp(ribbon.left(), ribbon.right());
     let rect = Rect::from_center_size(pos2(x, ribbon.center().y), vec2(12.0, ribbon.height()));
     let response = ui.interact(rect, slider_id(handle.kind), Sense::FOCUSABLE);

@@ -59,7 +59,13 @@ pub fn show(
     Geometry { column: index, scale, span: column.span() }
 }
 
-fn frame_input(ui: &Ui, cx: &Context<'_>, out: &mut Outbox, scale: &Scale, response: &Response) {
+pub(crate) fn frame_input(
+    ui: &Ui,
+    cx: &Context<'_>,
+    out: &mut Outbox,
+    scale: &Scale,
+    response: &Response,
+) {
     let whole = cx.whole();
     if response.double_clicked() {
         out.push(Command::Zoom(None));
@@ -121,7 +127,7 @@ fn zoom_stretch(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale) {
 }
 
 /// The line of a handle through all frames.
-fn vertical(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale, handle: &Handle) {
+pub(crate) fn vertical(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale, handle: &Handle) {
     if !scale.holds(handle.t_s) {
         return;
     }
@@ -169,7 +175,7 @@ pub fn hovered(ui: &Ui, handle: &Handle) -> bool {
     })
 }
 
-fn cursor(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale, charts: &[Chart]) {
+pub(crate) fn cursor(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale, charts: &[Chart]) {
     let t_s = cx.cursor();
     let Some(first) = column.frames.first() else {
         return;
@@ -197,7 +203,7 @@ fn cursor(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale, charts: &[C
 }
 
 /// The label of the handle that is held, hovered or focused: its rectangle and words.
-fn active_label(
+pub(crate) fn active_label(
     ui: &Ui,
     cx: &Context<'_>,
     column: &Column,
@@ -232,7 +238,7 @@ fn active_label(
     Some((Rect::from_min_size(pos2(left, top), vec2(wide, 20.0)), words))
 }
 
-fn yellow_label(ui: &mut Ui, cx: &Context<'_>, rect: Rect, words: &str) {
+pub(crate) fn yellow_label(ui: &mut Ui, cx: &Context<'_>, rect: Rect, words: &str) {
     let t = cx.tokens;
     let rect = rect.translate(vec2(0.0, -4.0));
     ui.painter().rect(
@@ -247,7 +253,7 @@ fn yellow_label(ui: &mut Ui, cx: &Context<'_>, rect: Rect, words: &str) {
 }
 
 /// Pointer areas of the handles, over everything else in the column.
-fn areas(
+pub(crate) fn areas(
     ui: &mut Ui,
     cx: &Context<'_>,
     _out: &mut Outbox,

@@ -109,7 +109,8 @@ pub fn stroke(points: &[Pos2], stroke: Stroke, dash: Option<Dash>, shapes: &mut 
     }
 }
 
-fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape>) {
+/// Adds one mark.
+pub fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape>) {
     let square = egui::Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
     let thin = Stroke::new(1.0, color);
     match mark {

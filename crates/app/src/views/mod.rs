@@ -1,5 +1,6 @@
 //! One file per view, named by it.
 
+pub mod circulation;
 pub mod empty;
 pub mod overlay;
 pub mod series;
@@ -19,6 +20,7 @@ use crate::widgets::text;
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<Geometry> {
     match cx.view.view {
         View::TimeCourse => time_course::show(ui, cx, out, rect),
+        View::Circulation => circulation::show(ui, cx, out, rect),
         other => {
             let at = pos2(rect.left() + 16.0, rect.top() + 32.0);
             text::plain(ui, at, Align::Min, other.name(), size::TITLE, cx.tokens.ink);
