@@ -42,7 +42,7 @@ pub fn derive(
 }
 
 /// Phases, cleaned breaths, averages and the series of the increments.
-fn prepare<'a>(
+pub(crate) fn prepare<'a>(
     recording: &'a Recording,
     facts: &'a Facts,
     decisions: &'a Decisions,

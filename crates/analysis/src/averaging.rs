@@ -57,7 +57,18 @@ impl Timeline {
     }
 
     fn place(&self, t_s: f64) -> Place {
-        let breath = self.end.partition_point(|e| *e <= t_s);
+        self.place_from(self.end.partition_point(|e| *e <= t_s), t_s)
+    }
+
+    /// The same for rising instants, going on from where the last one fell.
+    fn place_after(&self, last: &mut usize, t_s: f64) -> Place {
+        while self.end.get(*last).is_some_and(|e| *e <= t_s) {
+            *last += 1;
+        }
+        self.place_from(*last, t_s)
+    }
+
+    fn place_from(&self, breath: usize, t_s: f64) -> Place {
         let inside_s = self.start.get(breath).map_or(0.0, |s| (t_s - s).max(0.0));
         Place { breath, inside_s }
     }
@@ -159,13 +170,29 @@ impl Means {
 
     /// Mean of `quantity` over `window` (s), where at least half of it is covered.
     pub fn over(&self, quantity: Quantity, window: (f64, f64)) -> Option<f64> {
-        self.over_covered(quantity, window, COVERED_SHARE)
-    }
-
-    fn over_covered(&self, quantity: Quantity, window: (f64, f64), share: f64) -> Option<f64> {
         let mean = self.of.get(&quantity)?;
         let (from, to) = (self.timeline.place(window.0), self.timeline.place(window.1));
-        mean.mean(from, to, share * (window.1 - window.0))
+        mean.mean(from, to, COVERED_SHARE * (window.1 - window.0))
+    }
+
+    /// Means over `width_s` (cut at the ends of `within`) about each second of `within`.
+    pub fn each_second(
+        &self,
+        quantity: Quantity,
+        width_s: f64,
+        within: (f64, f64),
+    ) -> Vec<Option<f64>> {
+        let Some(mean) = self.of.get(&quantity) else { return Vec::new() };
+        let mut ends = (0, 0);
+        whole_steps(within.0, within.1, 1.0)
+            .map(|t| {
+                let from = (t - width_s / 2.0).max(within.0);
+                let to = (t + width_s / 2.0).min(within.1);
+                let a = self.timeline.place_after(&mut ends.0, from);
+                let b = self.timeline.place_after(&mut ends.1, to);
+                mean.mean(a, b, COVERED_SHARE * (to - from))
+            })
+            .collect()
     }
 
     /// Number of breaths that reach into `window`.
@@ -209,11 +236,13 @@ impl Means {
             return None;
         }
         let mut best: Option<(f64, (f64, f64))> = None;
+        let mut ends = (0, 0);
         // The last window ends exactly at the end of `within`, wherever the grid falls.
         for k in 0..=(steps as usize + 1) {
             let from = within.0 + (k as f64).min(steps);
             let window = (from, from + width_s);
-            let (a, b) = (self.timeline.place(window.0), self.timeline.place(window.1));
+            let a = self.timeline.place_after(&mut ends.0, window.0);
+            let b = self.timeline.place_after(&mut ends.1, window.1);
             if let Some(x) = mean.mean(a, b, 0.8 * width_s)
                 && best.is_none_or(|(y, _)| sign * x > sign * y)
             {
@@ -227,11 +256,13 @@ impl Means {
     /// tied.
     pub fn series(&self, averaging: Averaging, anchor_s: f64) -> Series {
         let windows = self.windows(averaging, anchor_s);
+        let mut ends = (0, 0);
         let places: Vec<(Place, Place, f64)> = windows
             .iter()
             .map(|(_, from, to)| {
                 let needed = COVERED_SHARE * (to - from);
-                (self.timeline.place(*from), self.timeline.place(*to), needed)
+                let a = self.timeline.place_after(&mut ends.0, *from);
+                (a, self.timeline.place_after(&mut ends.1, *to), needed)
             })
             .collect();
         let in_gap: Vec<bool> = windows

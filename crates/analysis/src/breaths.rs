@@ -123,6 +123,13 @@ impl Breaths {
         self.columns.get(&quantity).is_some_and(|c| c.iter().any(Option::is_some))
     }
 
+    /// Sets the column of `quantity`; a column of another length is ignored.
+    pub(crate) fn set(&mut self, quantity: Quantity, column: Column) {
+        if column.len() == self.len() {
+            self.columns.insert(quantity, column);
+        }
+    }
+
     /// The same breaths with only the columns of `quantities`.
     #[must_use]
     pub fn only(&self, quantities: &[Quantity]) -> Self {

@@ -50,7 +50,12 @@ pub(crate) fn clean(recording: &Recording, excluded: &[Exclusion], events: &[Eve
             None => kept.push(group),
         }
     }
-    Cleaned { breaths: regroup(raw, &kept), rows: kept, flags }
+    let mut breaths = regroup(raw, &kept);
+    if !recording.load.t_s.is_empty() {
+        let held = (0..breaths.len()).map(|i| recording.load.at(breaths.mid_s(i))).collect();
+        breaths.set(Quantity::WorkRate, held);
+    }
+    Cleaned { breaths, rows: kept, flags }
 }
 
 /// Merges errant breaths with the next two, looking within rest and warm-up, the increments and

@@ -56,34 +56,90 @@ fn known(
 }
 
 /// Breaths outside k·s·√(1 + 1/n) of the line through their neighbours, `skip` left out of lines.
+/// s = 1.4826 × the median absolute residual of the neighbours.
 fn outside(t: &[f64], x: &[f64], skip: &[bool], k: f64) -> Vec<bool> {
     let n = x.len();
-    let mut residuals: Vec<f64> = Vec::with_capacity(2 * NEIGHBOURS);
+    let mut window = Window::default();
+    // A skipped breath compares as false.
+    let counted: Vec<f64> =
+        x.iter().zip(skip).map(|(x, skip)| if *skip { f64::NAN } else { *x }).collect();
     (0..n)
         .map(|i| {
-            let from =
-                t[..i].partition_point(|s| *s < t[i] - HALF_S).max(i.saturating_sub(NEIGHBOURS));
-            let to = (i + t[i..].partition_point(|s| *s <= t[i] + HALF_S)).min(i + NEIGHBOURS + 1);
-            let used = |j: &usize| *j != i && !skip[*j];
-            let mut s = [0.0; 5];
-            for j in (from..to).filter(used) {
-                let u = t[j] - t[i];
-                for (sum, term) in s.iter_mut().zip([1.0, u, u * u, x[j], u * x[j]]) {
-                    *sum += term;
-                }
-            }
-            let [count, su, suu, sx, sux] = s;
+            window.move_to(t, x, skip, i);
+            // Sums of the neighbours alone, times counted from breath i.
+            let [count, su, suu, sx, sux] = window.without(t, x, skip, i);
             if (count as usize) < FEWEST {
                 return false;
             }
             let slope = (sux - su * sx / count) / (suu - su * su / count);
             let here = sx / count - slope * su / count;
-            residuals.clear();
-            residuals.extend((from..to).filter(used).map(|j| x[j] - here - slope * (t[j] - t[i])));
-            let scale = robust::scale(&mut residuals);
-            (x[i] - here).abs() > k * scale * (1.0 + 1.0 / count).sqrt()
+            let from_line = |t_j: f64, x_j: f64| (x_j - here - slope * (t_j - t[i])).abs();
+            let band = k * robust::MAD_TO_SD * (1.0 + 1.0 / count).sqrt();
+            // |r| > band × median ⇔ the median lies below |r| / band: counting is enough. Breath i
+            // itself never counts, since band > 1.
+            let limit = from_line(t[i], x[i]) / band;
+            let near = t[window.from..window.to].iter().zip(&counted[window.from..window.to]);
+            let below: usize =
+                near.clone().map(|(t, x)| usize::from(from_line(*t, *x) < limit)).sum();
+            if 2 * below != count as usize {
+                return 2 * below > count as usize;
+            }
+            let own = counted[i];
+            let mut all: Vec<f64> = near.map(|(t, x)| from_line(*t, *x)).collect();
+            if own.is_finite() {
+                all.swap_remove(i - window.from);
+            }
+            all.retain(|r| r.is_finite());
+            robust::median(&mut all) < limit
         })
         .collect()
+}
+
+/// Neighbourhood of a breath with its running sums of 1, t, t², x, t·x.
+#[derive(Default)]
+struct Window {
+    from: usize,
+    to: usize,
+    origin: f64,
+    sums: [f64; 5],
+}
+
+impl Window {
+    fn move_to(&mut self, t: &[f64], x: &[f64], skip: &[bool], i: usize) {
+        if i == 0 || t[i] - self.origin > 200.0 {
+            // Keeps the sums well conditioned in long records.
+            self.origin = t[i];
+            self.sums = [0.0; 5];
+            for j in self.from..self.to {
+                self.add(t, x, skip, j, 1.0);
+            }
+        }
+        while self.to < t.len() && t[self.to] <= t[i] + HALF_S && self.to <= i + NEIGHBOURS {
+            self.add(t, x, skip, self.to, 1.0);
+            self.to += 1;
+        }
+        while t[self.from] < t[i] - HALF_S || self.from + NEIGHBOURS < i {
+            self.add(t, x, skip, self.from, -1.0);
+            self.from += 1;
+        }
+    }
+
+    fn add(&mut self, t: &[f64], x: &[f64], skip: &[bool], j: usize, sign: f64) {
+        if !skip[j] {
+            let u = t[j] - self.origin;
+            for (sum, term) in self.sums.iter_mut().zip([1.0, u, u * u, x[j], u * x[j]]) {
+                *sum += sign * term;
+            }
+        }
+    }
+
+    /// The sums without breath `i`, times counted from it.
+    fn without(&self, t: &[f64], x: &[f64], skip: &[bool], i: usize) -> [f64; 5] {
+        let u = t[i] - self.origin;
+        let own = if skip[i] { [0.0; 5] } else { [1.0, u, u * u, x[i], u * x[i]] };
+        let [n, su, suu, sx, sux] = core::array::from_fn(|k| self.sums[k] - own[k]);
+        [n, su - n * u, suu - 2.0 * u * su + n * u * u, sx, sux - u * sx]
+    }
 }
 
 /// Groups of rows in which each errant breath is joined with the next two, never across the end

@@ -68,16 +68,11 @@ impl Oscillation {
 
 /// Looks for cycles of V̇E over `exercise` (s) given resting V̇E.
 pub(crate) fn find(means: &Means, exercise: (f64, f64), resting: Option<f64>) -> Oscillation {
-    let grid = (exercise.1 - exercise.0).floor().clamp(0.0, 100_000.0) as usize;
-    let value = |k: usize, width: f64| {
-        let t = exercise.0 + k as f64;
-        let window = ((t - width / 2.0).max(exercise.0), (t + width / 2.0).min(exercise.1));
-        means.over(Quantity::Ve, window)
-    };
-    let ve: Vec<Option<f64>> = (0..=grid).map(|k| value(k, SMOOTH_S)).collect();
+    let ve = means.each_second(Quantity::Ve, SMOOTH_S, exercise);
+    let trend = means.each_second(Quantity::Ve, TREND_S, exercise);
+    let level: Vec<f64> = trend.iter().map(|m| m.unwrap_or(0.0)).collect();
     let about: Vec<f64> =
-        (0..=grid).map(|k| ve[k].zip(value(k, TREND_S)).map_or(0.0, |(x, m)| x - m)).collect();
-    let level: Vec<f64> = (0..=grid).map(|k| value(k, TREND_S).unwrap_or(0.0)).collect();
+        ve.iter().zip(&trend).map(|(x, m)| x.zip(*m).map_or(0.0, |(x, m)| x - m)).collect();
     let turns = turning_points(&about, &level);
     let cycles = cycles(&turns, &level, exercise.0);
     let swing: Vec<f64> =

@@ -75,7 +75,8 @@ pub(crate) fn equal_curves(points: &[Point]) -> Vec<f64> {
     }
     let step = if high - low > 12.0 { 4.0 } else { 2.0 };
     let from = (libm::floor(low / step) * step).max(step);
-    let count = libm::ceil((high + step - from) / step) as usize + 1;
+    // Beyond every plausible O₂ pulse no curve helps.
+    let count = libm::ceil((high + step - from) / step).clamp(0.0, 40.0) as usize + 1;
     (0..count).map(|k| from + step * k as f64).collect()
 }
 
