@@ -14,7 +14,7 @@ pub mod panels;
 pub mod picture;
 pub mod preferences;
 pub mod ribbon;
-pub mod shell_eframe;
+pub mod shell;
 pub mod shown;
 pub mod theme;
 pub mod values;
