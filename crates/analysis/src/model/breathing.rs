@@ -126,11 +126,12 @@ fn errant(plan: &Plan, rng: &mut Rng) -> Errant {
 
 fn draw(plan: &Plan, now: &Instant, ve_drift: f64, kind: Errant, rng: &mut Rng) -> Drawn {
     let n = &plan.noise;
-    let depth_sd = 0.075 * n.breath + n.irregular;
+    let depth_sd = 0.08 * n.breath + n.irregular;
     let (a, b) = (rng.normal(), rng.normal());
     // Deep breaths last longer: correlation 0.6 of depth and duration.
     let depth = depth_sd * a;
-    let time = (0.075 * n.breath + 0.8 * n.irregular) * (0.6 * a + 0.8 * b);
+    let time_sd = 0.08 * n.breath + 0.8 * n.irregular;
+    let time = time_sd * (0.6 * a + 0.8 * b) - 0.5 * time_sd * time_sd;
     let mut vt_ml = now.vt * 1000.0 * libm::exp(depth + ve_drift - 0.5 * depth_sd * depth_sd);
     let mut duration_s = 60.0 * now.vt / now.ve * libm::exp(time);
     match kind {
@@ -145,7 +146,7 @@ fn draw(plan: &Plan, now: &Instant, ve_drift: f64, kind: Errant, rng: &mut Rng) 
         _ => {}
     }
     vt_ml = vt_ml.clamp(180.0, 5200.0);
-    let wander = (45.0 * n.breath + 120.0 * n.irregular) * rng.normal();
+    let wander = (75.0 * n.breath + 120.0 * n.irregular) * rng.normal();
     let next_eelv_ml = (plan.ventilation.eelv * 1000.0 + wander).max(900.0);
     Drawn { vt_ml, duration_s: duration_s.max(0.6), next_eelv_ml }
 }
@@ -205,9 +206,10 @@ pub fn breaths(plan: &Plan, response: &Response) -> Vec<Breath> {
             break;
         }
         let loss = if kind == Errant::Leak { rng.between(0.55, 0.8) } else { 1.0 };
-        let m = 0.02 * plan.noise.breath;
-        let vo2 = gas.vo2 * loss * (1.0 + gas_drift + vo2_drift + m * rng.t_unit(5));
-        let vco2 = gas.vco2 * loss * (1.0 + gas_drift + m * rng.t_unit(5));
+        let m = 0.021 * plan.noise.breath;
+        let both = m * rng.t_unit(5);
+        let vo2 = gas.vo2 * loss * (1.0 + gas_drift + vo2_drift + both + m * rng.t_unit(5));
+        let vco2 = gas.vco2 * loss * (1.0 + gas_drift + both + 0.6 * m * rng.t_unit(5));
         let pet_gap = now.pet_gap;
         let petco2 = lung.fco2 * DRY_MMHG + pet_gap + 0.5 * plan.noise.breath * rng.normal();
         let rer = (now.vco2 / now.vo2).max(0.5);
@@ -225,7 +227,7 @@ pub fn breaths(plan: &Plan, response: &Response) -> Vec<Breath> {
             peto2,
             petco2,
             hr: heart(plan, &now, hr_drift, &mut beat),
-            spo2: (now.spo2 + 0.35 * beat.normal()).min(100.0),
+            spo2: (now.spo2 + 0.35 * plan.noise.hr * beat.normal()).min(100.0),
         });
     }
     if plan.noise.smoothed > 1 { smoothed(&out, plan.noise.smoothed) } else { out }

@@ -9,5 +9,6 @@ pub mod course_sim;
 pub mod demo;
 pub mod mean;
 pub mod plan;
+pub mod population;
 pub mod rng;
 pub mod test;

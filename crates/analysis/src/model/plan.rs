@@ -181,6 +181,22 @@ pub struct Plan {
     pub noise: Noise,
 }
 
+impl Noise {
+    /// No noise at all: breaths by the mean response, one after the other.
+    pub const SILENT: Self = Self {
+        breath: 0.0,
+        drift: 0.0,
+        sighs: 0.0,
+        swallows: 0.0,
+        leaks: 0.0,
+        irregular: 0.0,
+        hr: 0.0,
+        hr_irregular: 0.0,
+        smoothed: 1,
+        spo2_gap: None,
+    };
+}
+
 impl Schedule {
     /// Start of warm-up, s.
     #[must_use]

@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use super::breathing::{Breath, breaths};
 use super::mean::Response;
-use super::plan::Plan;
+use super::plan::{Noise, Plan};
 use crate::breaths::{Breaths, Column};
 use crate::decisions::PhaseStarts;
 use crate::quantity::Quantity;
@@ -42,33 +42,39 @@ pub struct Truth {
 pub fn generate(plan: &Plan) -> (Recording, Truth) {
     let response = plan.response();
     let measured = breaths(plan, &response);
-    let clean: Vec<Breath> = measured.iter().map(|b| noise_free(&response, b)).collect();
-    let recording = recording(plan, &measured);
-    let noise_free = self::recording(plan, &clean);
+    let silent = breaths(&Plan { noise: Noise::SILENT, ..*plan }, &response);
+    let clean: Vec<Breath> = measured.iter().map(|b| noise_free(&silent, b)).collect();
+    let recording = recording(plan, &measured, libm::round);
+    let noise_free = self::recording(plan, &clean, |x| x);
     let truth = truth(plan, &response, noise_free);
     (recording, truth)
 }
 
-/// The response over the time of one measured breath, without noise.
-fn noise_free(response: &Response, breath: &Breath) -> Breath {
-    let now = response.at(breath.end_s - 0.5 * breath.duration_s);
-    let pio2 = 0.2093 * 713.0;
-    let rer = (now.vco2 / now.vo2).max(0.5);
+/// The silent breaths at the middle of a measured one: with the gas that a changing lung store
+/// gives or takes, without noise.
+fn noise_free(silent: &[Breath], breath: &Breath) -> Breath {
+    let mid = |b: &Breath| b.end_s - 0.5 * b.duration_s;
+    let t = mid(breath);
+    let after = silent.partition_point(|b| mid(b) <= t).clamp(1, silent.len() - 1);
+    let (a, b) = (&silent[after - 1], &silent[after]);
+    let w = ((t - mid(a)) / (mid(b) - mid(a))).clamp(0.0, 1.0);
+    let mix = |f: fn(&Breath) -> f64| f(a) + w * (f(b) - f(a));
     Breath {
         end_s: breath.end_s,
         duration_s: breath.duration_s,
-        vo2: now.vo2,
-        vco2: now.vco2,
-        ve: now.ve,
-        vt: now.vt,
-        peto2: pio2 - (now.paco2 + 0.5 * now.pet_gap) * (0.2093 + 0.7907 / rer),
-        petco2: now.paco2 + now.pet_gap,
-        hr: now.hr,
-        spo2: now.spo2,
+        vo2: mix(|b| b.vo2),
+        vco2: mix(|b| b.vco2),
+        ve: mix(|b| b.ve),
+        vt: mix(|b| b.vt),
+        peto2: mix(|b| b.peto2),
+        petco2: mix(|b| b.petco2),
+        hr: mix(|b| b.hr),
+        spo2: mix(|b| b.spo2),
     }
 }
 
-fn recording(plan: &Plan, breaths: &[Breath]) -> Recording {
+/// As a table; `displayed` is what the monitor makes of HR and SpO₂.
+fn recording(plan: &Plan, breaths: &[Breath], displayed: fn(f64) -> f64) -> Recording {
     let column = |f: &dyn Fn(&Breath) -> Option<f64>| -> Column { breaths.iter().map(f).collect() };
     let gap = plan.noise.spo2_gap;
     let in_gap = |t: f64| gap.is_some_and(|(from, to)| t >= from && t < to);
@@ -79,10 +85,10 @@ fn recording(plan: &Plan, breaths: &[Breath]) -> Recording {
         (Quantity::Ve, column(&|b| Some(b.ve))),
         (Quantity::Vt, column(&|b| Some(b.vt))),
         (Quantity::Fr, column(&|b| Some(60.0 / b.duration_s))),
-        (Quantity::Hr, column(&|b| Some(libm::round(b.hr)))),
+        (Quantity::Hr, column(&|b| Some(displayed(b.hr)))),
         (Quantity::Peto2, column(&|b| Some(b.peto2))),
         (Quantity::Petco2, column(&|b| Some(b.petco2))),
-        (Quantity::Spo2, column(&|b| (!in_gap(b.end_s)).then(|| libm::round(b.spo2)))),
+        (Quantity::Spo2, column(&|b| (!in_gap(b.end_s)).then(|| displayed(b.spo2)))),
     ]
     .into();
     let end_s: Vec<f64> = breaths.iter().map(|b| b.end_s).collect();

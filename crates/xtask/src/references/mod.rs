@@ -2,6 +2,7 @@
 //! calibrated figures. Tables go to standard output and to `assets/references`.
 
 pub mod binomial;
+pub mod coverage;
 pub mod errors;
 mod pool;
 
@@ -21,6 +22,7 @@ pub fn run(args: &[String]) -> ExitCode {
     };
     let tuning = seeds.start < REPORTED_FROM;
     let text = match what {
+        "coverage" => coverage::report(seeds),
         "errors" => errors::report(seeds),
         other => {
             eprintln!("{other}: noise, coverage or errors");
