@@ -3,5 +3,6 @@
 //! They fail when it is missing; nothing here is skipped.
 
 mod browser;
+mod open_data;
 mod tools;
 mod window;

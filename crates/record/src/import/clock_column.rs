@@ -215,7 +215,8 @@ pub(super) fn rows_are(
     steps.sort_by(f64::total_cmp);
     let usual = steps[steps.len() / 2];
     let equal = steps.iter().filter(|s| (**s - usual).abs() <= 0.02 * usual).count();
-    if steps.len() >= 10 && equal as f64 >= CONSTANT * steps.len() as f64 {
+    let enough = if usual >= 5.0 { 4 } else { 10 };
+    if steps.len() >= enough && equal as f64 >= CONSTANT * steps.len() as f64 {
         return RowsAre::Averages { step_s: (usual * 1000.0).round() / 1000.0 };
     }
     RowsAre::Breaths

@@ -174,6 +174,8 @@ pub struct Header {
     pub name: Option<Name>,
     /// The unit text as written, if any.
     pub unit: String,
+    /// Whether the unit stands in a row of units, not in the header cell.
+    pub unit_below: bool,
     /// `stpd`, `btps` or `atps`, where stated.
     pub condition: Option<&'static str>,
 }
@@ -189,10 +191,11 @@ pub fn header(text: &str) -> Header {
     let (text, condition) = without_condition(text);
     for (name, unit) in splits(&text) {
         if let Some(found) = lookup(&name) {
-            return Header { name: Some(found), unit: unit.trim().to_owned(), condition };
+            let unit = unit.trim().to_owned();
+            return Header { name: Some(found), unit, unit_below: false, condition };
         }
     }
-    Header { name: None, unit: String::new(), condition }
+    Header { condition, ..Header::default() }
 }
 
 /// The condition words taken out, the first one found reported.

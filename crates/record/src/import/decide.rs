@@ -22,7 +22,6 @@ const DOUBTED: f64 = 0.5;
 /// The table as far as it is known when columns are decided.
 pub(super) struct Table<'a> {
     pub headers: &'a Row,
-    pub unit_row: Option<&'a Row>,
     pub layout: &'a Layout,
     /// Rows of values.
     pub rows: &'a [&'a Row],
@@ -148,7 +147,7 @@ fn decide(table: &Table, index: usize, head: &Header, cells: &[&str]) -> Decisio
     };
     match units::read(&head.unit, targets[0]) {
         UnitText::Nothing => unstated(table, index, targets, &numbers),
-        UnitText::Unit(unit) => stated(table, head, targets, unit, &numbers),
+        UnitText::Unit(unit) => stated(head, targets, unit, &numbers),
         UnitText::Clock | UnitText::Unknown => Decision::Ask(all_readings(targets)),
     }
 }
@@ -209,13 +208,7 @@ fn unstated(table: &Table, index: usize, targets: &[Target], numbers: &[f64]) ->
     }
 }
 
-fn stated(
-    table: &Table,
-    head: &Header,
-    targets: &[Target],
-    unit: Unit,
-    numbers: &[f64],
-) -> Decision {
+fn stated(head: &Header, targets: &[Target], unit: Unit, numbers: &[f64]) -> Decision {
     let vo2 = targets.contains(&Target::Quantity(Quantity::Vo2));
     if vo2 && unit.dimension() == Dimension::FlowPerMass {
         return Decision::Leave("per-mass");
@@ -237,9 +230,8 @@ fn stated(
         readings.extend(better.iter().map(|(r, _)| *r));
         return Decision::Ask(readings);
     }
-    let from_row = table.unit_row.is_some_and(|r| r.cells.iter().any(|c| c.contains(&head.unit)))
-        && !table.headers.cells.iter().any(|c| c.contains(&head.unit) && c != &head.unit);
-    Decision::Read(*reading, if from_row { Decided::UnitRow } else { Decided::Header })
+    let decided = if head.unit_below { Decided::UnitRow } else { Decided::Header };
+    Decision::Read(*reading, decided)
 }
 
 /// Two columns for one quantity: an answer wins; equal ones are one; different ones are asked.

@@ -176,13 +176,11 @@ pub(crate) fn implausible(column: &str, count: usize, low: f64, high: f64, unit:
 
 /// Warning: intervals that are no beats.
 pub(crate) fn not_beats(column: &str, count: usize) -> Problem {
-    let what = if count == 1 { "1 interval is" } else { "intervals are" };
-    let count = if count == 1 { String::new() } else { format!("{count} ") };
     Problem::new(
         "import-not-beats",
         format!("column “{column}”"),
         format!(
-            "{count}{what} shorter than 240 ms or longer than 2.5 s: not a beat; a long one is a gap."
+            "Intervals shorter than 240 ms or longer than 2.5 s: {count}. They are no beats; a long one is a gap."
         ),
         "Nothing; the heart rate does not use them.",
     )

@@ -56,7 +56,7 @@ pub struct Layout {
 /// No row names a time and another known column, or nothing follows it.
 pub fn find(rows: &[Row]) -> Result<Layout, Problem> {
     let parsed = rows.iter().take(SEARCH).map(headers_of);
-    let header = parsed.enumerate().find(|(i, h)| is_header(&rows[*i], h)).map(|(i, h)| (i, h));
+    let header = parsed.enumerate().find(|(i, h)| is_header(&rows[*i], h));
     let Some((header, mut headers)) = header else { return Err(issue::no_header()) };
     let (mut unit_row, mut first) = (None, header + 1);
     for (i, row) in rows.iter().enumerate().skip(header + 1).take(3) {
@@ -73,6 +73,7 @@ pub fn find(rows: &[Row]) -> Result<Layout, Problem> {
             head.condition = head.condition.or(condition);
             if head.unit.is_empty() && !number::is_missing(&unit) {
                 head.unit = unit;
+                head.unit_below = true;
                 unit_row = unit_row.or(Some(i));
             }
         }

@@ -16,6 +16,8 @@ mod layout;
 mod number;
 mod recipe;
 #[cfg(test)]
+mod robustness;
+#[cfg(test)]
 mod tests;
 mod time;
 mod units;
@@ -98,6 +100,9 @@ fn located(mut problem: Problem, name: &str) -> Problem {
 fn read(bytes: &[u8], answers: &Answers, profile: Option<&Profile>) -> Result<Imported, Problem> {
     let encoding = decode::sniff(bytes)?;
     let text = decode::decode(bytes, encoding);
+    if text.trim().is_empty() {
+        return Err(issue::empty());
+    }
     let separator = grid::sniff(&text);
     let rows = grid::split(&text, separator)?;
     let layout = layout::find(&rows)?;
@@ -152,7 +157,6 @@ impl Frame<'_> {
         let kept: Vec<&Row> = data.iter().map(|i| &rows[*i]).collect();
         let plan = decide::plan(&Table {
             headers: &rows[layout.header],
-            unit_row: layout.unit_row.map(|i| &rows[i]),
             layout,
             rows: &kept,
             times: &times,
