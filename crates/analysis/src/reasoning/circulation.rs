@@ -2,7 +2,7 @@
 
 use super::compose::{Draft, words};
 use super::rules::{self, Match};
-use super::seen::Seen;
+use super::seen::{Seen, low_in};
 use crate::facts::{Diagnosis, Facts};
 use crate::results::{Arg, At, Evidence, Note, Outcome, Section, Statement};
 use crate::stage::Stage;
@@ -13,6 +13,7 @@ pub(crate) fn draft(stage: &Stage<'_>) -> Vec<Statement> {
     let seen = Seen::of(stage);
     let found = rules::matches(&seen);
     let mut statements = vec![course(stage)];
+    statements.extend(magnitude(stage));
     statements.extend(pattern(stage, &found));
     statements.extend(explanations(stage.facts, &found));
     statements.extend(two_factors(stage));
@@ -76,6 +77,29 @@ fn with_onset(stage: &Stage<'_>, draft: Draft) -> Draft {
             rests_on: vec![("o2-pulse-onset".into(), At::Ramp)],
         }),
     }
+}
+
+/// O₂ pulse at peak against every set in range: low only if low in all of them.
+fn magnitude(stage: &Stage<'_>) -> Option<Statement> {
+    let id = "o2-pulse-at-peak";
+    let value = stage.results.number(id, At::Peak)?;
+    let (low, all) = low_in(stage, "predicted-o2-pulse-at-peak", value);
+    let code = match (low, all) {
+        (_, 0) => "pulse-not-compared",
+        (0, _) => "pulse-within-limits",
+        (low, all) if low == all => "pulse-low-in-all",
+        _ => "pulse-low-in-some",
+    };
+    let note = Note::new(code)
+        .with("value", Arg::Outcome(id, At::Peak))
+        .with("low", Arg::Count(low))
+        .with("sets", Arg::Count(all));
+    let draft =
+        Draft::new("o2-pulse-magnitude", Section::Circulation, note).resting_on(id, At::Peak);
+    Some(match all {
+        0 => draft.done(),
+        _ => draft.resting_on("predicted-o2-pulse-at-peak", At::Peak).done(),
+    })
 }
 
 /// The first pattern with what speaks for and against it.

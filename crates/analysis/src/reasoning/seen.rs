@@ -16,6 +16,7 @@ pub(crate) struct Seen {
     pub hr_accelerated: Option<bool>,
     pub rate_low: Option<bool>,
     pub rate_drug: Option<bool>,
+    pub submaximal: Option<bool>,
     pub ecg_change: Option<bool>,
     pub pressure_rise: Option<f64>,
     pub work_slope: Option<f64>,
@@ -62,6 +63,10 @@ impl Seen {
             hr_accelerated: below_zero("o2-pulse-deficit-hr-part"),
             rate_low: number("chronotropic-index", At::Peak).map(|x| x < limit),
             rate_drug: drug,
+            submaximal: results
+                .primary("effort", At::Test)
+                .and_then(Outcome::word)
+                .map(|w| w == "submaximal-without-limit"),
             ecg_change: facts.test.ecg.change,
             pressure_rise: pair("sys-bp", At::Rest, At::Peak).map(|(a, b)| b - a),
             work_slope: number("dvo2-dwr", At::Ramp),

@@ -77,6 +77,8 @@ signs! {
     RateLow "sign-rate-low" "sign-rate-not-low" ["chronotropic-index" Peak] |s| s.rate_low;
     /// A rate-slowing drug was taken.
     RateDrug "sign-rate-drug" "sign-no-rate-drug" [] |s| s.rate_drug;
+    /// Effort submaximal without a demonstrated limit.
+    Submaximal "sign-submaximal" "sign-not-submaximal" ["effort" Test] |s| s.submaximal;
     /// ECG change, read by a person.
     EcgChange "sign-ecg-change" "sign-no-ecg-change" [] |s| s.ecg_change;
     /// Systolic pressure rose less than 20 mmHg, or fell.

@@ -83,7 +83,16 @@ fn every_rule_has_its_positive_and_its_negative_case() {
             Seen { shunt: Some(false), spo2_fall: Some(8.0), ..flat() },
         ),
         ("pattern-terminal", Seen { terminal: Some(true), ..flat() }, flat()),
-        ("pattern-rate-limited", Seen { rate_low: Some(true), ..rising() }, rising()),
+        (
+            "pattern-rate-limited",
+            Seen { rate_low: Some(true), ..rising() },
+            Seen { rate_low: Some(true), submaximal: Some(true), ..rising() },
+        ),
+        (
+            "pattern-rate-limited-drug",
+            Seen { rate_low: Some(true), rate_drug: Some(true), ..rising() },
+            Seen { rate_drug: Some(true), ..rising() },
+        ),
         (
             "pattern-content-ceiling",
             Seen { hb_low: Some(true), ..low() },
