@@ -186,13 +186,8 @@ fn sentence(stage: &Stage<'_>, table: Option<&FactorTable>) -> Option<Note> {
 fn expected_rate(stage: &Stage<'_>) -> Option<rate::ExpectedRate> {
     let results = &stage.results;
     let rest = (results.number("vo2", At::Rest)?, results.number("hr", At::Rest)?);
-    let predicted = |ids: [&str; 2]| {
-        ids.iter().find_map(|id| results.number(id, At::Peak).or(results.number(id, At::Test)))
-    };
-    let peak = (
-        predicted(["predicted-vo2-peak", "predicted-vo2"])?,
-        predicted(["predicted-hr-peak", "predicted-hr"])?,
-    );
+    let predicted = |id: &str| results.number(id, At::Peak);
+    let peak = (predicted("predicted-vo2-peak")?, predicted("predicted-hr-peak")?);
     (peak.0 > rest.0 + 200.0 && peak.1 > rest.1 + 10.0).then_some(rate::ExpectedRate { rest, peak })
 }
 

@@ -83,7 +83,7 @@ fn with_onset(stage: &Stage<'_>, draft: Draft) -> Draft {
 fn magnitude(stage: &Stage<'_>) -> Option<Statement> {
     let id = "o2-pulse-at-peak";
     let value = stage.results.number(id, At::Peak)?;
-    let (low, all) = low_in(stage, "predicted-o2-pulse-at-peak", value);
+    let (low, all) = low_in(stage, "predicted-o2-pulse", value);
     let code = match (low, all) {
         (_, 0) => "pulse-not-compared",
         (0, _) => "pulse-within-limits",
@@ -98,7 +98,7 @@ fn magnitude(stage: &Stage<'_>) -> Option<Statement> {
         Draft::new("o2-pulse-magnitude", Section::Circulation, note).resting_on(id, At::Peak);
     Some(match all {
         0 => draft.done(),
-        _ => draft.resting_on("predicted-o2-pulse-at-peak", At::Peak).done(),
+        _ => draft.resting_on("predicted-o2-pulse", At::Peak).done(),
     })
 }
 

@@ -116,6 +116,6 @@ pub(crate) fn low_in(stage: &Stage<'_>, id: &str, value: f64) -> (usize, usize) 
 /// Low only if low in every set in range.
 fn pulse_low(stage: &Stage<'_>) -> Option<bool> {
     let value = stage.results.number("o2-pulse-at-peak", At::Peak)?;
-    let (low, all) = low_in(stage, "predicted-o2-pulse-at-peak", value);
+    let (low, all) = low_in(stage, "predicted-o2-pulse", value);
     (all > 0).then_some(low == all)
 }
