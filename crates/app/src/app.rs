@@ -4,6 +4,7 @@ use std::sync::{Arc, LazyLock};
 
 use analysis::recording::Recording;
 use egui::{Rect, Theme, Ui};
+use record::facts_file::FactsFile;
 
 use crate::chart::handles::{self, HandleKind};
 use crate::chart::interact;
@@ -44,10 +45,23 @@ impl App {
     #[must_use]
     pub fn on_demo() -> Self {
         let mut app = Self::new();
-        if let Some(recording) = crate::demo::recording(crate::demo::TABLE) {
-            app.document.open(recording, analysis::facts::Facts::default(), crate::demo::LABEL);
-        }
+        app.open_table(crate::demo::TABLE, crate::demo::NAME, crate::demo::facts());
         app
+    }
+
+    /// Opens a breath table; a refusal stands in the status line.
+    pub fn open_table(&mut self, bytes: &[u8], name: &str, facts: FactsFile) {
+        match crate::opening::table(bytes, name, facts) {
+            Ok(document) => self.show(document),
+            Err(problem) => self.view.status = Some(problem.to_string()),
+        }
+    }
+
+    /// Shows `document` from its beginning.
+    pub fn show(&mut self, document: Document) {
+        self.document = document;
+        self.derived = Derived::default();
+        self.view = ViewState { view: self.view.view, ..ViewState::default() };
     }
 
     /// Fonts and styles; every shell calls this once before the first frame.
@@ -140,9 +154,11 @@ impl App {
             drag.kind.set(&mut decisions, drag.t_s);
         }
         let open = self.document.recording().is_some();
+        let findings = self.document.findings(self.derived.shown());
         let mut cx = Context {
             recording,
             facts: self.document.facts(),
+            facts_file: self.document.facts_file(),
             decisions: &decisions,
             settings: self.document.settings(),
             results: self.derived.shown(),
@@ -151,6 +167,7 @@ impl App {
             tokens,
             grid,
             handles: &[],
+            findings: &findings,
             label: self.document.label(),
             open,
             signed: self.document.signed(),
@@ -198,5 +215,9 @@ fn paint(
     panels::value_strip::show(ui, cx, parts.strip);
     let geometry = views::show(ui, cx, out, parts.view);
     panels::findings::show(ui, cx, out, parts.sheet);
+    if cx.view.wide_findings {
+        let over = Rect::from_min_max(parts.strip.left_top(), parts.sheet.right_bottom());
+        panels::findings::wide(ui, cx, out, over);
+    }
     geometry
 }

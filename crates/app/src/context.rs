@@ -6,8 +6,11 @@ use analysis::recording::Recording;
 use analysis::results::Results;
 use analysis::settings::Settings;
 
+use record::facts_file::FactsFile;
+
 use crate::chart::handles::Handle;
 use crate::chart::layout::Grid;
+use crate::shown::Finding;
 use crate::theme::Tokens;
 use crate::view_state::ViewState;
 
@@ -17,6 +20,8 @@ pub struct Context<'a> {
     pub recording: &'a Recording,
     /// Facts.
     pub facts: &'a Facts,
+    /// Facts as the file format holds them, free text included.
+    pub facts_file: &'a FactsFile,
     /// Decisions, as a moving handle would have them.
     pub decisions: &'a Decisions,
     /// Settings.
@@ -33,6 +38,8 @@ pub struct Context<'a> {
     pub grid: Grid,
     /// Handles of the time axis.
     pub handles: &'a [Handle],
+    /// Statements.
+    pub findings: &'a [Finding],
     /// Label of the case.
     pub label: &'a str,
     /// Whether a test is open.

@@ -1,47 +1,33 @@
 //! The embedded demonstration test.
 
-use std::collections::BTreeMap;
+use record::facts_file::FactsFile;
 
-use analysis::breaths::{Breaths, Column};
-use analysis::quantity::Quantity as Q;
-use analysis::recording::{Recording, Trace};
+/// The invented normal test *Kittiwake*: its breath table.
+pub const TABLE: &[u8] = include_bytes!("../../../demo-sessions/kittiwake/table.csv");
 
-/// The invented normal test *Kittiwake*.
-pub const TABLE: &str = include_str!("../../../demo-sessions/kittiwake/table.csv");
+/// Its facts.
+pub const FACTS: &str = include_str!("../../../demo-sessions/kittiwake/facts.json");
 
-/// Its label.
-pub const LABEL: &str = "Kittiwake";
+/// Name under which the table is read.
+pub const NAME: &str = "kittiwake.csv";
 
-/// Reads the demonstration table by the columns it is known to have.
+/// Its facts; none where they cannot be read, which a test forbids.
 #[must_use]
-pub fn recording(table: &str) -> Option<Recording> {
-    const COLUMNS: [Q; 11] = [
-        Q::WorkRate,
-        Q::WorkRate,
-        Q::Vo2,
-        Q::Vco2,
-        Q::Ve,
-        Q::Vt,
-        Q::Fr,
-        Q::Hr,
-        Q::Peto2,
-        Q::Petco2,
-        Q::Spo2,
-    ];
-    let rows: Vec<Vec<Option<f64>>> = table
-        .lines()
-        .filter(|line| !line.starts_with('#'))
-        .skip(2)
-        .map(|line| line.split(',').map(|cell| cell.trim().parse().ok()).collect())
-        .collect();
-    let end_s: Vec<f64> =
-        rows.iter().map(|row| row.first().copied().flatten()).collect::<Option<_>>()?;
-    let mut columns: BTreeMap<Q, Column> = BTreeMap::new();
-    for (i, quantity) in COLUMNS.iter().enumerate().skip(2) {
-        columns.insert(*quantity, rows.iter().map(|r| r.get(i).copied().flatten()).collect());
+pub fn facts() -> FactsFile {
+    FactsFile::read(FACTS).unwrap_or_default()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_demonstration_test_is_whole() {
+        let facts = FactsFile::read(FACTS).expect("facts can be read");
+        assert_eq!(facts.identity.label.as_deref(), Some("Kittiwake"));
+        let answers = record::import::Answers::none();
+        let imported = record::import::import(TABLE, NAME, &answers, None).expect("is read");
+        assert!(imported.questions().is_empty());
+        assert!(imported.recording.breaths.len() > 300);
     }
-    let load = rows.iter().map(|r| r.get(1).copied().flatten().unwrap_or(0.0)).collect();
-    let load = Trace { t_s: end_s.clone(), value: load };
-    let breaths = Breaths::new(end_s, None, columns).ok()?;
-    Some(Recording { breaths, load, ..Recording::default() })
 }

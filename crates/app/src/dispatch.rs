@@ -73,19 +73,14 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::Edit(edit) => app.document.apply(edit),
         Command::Edits(edits) => edits.into_iter().for_each(|edit| app.document.apply(edit)),
         Command::Quit => ui.ctx().send_viewport_cmd(egui::ViewportCommand::Close),
-        Command::OpenDemo => open_demo(app),
+        Command::OpenDemo => {
+            app.open_table(crate::demo::TABLE, crate::demo::NAME, crate::demo::facts());
+        }
         Command::OpenPath(_)
         | Command::PickFile
         | Command::Save
         | Command::SaveTo(_)
         | Command::ExportTo(_) => {}
-    }
-}
-
-fn open_demo(app: &mut App) {
-    if let Some(recording) = crate::demo::recording(crate::demo::TABLE) {
-        app.document.open(recording, analysis::facts::Facts::default(), crate::demo::LABEL);
-        app.view = crate::view_state::ViewState::default();
     }
 }
 

@@ -1,12 +1,29 @@
 //! The open test: its source and the reader's judgement, changed by edits only.
 
+use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
 use analysis::decisions::{Decisions, Mark, Phase};
 use analysis::facts::Facts;
 use analysis::recording::Recording;
+use analysis::results::Results;
 use analysis::settings::{Averaging, Settings};
+use record::facts_file::FactsFile;
+
+use crate::shown::Finding;
+
+/// What the reader did with a statement.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Status {
+    /// Nothing yet.
+    #[default]
+    Draft,
+    /// Accepted.
+    Accepted,
+    /// Declined.
+    Declined,
+}
 
 /// A change of the session.
 #[derive(Clone, Debug, PartialEq)]
@@ -27,6 +44,20 @@ pub enum Edit {
     },
     /// Average so.
     SetAveraging(Averaging),
+    /// Accepts or declines a statement.
+    FindingStatus {
+        /// Which.
+        id: String,
+        /// What becomes of it.
+        status: Status,
+    },
+    /// The reader's own text of a statement.
+    FindingText {
+        /// Which.
+        id: String,
+        /// The text.
+        text: String,
+    },
     /// Draw the overlay or not.
     ShowOverlay(bool),
 }
@@ -40,6 +71,8 @@ impl Edit {
             Edit::SetMark { .. } => "Move mark",
             Edit::SetAveraging(_) => "Choose averaging",
             Edit::ShowOverlay(_) => "Predicted overlay",
+            Edit::FindingStatus { .. } => "Decide on statement",
+            Edit::FindingText { .. } => "Edit statement",
         }
     }
 }
@@ -49,6 +82,7 @@ struct Judgement {
     facts: Facts,
     decisions: Decisions,
     settings: Settings,
+    findings: BTreeMap<String, (Status, Option<String>)>,
 }
 
 /// The open test.
@@ -57,6 +91,7 @@ pub struct Document {
     recording: Option<Arc<Recording>>,
     label: String,
     path: Option<PathBuf>,
+    facts_file: FactsFile,
     now: Judgement,
     before: Vec<Judgement>,
     after: Vec<Judgement>,
@@ -64,15 +99,25 @@ pub struct Document {
 }
 
 impl Document {
-    /// Opens `recording` under `label`.
-    pub fn open(&mut self, recording: Recording, facts: Facts, label: impl Into<String>) {
-        self.recording = Some(Arc::new(recording));
-        self.label = label.into();
-        self.path = None;
-        self.now = Judgement { facts, ..Judgement::default() };
-        self.before.clear();
-        self.after.clear();
-        self.revision += 1;
+    /// A test just read.
+    #[must_use]
+    pub fn opened(recording: Recording, facts_file: FactsFile, name: &str) -> Self {
+        let (facts, identity, phases) = facts_file.to_analysis();
+        let decisions = Decisions { phases, ..Decisions::default() };
+        Self {
+            recording: Some(Arc::new(recording)),
+            label: identity.label.unwrap_or_else(|| name.to_owned()),
+            facts_file,
+            now: Judgement { facts, decisions, ..Judgement::default() },
+            revision: 1,
+            ..Self::default()
+        }
+    }
+
+    /// The facts as the file format holds them, free text included.
+    #[must_use]
+    pub fn facts_file(&self) -> &FactsFile {
+        &self.facts_file
     }
 
     /// Carries out `edit`.
@@ -83,6 +128,12 @@ impl Document {
             Edit::SetMark { mark: Mark::Vt1, t_s } => self.now.decisions.vt1_s = Some(t_s),
             Edit::SetMark { mark: Mark::Vt2, t_s } => self.now.decisions.vt2_s = Some(t_s),
             Edit::SetAveraging(a) => self.now.settings.averaging = a,
+            Edit::FindingStatus { id, status } => {
+                self.now.findings.entry(id).or_default().0 = status;
+            }
+            Edit::FindingText { id, text } => {
+                self.now.findings.entry(id).or_default().1 = Some(text);
+            }
             Edit::ShowOverlay(shown) => self.now.settings.overlay_shown = shown,
         }
         self.before.push(before);
@@ -134,6 +185,31 @@ impl Document {
     #[must_use]
     pub fn decisions(&self) -> &Decisions {
         &self.now.decisions
+    }
+
+    /// Statements as the sheet shows them.
+    #[must_use]
+    pub fn findings(&self, results: &Results) -> Vec<Finding> {
+        let texts = |list: &[analysis::results::Evidence]| {
+            list.iter().map(|e| crate::words::note(&e.note)).collect()
+        };
+        results
+            .statements
+            .iter()
+            .map(|s| {
+                let (status, text) = self.now.findings.get(s.id).cloned().unwrap_or_default();
+                Finding {
+                    id: s.id.to_owned(),
+                    section: s.section,
+                    status,
+                    text: text.unwrap_or_else(|| crate::words::note(&s.note)),
+                    stale: false,
+                    supports: texts(&s.supports),
+                    contradicts: texts(&s.contradicts),
+                    open: texts(&s.open),
+                }
+            })
+            .collect()
     }
 
     /// Settings.

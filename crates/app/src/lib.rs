@@ -10,6 +10,7 @@ pub mod describe;
 pub mod dispatch;
 pub mod document;
 pub mod headless;
+pub mod opening;
 pub mod panels;
 pub mod picture;
 pub mod preferences;

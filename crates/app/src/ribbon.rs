@@ -10,6 +10,7 @@ use crate::chart::layout::{Column, Scale};
 use crate::chart::ticks::clock;
 use crate::context::Context;
 use crate::theme::size;
+use crate::widgets::notes::Note;
 use crate::widgets::text::{self, Run};
 
 /// Draws the ribbon; the sliders stand on that of the first column.
@@ -179,23 +180,42 @@ pub fn notes(ui: &mut Ui, cx: &Context<'_>, column: &Column, scale: &Scale, side
         let at = pos2(rect.left() - 6.0, rect.top() + 14.0);
         text::plain(ui, at, Align::Max, "notes", size::BODY, t.ink2);
     }
-    let lane_height = rect.height() * 0.5;
-    let mut ends = [rect.left(), rect.left()];
-    for note in crate::widgets::notes::of_side(cx, side) {
-        if !scale.holds(note.t_s) {
-            continue;
-        }
+    let all: Vec<Note> = crate::widgets::notes::of_side(cx, side)
+        .into_iter()
+        .filter(|n| scale.holds(n.t_s))
+        .collect();
+    for note in &all {
         let x = scale.place(note.t_s);
-        ui.painter().vline(x, rect.top() - 2.0..=rect.top() + 4.0, Stroke::new(1.5, t.ink));
-        let run =
-            [Run::new(note.text.clone(), size::BODY, if note.strong { t.ink } else { t.ink2 })];
+        ui.painter().vline(x, rect.top() - 3.0..=rect.top() + 2.0, Stroke::new(1.5, t.ink));
+    }
+    let mut taken: [Vec<(f32, f32)>; 2] = [Vec::new(), Vec::new()];
+    // What may need action is placed first, in the lower lane; the rest takes what is left.
+    for note in all.iter().filter(|n| n.strong).chain(all.iter().filter(|n| !n.strong)) {
+        let x = scale.place(note.t_s);
+        let text = cut(&note.text, 34);
+        let ink = if note.strong { t.ink } else { t.ink2 };
+        let run = [Run::new(text, size::BODY, ink)];
         let wide = text::width(ui, &run);
         let left = (x + 4.0).min(rect.right() - wide - 2.0).max(rect.left() + 2.0);
-        let Some(lane) = (0..2).find(|lane| ends[*lane] <= left) else {
+        let free = |lane: usize| {
+            taken[lane].iter().all(|(a, b)| left + wide + 6.0 < *a || left > *b + 6.0)
+        };
+        let lanes = if note.strong { [1, 0] } else { [0, 1] };
+        let Some(lane) = lanes.into_iter().find(|lane| free(*lane)) else {
             continue;
         };
-        ends[lane] = left + wide + 8.0;
-        let base = rect.top() + lane_height * lane as f32 + lane_height * 0.5 + 5.0;
-        text::line(ui, pos2(left, base), Align::Min, &run);
+        taken[lane].push((left, left + wide));
+        let base = rect.top() + rect.height() * (0.5 * lane as f32 + 0.25) + 5.0;
+        text::line(ui, pos2(left, base), Align::Min, &run).on_hover_text(note.text.clone());
     }
+}
+
+/// At most `most` characters, cut at a word.
+fn cut(text: &str, most: usize) -> String {
+    if text.chars().count() <= most {
+        return text.to_owned();
+    }
+    let head: String = text.chars().take(most).collect();
+    let end = head.rfind(' ').unwrap_or(head.len());
+    format!("{}…", head[..end].trim_end_matches([',', ' ']))
 }

@@ -1,12 +1,16 @@
 //! Outcomes as shown: rounded once, with both intervals.
 
-use analysis::results::{At, Interval, Outcome, Results, Value};
+use analysis::results::{At, Interval, Outcome, Results, Section, Value};
+
+use crate::document::Status;
 
 /// An outcome as strings.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Shown {
     /// `ID@AT`.
     pub key: String,
+    /// Its name.
+    pub label: String,
     /// The value, or the dash of a withheld one.
     pub value: String,
     /// Its unit.
@@ -19,6 +23,35 @@ pub struct Shown {
     pub reason: Option<String>,
     /// Doubts in words.
     pub doubts: Vec<String>,
+}
+
+/// A statement as the sheet shows it.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Finding {
+    /// Id.
+    pub id: String,
+    /// Section.
+    pub section: Section,
+    /// What the reader did.
+    pub status: Status,
+    /// The text.
+    pub text: String,
+    /// Whether a value under it changed since it was taken up.
+    pub stale: bool,
+    /// Evidence for.
+    pub supports: Vec<String>,
+    /// Evidence against.
+    pub contradicts: Vec<String>,
+    /// Not measured, would matter.
+    pub open: Vec<String>,
+}
+
+impl Finding {
+    /// Whether the reader has decided on it.
+    #[must_use]
+    pub fn decided(&self) -> bool {
+        self.status != Status::Draft && !self.stale
+    }
 }
 
 /// The primary outcome (id, at) as shown; `None` where the engine gives none.
@@ -35,6 +68,7 @@ pub fn outcome(o: &Outcome) -> Shown {
     let range = |i: Interval| format!("[{}, {}]", number(i.low), number(i.high));
     Shown {
         key: format!("{}@{}", o.id, o.at.code()),
+        label: format!("{} {}", o.id.replace('-', " "), o.at.code()),
         value: match &o.value {
             Some(Value::Number(v)) => number(*v),
             Some(Value::Word(w)) => w.to_string(),

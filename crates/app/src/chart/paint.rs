@@ -156,16 +156,20 @@ fn end_labels(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scal
         let wide = text::width(ui, &run);
         let line_x = x.place(label.at[0]);
         let mut left = line_x + 26.0;
+        let mut at_y = *at_y;
         let mut leader = (want - at_y).abs() > 3.0 || shown.len() > 1;
         if left + wide > frame.right() - 2.0 {
-            left = frame.right() - 2.0 - wide;
+            // No room after the line: under it, or over it near the bottom.
+            left = frame.right() - 6.0 - wide;
             leader = false;
+            let under = at_y + 13.0;
+            at_y = if under + 8.0 < frame.bottom() { under } else { at_y - 13.0 };
         } else if !leader {
             left = line_x + 10.0;
         }
         if leader {
             let stroke = Stroke::new(1.0, label.color.gamma_multiply(0.7));
-            ui.painter().line_segment([pos2(line_x + 2.0, *want), pos2(left - 3.0, *at_y)], stroke);
+            ui.painter().line_segment([pos2(line_x + 2.0, *want), pos2(left - 3.0, at_y)], stroke);
         }
         let backing = Rect::from_min_size(pos2(left - 1.0, at_y - 7.0), vec2(wide + 2.0, 14.0));
         ui.painter().rect_filled(backing, 0.0, tokens.plot.gamma_multiply(0.85));
@@ -203,6 +207,8 @@ pub fn time_labels(ui: &mut Ui, tokens: &Tokens, labels: Rect, x: &Scale, covere
         if covered.iter().any(|c| c.intersects(rect)) {
             continue;
         }
+        // A boundary's line stops at the figures.
+        ui.painter().rect_filled(rect.shrink2(vec2(-1.0, 2.0)), 0.0, tokens.window);
         text::paint(ui, pos2(left, labels.bottom() - 5.0), Align::Min, &run);
     }
 }

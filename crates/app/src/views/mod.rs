@@ -2,6 +2,7 @@
 
 pub mod circulation;
 pub mod empty;
+pub mod findings;
 pub mod overlay;
 pub mod series;
 pub mod time_charts;
@@ -21,6 +22,10 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
     match cx.view.view {
         View::TimeCourse => time_course::show(ui, cx, out, rect),
         View::Circulation => circulation::show(ui, cx, out, rect),
+        View::Findings => {
+            findings::show(ui, cx, out, rect);
+            Vec::new()
+        }
         other => {
             let at = pos2(rect.left() + 16.0, rect.top() + 32.0);
             text::plain(ui, at, Align::Min, other.name(), size::TITLE, cx.tokens.ink);

@@ -71,18 +71,55 @@ fn strong(kind: &EventKind) -> bool {
     )
 }
 
-/// The notes under a column.
+/// The notes under a column, with the free text of the facts where there is one.
 #[must_use]
 pub fn of_side(cx: &Context<'_>, wanted: Side) -> Vec<Note> {
+    let texts = &cx.facts_file.events;
     cx.facts
         .events
         .iter()
         .filter(|event| side(&event.kind) == wanted)
-        .map(|event| Note {
-            t_s: event.t_s,
-            text: words(&event.kind, cx.grid.narrow),
-            strong: strong(&event.kind),
-            side: wanted,
+        .map(|event| {
+            let free = texts
+                .iter()
+                .find(|e| e.t_s == event.t_s && e.kind.code() == code(&event.kind))
+                .and_then(|e| e.text.clone());
+            let plain = words(&event.kind, cx.grid.narrow);
+            let text = match free {
+                Some(free) if is_wordless(&event.kind) => free,
+                Some(free) => format!("{plain}: {free}"),
+                None => plain,
+            };
+            Note { t_s: event.t_s, text, strong: strong(&event.kind), side: wanted }
         })
         .collect()
+}
+
+/// Kinds whose own name says less than the text.
+fn is_wordless(kind: &EventKind) -> bool {
+    matches!(kind, EventKind::Comment | EventKind::Symptom | EventKind::Treatment)
+}
+
+/// The closed code of a kind, as in the facts file.
+#[must_use]
+pub fn code(kind: &EventKind) -> &'static str {
+    match kind {
+        EventKind::Bp { .. } => "bp",
+        EventKind::Spo2(_) => "spo2",
+        EventKind::Borg { .. } => "borg",
+        EventKind::Ecg => "ecg",
+        EventKind::Arrhythmia => "arrhythmia",
+        EventKind::Symptom => "symptom",
+        EventKind::GasSample { .. } => "gas-sample",
+        EventKind::Lactate(_) => "lactate",
+        EventKind::IcManoeuvre(_) => "ic-manoeuvre",
+        EventKind::Cough => "cough",
+        EventKind::Leak => "leak",
+        EventKind::Talking => "talking",
+        EventKind::CadenceFade => "cadence-fade",
+        EventKind::RailGrip => "rail-grip",
+        EventKind::OxygenChange => "oxygen-change",
+        EventKind::Treatment => "treatment",
+        EventKind::Comment => "comment",
+    }
 }

@@ -112,6 +112,19 @@ pub fn mark_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
     response
 }
 
+/// The same in the key table, where a number may stand a second time in the window.
+pub fn table_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
+    let id = ui.make_persistent_id(("table number", key.id));
+    let response = ui.interact(rect, id, Sense::hover());
+    response.widget_info(|| WidgetInfo::labeled(Role::Label, true, key.value));
+    let (author, name) = (key.id.to_owned(), key.name.to_owned());
+    ui.ctx().accesskit_node_builder(response.id, |node| {
+        node.set_author_id(author);
+        node.set_label(name);
+    });
+    response
+}
+
 /// Text wrapped to `width`, its first line's top at `top_left`; returns its response.
 pub fn block(
     ui: &mut Ui,

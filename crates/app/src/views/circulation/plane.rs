@@ -3,7 +3,7 @@
 use analysis::fick::{Model, PathPoint, equal_pulse_sv};
 use egui::{Align, Rect, Ui, pos2};
 
-use crate::chart::layout::Scale;
+use crate::chart::layout::{Scale, spread};
 use crate::chart::paint;
 use crate::chart::spec::{Chart, DOTS, Dash, Item, LONG, Mark, Missing, Point};
 use crate::chart::ticks::{Axis, clock};
@@ -199,32 +199,44 @@ fn names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, chart: &Chart) {
             (region.content_usual.high, percent(cx.settings.fick.extraction_usual)),
             (region.content_limit.high, "beyond limit".to_owned()),
         ] {
-            if content < chart.x.1 {
-                let at = pos2(x.place(content) + 5.0, frame.top() + 28.0);
-                text::line(ui, at, Align::Min, &grey(words));
+            let run = grey(words);
+            let left = x.place(content) + 5.0;
+            let step = if content > region.content_usual.high { 44.0 } else { 28.0 };
+            if left + text::width(ui, &run) <= frame.right() {
+                text::line(ui, pos2(left, frame.top() + step), Align::Min, &run);
             }
         }
     }
-    for path in &fick.paths {
-        let (Some(first), Some(last)) = (path.points.first(), path.points.last()) else {
-            continue;
-        };
-        let circ = t.text(Family::Circulation);
-        let name = |s: String| [Run::new(s, size::BODY, circ)];
-        let at = pos2(x.place(last.content.value) + 8.0, y.place(last.stroke_volume.value) - 6.0);
-        if frame.contains(at) {
-            text::line(ui, at, Align::Min, &name(format!("{} peak", path.model.code())));
-        }
-        if path.model == Model::A1 {
-            let start = cx.results.phases.ramp().map_or(0.0, |r| r.0);
-            let at = pos2(x.place(first.content.value), y.place(first.stroke_volume.value) + 22.0);
-            if frame.contains(at) {
-                let words = format!("ramp {}", clock(first.t_s - start));
-                text::line(ui, at, Align::Center, &name(words));
-            }
-        }
-    }
+    path_names(ui, cx, frame, &x, &y);
     bound(ui, cx, frame, &x, &y);
+}
+
+/// Names of the paths at their peaks, pushed apart; the first path also names its start.
+fn path_names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) {
+    let fick = &cx.results.fick;
+    let color = cx.tokens.text(Family::Circulation);
+    let ends: Vec<(Model, egui::Pos2)> = fick
+        .paths
+        .iter()
+        .filter_map(|p| p.points.last().map(|last| (p.model, last)))
+        .map(|(m, p)| (m, pos2(x.place(p.content.value), y.place(p.stroke_volume.value))))
+        .filter(|(_, at)| frame.contains(*at))
+        .collect();
+    let wanted: Vec<f32> = ends.iter().map(|(_, at)| at.y - 10.0).collect();
+    let placed = spread(&wanted, 15.0, (frame.top() + 60.0, frame.bottom() - 24.0));
+    for ((model, at), place_y) in ends.iter().zip(placed) {
+        let name = format!("{} peak", model.code());
+        text::plain(ui, pos2(at.x + 12.0, place_y), Align::Min, name, size::BODY, color);
+    }
+    let first = fick.paths.iter().find(|p| p.model == Model::A1).and_then(|p| p.points.first());
+    if let Some(p) = first {
+        let start = cx.results.phases.ramp().map_or(0.0, |r| r.0);
+        let at = pos2(x.place(p.content.value), y.place(p.stroke_volume.value) + 22.0);
+        if frame.contains(at) {
+            let words = format!("ramp {}", clock(p.t_s - start));
+            text::plain(ui, at, Align::Center, words, size::BODY, color);
+        }
+    }
 }
 
 /// The forward stroke-volume bound: a dotted line and a ring on the limit.

@@ -5,7 +5,7 @@ use analysis::quantity::Quantity as Q;
 use egui::{Align, Rect, Ui, pos2, vec2};
 
 use crate::chart::paint;
-use crate::chart::spec::{CARRIED, Chart, Dash, EndLabel, Item, Mark, Point, Title};
+use crate::chart::spec::{CARRIED, Chart, Dash, Item, Mark, Point, Title};
 use crate::chart::ticks::Axis;
 use crate::context::Context;
 use crate::theme::{Family, size};
@@ -107,7 +107,8 @@ pub fn on_hr(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
         (chart, false)
     };
     if known {
-        equal_pulse(cx, &mut chart);
+        equal_pulse(cx, &mut chart, &line);
+        chart.right_title = vec![Title::grey("mL/beat")];
         breaths(cx, &mut chart, |i, _| cx.recording.breaths.value(Q::Hr, i), Q::Vo2);
         let color = t.line(Family::Oxygen);
         chart.items.push(Item::Line { pieces: vec![line], width: 1.9, color, dash: None });
@@ -119,33 +120,28 @@ pub fn on_hr(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
     chart.description = "V̇O₂ against heart rate over the ramp, with lines of equal O₂ pulse".into();
     paint::chart(ui, t, frame, &mut chart);
     let unit = [Run::new("/min", size::BODY, t.ink2)];
-    text::paint(ui, pos2(frame.right() + 24.0, frame.bottom() + 15.0), Align::Center, &unit);
+    text::paint(ui, pos2(frame.right() + 20.0, frame.bottom() + 15.0), Align::Min, &unit);
     if known {
         slopes_table(ui, cx, frame);
     }
 }
 
-/// Dotted lines of equal O₂ pulse, named at the right edge.
-fn equal_pulse(cx: &Context<'_>, chart: &mut Chart) {
-    let top = chart.y.high / chart.x.0.max(1.0) * 1000.0;
-    let bottom = chart.y.low / chart.x.1 * 1000.0;
-    let mut pulse = 2.0;
-    while pulse < top {
-        if pulse > bottom {
-            let y = |hr: f64| pulse * hr / 1000.0;
-            let line = vec![[chart.x.0, y(chart.x.0)], [chart.x.1, y(chart.x.1)]];
-            let color = cx.tokens.band_edge;
-            let dash = Some(Dash(1.5, 4.0));
-            chart.items.push(Item::Line { pieces: vec![line], width: 1.2, color, dash });
-            let at_edge = y(chart.x.1);
-            if at_edge > chart.y.low && at_edge < chart.y.high {
-                chart.right.push((at_edge, format!("{pulse:.0}")));
-            }
+/// Dotted lines of equal O₂ pulse around the path, named at the right edge.
+fn equal_pulse(cx: &Context<'_>, chart: &mut Chart, path: &[Point]) {
+    let pulses = path.iter().map(|p| 1000.0 * p[1] / p[0]);
+    let (low, high) = pulses.fold((f64::INFINITY, 0.0_f64), |(lo, hi), p| (lo.min(p), hi.max(p)));
+    let mut pulse = (low / 2.0).ceil() * 2.0;
+    let color = cx.tokens.predicted;
+    while pulse < high * 1.3 {
+        let y = |hr: f64| pulse * hr / 1000.0;
+        let line = vec![[chart.x.0, y(chart.x.0)], [chart.x.1, y(chart.x.1)]];
+        let dash = Some(Dash(1.5, 4.0));
+        chart.items.push(Item::Line { pieces: vec![line], width: 1.1, color, dash });
+        let at_edge = y(chart.x.1);
+        if at_edge > chart.y.low && at_edge < chart.y.high {
+            chart.right.push((at_edge, format!("{pulse:.0}")));
         }
         pulse += 2.0;
-    }
-    if let Some(last) = chart.right.last_mut() {
-        last.1.push_str(" mL/beat");
     }
 }
 
@@ -220,9 +216,11 @@ fn one_against_work(ui: &mut Ui, cx: &Context<'_>, frame: Rect, q: Q, labels: bo
     let (width, dash, ..) = series::style(q);
     let color = t.line(Family::of(q));
     chart.items.push(Item::Line { pieces: vec![line], width, color, dash });
+    // At load end the ergometer lets go: the load just before it is meant.
+    let end = cx.results.phases.ramp().map_or(f64::INFINITY, |r| r.1 - 2.0);
     fitted(cx, &mut chart, |l, time| {
         let (vo2, hr, _) = l.at(time);
-        [watts(time).unwrap_or(0.0), if q == Q::Hr { hr } else { vo2 / 1000.0 }]
+        [watts(time.min(end)).unwrap_or(0.0), if q == Q::Hr { hr } else { vo2 / 1000.0 }]
     });
     chart.description = format!("{} against work rate over the ramp", q.row().symbol);
     paint::chart(ui, t, frame, &mut chart);
@@ -237,8 +235,6 @@ fn one_against_work(ui: &mut Ui, cx: &Context<'_>, frame: Rect, q: Q, labels: bo
         text::paint(ui, at, Align::Min, &[Run::new("W", size::BODY, t.ink2)]);
     }
     rates(ui, cx, frame, q);
-    let _: Option<EndLabel> = None;
-    let _ = Title::grey("");
 }
 
 /// Early and late slope against work, beside the frame.
