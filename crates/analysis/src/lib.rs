@@ -16,6 +16,7 @@ pub mod filters;
 pub mod gas;
 mod hinge;
 mod long_run;
+pub mod methods;
 pub mod model;
 pub mod note;
 pub mod o2_pulse;

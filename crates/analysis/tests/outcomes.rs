@@ -143,3 +143,13 @@ fn deriving_twice_gives_the_same_bits() {
     let (recording, _) = generate(&Plan::healthy(8));
     assert_eq!(results(&recording), results(&recording));
 }
+
+#[test]
+fn every_method_says_how_it_computed() {
+    let results = results(&generate(&Plan::healthy(3)).0);
+    // The reserve used is named after the set that predicts the heart rate.
+    for o in results.outcomes.iter().filter(|o| ours(&o.id) && o.id != "hr-reserve-used") {
+        let how = analysis::methods::describe(&o.method);
+        assert!(how.is_some_and(|h| !h.contains('#')), "{}: {}", o.id, o.method);
+    }
+}
