@@ -50,6 +50,7 @@ fn kittiwake() -> Plan {
     p.ventilation.vt_rest = 0.55;
     p.ventilation.vt_max = 2.0;
     p.circulation.hr_peak = 181.0;
+    p.noise.breath = 0.75;
     p
 }
 
@@ -67,7 +68,7 @@ fn dunlin() -> Plan {
     p.circulation.hr_unloaded = 82.0;
     p.circulation.hr_peak = 146.0;
     p.circulation.curve = 0.0;
-    p.circulation.bend = Some(Bend { before_end_s: 240.0, vo2_factor: 0.52, hr_factor: 1.42 });
+    p.circulation.bend = Some(Bend { before_end_s: 240.0, vo2_factor: 0.56, hr_factor: 1.28 });
     p.noise.spo2_gap = Some((690.0, 738.0));
     p
 }

@@ -139,7 +139,6 @@ impl Plan {
             let fast = libm::exp(-(dt - 4.0).max(0.0) / c.recovery_s);
             hr.push(h_base + (h_end - h_base) * (0.68 * fast + 0.32 * slow));
         }
-        self.shunt_loss(&mut vo2);
         (vo2, hr)
     }
 
@@ -150,15 +149,6 @@ impl Plan {
             let closing = libm::exp(-(t - end).max(0.0) / 60.0);
             soft_step(t - (end - h.before_end_s), 4.0) * closing
         })
-    }
-
-    /// At a fixed mixed-venous floor V̇O₂ falls by exactly the shunt fraction.
-    fn shunt_loss(&self, vo2: &mut [f64]) {
-        if let Some(h) = self.circulation.shunt {
-            for (i, v) in vo2.iter_mut().enumerate() {
-                *v *= 1.0 - h.fraction * self.shunt_open(i as f64);
-            }
-        }
     }
 
     /// V̇CO₂ that the muscle and the buffering of lactate deliver to the lung, before washout.
@@ -269,6 +259,11 @@ impl Plan {
             now.vco2 = delivered[i] * (1.0 + 0.6 * swing) - m.washout * (now.paco2 - before) * 60.0;
             let share = ((now.vo2 - m.vo2_rest) / vo2_span).clamp(0.0, 1.0);
             now.pet_gap = v.pet_gap_rest + v.pet_gap_rise * share.sqrt();
+            // At a fixed mixed-venous floor V̇O₂ falls by exactly the shunt fraction; CO₂ crosses
+            // with little loss, since the rest of the lung is ventilated more.
+            let lost = c.shunt.map_or(0.0, |h| h.fraction * self.shunt_open(t));
+            now.vo2 *= 1.0 - lost;
+            now.vco2 *= 1.0 - 0.25 * lost;
             saturation_open += (self.shunt_open(t) - saturation_open) / 20.0;
             let shunt = c.shunt.map_or(0.0, |h| 45.0 * h.fraction * saturation_open);
             now.pet_gap -= c.shunt.map_or(0.0, |h| 12.0 * h.fraction * self.shunt_open(t));

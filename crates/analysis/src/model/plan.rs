@@ -266,7 +266,7 @@ impl Plan {
                 plateau_s: 0.0,
                 rer_rest: 0.81,
                 v_slope: 0.93,
-                v_slope_rise: 0.42,
+                v_slope_rise: 0.55,
                 vt1_vo2: 1200.0,
                 corner: 50.0,
                 vco2_lag_s: 7.0,

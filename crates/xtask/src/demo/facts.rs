@@ -75,7 +75,7 @@ fn test(p: &Person, case: &Case) -> Value {
         "protocol": {"kind": "ramp", "w_per_min": plan.schedule.w_per_min},
         "fio2": 0.2093,
         "stop_reason": p.stop_reason,
-        "stop": p.stop,
+        "stop_kind": p.stop,
         "limiting_symptom": p.symptom,
         "borg": {"scale": "0-10", "breathlessness": p.borg.0, "legs": p.borg.1},
         "spo2_confirmed": true,
