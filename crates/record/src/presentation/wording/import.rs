@@ -1,0 +1,6 @@
+//! Texts of import.
+
+use super::Entry;
+
+/// Code and template.
+pub const TEXTS: &[Entry] = &[];
