@@ -7,12 +7,18 @@ mod apply;
 pub mod boundary;
 pub mod codes;
 pub mod edit;
+mod file_v1;
 pub mod findings;
 pub mod history;
 mod judgement;
 mod problems;
+pub mod recovery_log;
 mod settings_file;
+mod signing;
 mod source;
+pub mod store;
+#[cfg(test)]
+mod tests;
 mod undo;
 
 use std::fmt;
@@ -24,7 +30,9 @@ use analysis::settings::Settings;
 use serde_json::Value;
 
 pub use edit::{Edit, read_edits};
+pub use file_v1::{SCHEMA, is_session};
 pub use judgement::Judgement;
+pub use signing::{MINIMAL, Missing, missing_for_signing};
 pub use source::{MAX_BYTES, Source, sha256};
 
 use self::findings::FindingShown;
