@@ -51,6 +51,8 @@ pub enum Dimension {
     Molarity,
     /// Pressure times frequency.
     PressureRate,
+    /// Pressure per power.
+    PressurePerPower,
 }
 
 macro_rules! units {
@@ -156,6 +158,10 @@ units! {
     SquareMetre "m2" "m²" Area 1.0;
     /// mmHg·mL/kg/min.
     MmHgMlPerKgMin "mm[Hg].mL/kg/min" "mmHg·mL/kg/min" CirculatoryPower 1.0;
+    /// mL of oxygen per litre of ventilation.
+    MlPerL "mL/L" "mL/L" Ratio 0.001;
+    /// mmHg per W.
+    MmHgPerWatt "mm[Hg]/W" "mmHg/W" PressurePerPower 1.0;
     /// mmol/L.
     MmolPerL "mmol/L" "mmol/L" Molarity 1.0;
     /// mmHg per minute (heart rate times pressure).

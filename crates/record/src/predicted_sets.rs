@@ -1,0 +1,15 @@
+//! Files of predicted sets, `rampcrest-predicted/1`: the bundled ones and a laboratory's own, one
+//! parser for both. A malformed file is refused with its line and the reason.
+
+mod bundled;
+mod check;
+mod into;
+mod parse;
+mod read;
+mod schema;
+
+pub use bundled::bundled;
+pub use parse::{LARGEST, parse};
+
+#[cfg(test)]
+mod tests;
