@@ -64,10 +64,6 @@ pub(crate) struct Row {
     pub predicted_id: &'static str,
     /// Id of the measured outcome.
     pub measured_id: Option<&'static str>,
-    /// Ids of the comparison: per cent, z, reading.
-    pub percent_id: &'static str,
-    pub z_id: &'static str,
-    pub reading_id: &'static str,
     at: At,
     unit: Unit,
     direction: Direction,
@@ -80,9 +76,6 @@ macro_rules! table {
             code: $code,
             predicted_id: concat!("predicted-", $code),
             measured_id: $measured,
-            percent_id: concat!($code, "-percent"),
-            z_id: concat!($code, "-z"),
-            reading_id: concat!($code, "-against-predicted"),
             at: At::$at,
             unit: Unit::$unit,
             direction: Direction::$dir,

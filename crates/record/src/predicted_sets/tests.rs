@@ -1,5 +1,3 @@
-use analysis::predicted::sets::{Provenance, WorkedOrigin};
-
 use super::bundled::FILES;
 use super::{bundled, parse};
 
