@@ -78,7 +78,7 @@ const PEOPLE: &[Person] = &[
             (870.0, 176.0, 78.0),
             (1020.0, 158.0, 74.0),
         ],
-        notes: &[(200.0, "comment", "mask checked"), (690.0, "borg", "breathlessness 3, legs 4")],
+        notes: &[(200.0, "comment", "mask checked")],
         ..COMMON
     },
     Person {

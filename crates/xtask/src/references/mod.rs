@@ -1,9 +1,11 @@
 //! `cargo xtask references noise|coverage|errors [--seeds A..B]`: simulations and data behind the
 //! calibrated figures. Tables go to standard output and to `assets/references`.
 
+pub mod bends;
 pub mod binomial;
 pub mod coverage;
 pub mod errors;
+pub mod noise;
 mod pool;
 
 use std::fs;
@@ -23,6 +25,13 @@ pub fn run(args: &[String]) -> ExitCode {
     let tuning = seeds.start < REPORTED_FROM;
     let text = match what {
         "coverage" => coverage::report(seeds),
+        "noise" => match noise::report(seeds) {
+            Ok(text) => text,
+            Err(why) => {
+                eprintln!("{why}");
+                return ExitCode::from(3);
+            }
+        },
         "errors" => errors::report(seeds),
         other => {
             eprintln!("{other}: noise, coverage or errors");
