@@ -1,6 +1,7 @@
 //! The facts file as a whole.
 
 use analysis::decisions::PhaseStarts;
+use proptest::prelude::*;
 use serde_json::{Value, json};
 
 use super::*;
@@ -186,5 +187,59 @@ fn every_code_of_the_schema_is_a_code_of_the_program() {
     assert_eq!(list("eventKind"), kinds);
     for (kind, code) in EventKind::ALL {
         assert_eq!(serde_json::to_value(kind).unwrap(), json!(code));
+    }
+}
+
+/// Values of every shape.
+fn any_value() -> impl Strategy<Value = Value> {
+    prop_oneof![
+        Just(Value::Null),
+        any::<bool>().prop_map(Value::from),
+        any::<f64>().prop_map(|v| json!(v)),
+        "[a-z0-9/-]{0,8}".prop_map(Value::from),
+        prop::sample::select(vec![
+            json!("sinus"),
+            json!("af"),
+            json!("g/L"),
+            json!([]),
+            json!({}),
+            json!({"value": 14.0, "unit": "g/dL"}),
+            json!([{"t_s": 1.0, "kind": "cough"}]),
+        ]),
+    ]
+}
+
+proptest! {
+    #[test]
+    fn any_text_is_read_or_refused(text in "[\\[\\]{}:,\"a-z0-9. ]{0,80}") {
+        let _ = FactsFile::read(&text);
+    }
+
+    #[test]
+    fn any_edit_is_taken_whole_or_changes_nothing(
+        path in prop_oneof![
+            prop::sample::select(vec![
+                "test.rhythm", "subject.hb", "subject.age_years", "events", "events[0].t_s",
+                "events[2]", "phases.ramp", "test.devices[0]", "identity.label", "test", "test.ecg",
+            ]).prop_map(str::to_owned),
+            "[a-z.\\[\\]0-9_]{0,16}",
+        ],
+        value in any_value(),
+    ) {
+        let mut file = example();
+        match file.set(&path, value) {
+            Ok(()) => prop_assert_eq!(FactsFile::read(&file.write()).unwrap(), file),
+            Err(_) => prop_assert_eq!(file, example()),
+        }
+    }
+
+    #[test]
+    fn numbers_survive_bit_for_bit(bits in any::<u64>()) {
+        let t = f64::from_bits(bits);
+        prop_assume!(t.is_finite() && t.abs() <= 1e6);
+        let mut file = FactsFile::default();
+        file.events.push(Event::new(t, EventKind::Cough));
+        let again = FactsFile::read(&file.write()).unwrap();
+        prop_assert_eq!(again.events[0].t_s.to_bits(), t.to_bits());
     }
 }

@@ -1,7 +1,7 @@
 //! The time column: which it is, how it is read, and which rows it keeps; and what a row is.
 
 use super::answers::{Answers, Profile};
-use super::columns::Name;
+use super::columns::{Header, Name};
 use super::decide::{is_shared, samples};
 use super::grid::Row;
 use super::layout::{self, Layout};
@@ -53,48 +53,48 @@ pub(super) fn choose(
         let shared = is_shared(headers, index);
         let answered = answers.about(headers.cell(index), index, shared);
         let told = answered.or_else(|| profile?.about(headers.cell(index), &head.unit));
-        let by_name = matches!(head.name, Some(Name::Reads(&[Target::Time])));
+        let by = if answered.is_some() { Decided::Answer } else { Decided::Profile };
         let told_time = told.filter(|r| r.target == Target::Time);
+        let by_name = matches!(head.name, Some(Name::Reads(&[Target::Time])));
         if told_time.is_none() && (told.is_some() || !by_name) {
             continue;
         }
         let cells = time_cells(rows, layout, index, decimal);
-        match form_of(&cells, decimal, &head.unit, told_time) {
-            Ok((form, decided)) => {
-                let decided = match (told_time, answered) {
-                    (Some(_), Some(_)) => Decided::Answer,
-                    (Some(_), None) => Decided::Profile,
-                    _ => decided,
-                };
-                let candidate = Candidate { index, form, decided };
-                // Time since the start is better than the time of day.
-                let better = found
-                    .as_ref()
-                    .is_none_or(|f| f.form == TimeForm::TimeOfDay && form != TimeForm::TimeOfDay);
-                if told_time.is_some() {
-                    found = Some(candidate);
-                    break;
-                }
-                if better {
-                    found = Some(candidate);
-                }
+        match form_of(&cells, decimal, head, told_time) {
+            Ok((form, _)) if told_time.is_some() => {
+                found = Some(Candidate { index, form, decided: by });
+                break;
             }
+            // Time since the start is better than the time of day.
+            Ok((form, decided)) if found.as_ref().is_none_or(|f| f.yields_to(form)) => {
+                found = Some(Candidate { index, form, decided });
+            }
+            Ok(_) => {}
             Err(reason) => why = reason,
         }
     }
-    let Some(Candidate { index, form, decided }) = found else {
-        return Err(issue::no_time(headers.line, &why));
-    };
-    let column = ColumnReading {
-        index,
-        header: headers.cell(index).to_owned(),
-        unit_text: layout.headers[index].unit.clone(),
-        reading: Reading { target: Target::Time, unit: form.unit() },
-        decided,
-        zero_is_missing: false,
-        samples: samples(&rows[layout.first..].iter().map(|r| r.cell(index)).collect::<Vec<_>>()),
-    };
-    keep_rows(rows, layout, decimal, form, column)
+    let Some(candidate) = found else { return Err(issue::no_time(headers.line, &why)) };
+    let form = candidate.form;
+    keep_rows(rows, layout, decimal, form, candidate.column(rows, layout))
+}
+
+impl Candidate {
+    fn yields_to(&self, form: TimeForm) -> bool {
+        self.form == TimeForm::TimeOfDay && form != TimeForm::TimeOfDay
+    }
+
+    fn column(self, rows: &[Row], layout: &Layout) -> ColumnReading {
+        let cells: Vec<&str> = rows[layout.first..].iter().map(|r| r.cell(self.index)).collect();
+        ColumnReading {
+            index: self.index,
+            header: rows[layout.header].cell(self.index).to_owned(),
+            unit_text: layout.headers[self.index].unit.clone(),
+            reading: Reading { target: Target::Time, unit: self.form.unit() },
+            decided: self.decided,
+            zero_is_missing: false,
+            samples: samples(&cells),
+        }
+    }
 }
 
 /// The cells of the rows that look like rows of values: a time and something beside it.
@@ -117,18 +117,20 @@ fn time_cells<'a>(
 fn form_of(
     cells: &[&str],
     decimal: Decimal,
-    unit_text: &str,
+    head: &Header,
     told: Option<Reading>,
 ) -> Result<(TimeForm, Decided), String> {
     if cells.is_empty() {
         return Err("its cells hold no times".into());
     }
+    let unit_text = &head.unit;
+    let stated = if head.unit_below { Decided::UnitRow } else { Decided::Header };
     let clocks = cells.iter().filter(|c| time::clock(c).is_some()).count() * 2 > cells.len();
     let unit =
         told.map_or_else(|| units::read(unit_text, Target::Time), |r| UnitText::Unit(r.unit));
     match unit {
         UnitText::Unit(unit) if !clocks => TimeForm::of_unit(unit)
-            .map(|form| (form, Decided::Header))
+            .map(|form| (form, stated))
             .ok_or_else(|| format!("“{unit_text}” is not a unit of time")),
         UnitText::Unknown => Err(format!("its unit “{unit_text}” is not known")),
         _ => match time::plausible_forms(cells, decimal).as_slice() {

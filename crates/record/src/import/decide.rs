@@ -42,6 +42,13 @@ pub(super) struct Plan {
     pub warnings: Vec<Problem>,
 }
 
+impl Plan {
+    /// The column read as `quantity`.
+    pub fn reads(&self, quantity: Quantity) -> Option<&ColumnReading> {
+        self.columns.iter().find(|c| c.reading.target == Target::Quantity(quantity))
+    }
+}
+
 enum Decision {
     Read(Reading, Decided),
     Ask(Vec<Reading>),
@@ -218,8 +225,10 @@ fn stated(head: &Header, targets: &[Target], unit: Unit, numbers: &[f64]) -> Dec
         .filter(|t| units::fits(unit, **t))
         .map(|t| Reading { target: *t, unit })
         .collect();
-    let [reading] = fitting.as_slice() else {
-        return Decision::Ask(if fitting.is_empty() { all_readings(targets) } else { fitting });
+    let reading = match fitting.as_slice() {
+        [] => return Decision::Leave("unit-does-not-fit"),
+        [reading] => reading,
+        _ => return Decision::Ask(fitting),
     };
     let doubted = numbers.len() >= 10
         && numbers.iter().any(|v| *v != 0.0)
@@ -316,6 +325,9 @@ fn column_reason(code: &str) -> &'static str {
         "question" => "Its quantity or unit is open; see the questions.",
         "answered" => "Left out by the reader's answer.",
         "unknown-name" => "The name is not in the table of known names.",
+        "unit-does-not-fit" => {
+            "The stated unit is not one of this quantity, so the name means something else."
+        }
         "second-time" => "Another column already gives the time.",
         "condition" => "The stated condition (STPD, BTPS, ATPS) is not the one of this quantity.",
         "not-numbers" => "Most cells are not numbers.",

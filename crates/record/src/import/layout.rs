@@ -120,7 +120,8 @@ pub fn sort_rows(
     let mut data = Vec::new();
     let mut left = Vec::new();
     for row in &rows[..layout.header] {
-        push(&mut left, row.line, "preamble", true);
+        let code = if is_comment(row) { "comment" } else { "preamble" };
+        push(&mut left, row.line, code, true);
     }
     let mut joined = false;
     for i in layout.first..rows.len() {
@@ -150,7 +151,7 @@ fn why_not(
     let row = &rows[i];
     let filled: Vec<&String> = row.cells.iter().filter(|c| !c.is_empty()).collect();
     let first = filled.first().map_or("", |c| c.as_str());
-    if first.starts_with('#') && !number::is_missing(first) || first.starts_with("//") {
+    if is_comment(row) {
         return Some("comment");
     }
     if row.cells == rows[layout.header].cells
@@ -170,6 +171,11 @@ fn why_not(
     let valued =
         row.cells.iter().enumerate().any(|(c, cell)| c != time_column && has_value(cell, decimal));
     (!valued).then_some("no-values")
+}
+
+fn is_comment(row: &Row) -> bool {
+    let first = row.cells.iter().find(|c| !c.is_empty()).map_or("", String::as_str);
+    (first.starts_with('#') && !number::is_missing(first)) || first.starts_with("//")
 }
 
 fn has_value(cell: &str, decimal: Decimal) -> bool {

@@ -34,10 +34,10 @@ use analysis::quantity::Quantity;
 use analysis::recording::Recording;
 
 use self::clock_column::Timed;
-use self::decide::Table;
+use self::decide::{Plan, Table};
 use self::grid::Row;
 use crate::problem::Problem;
-use crate::provenance::{ColumnReading, LeftOut, Question, Target};
+use crate::provenance::{ColumnReading, LeftOut, Question};
 
 /// A shorter test is refused, s.
 const SHORTEST_S: f64 = 60.0;
@@ -165,30 +165,11 @@ impl Frame<'_> {
             answers: self.answers,
             profile: self.profile,
         });
+        let span = times.last().zip(times.first()).map_or(0.0, |(b, a)| b - a);
+        refuse_if_no_test(&plan, span)?;
+        let are = rows_are(&plan, &kept, &times, decimal);
         left_out.extend(plan.left_out);
         warnings.extend(plan.warnings);
-        let reads = |q| plan.columns.iter().find(|c| c.reading.target == Target::Quantity(q));
-        if [Quantity::Vo2, Quantity::Hr, Quantity::RrInterval]
-            .into_iter()
-            .all(|q| reads(q).is_none())
-        {
-            return Err(issue::nothing_to_read(!plan.questions.is_empty()));
-        }
-        let span = times.last().zip(times.first()).map_or(0.0, |(b, a)| b - a);
-        if span < SHORTEST_S {
-            return Err(issue::too_short(span, SHORTEST_S));
-        }
-        let of = |q| {
-            reads(q).map(|c| {
-                kept.iter().map(|r| build::value(r.cell(c.index), c, decimal)).collect::<Vec<_>>()
-            })
-        };
-        let are = clock_column::rows_are(
-            &times,
-            of(Quantity::Vo2).as_deref(),
-            of(Quantity::RrInterval).as_deref(),
-            of(Quantity::Hr).as_deref(),
-        );
         let clean = plan
             .columns
             .len()
@@ -213,6 +194,31 @@ impl Frame<'_> {
         add_warnings(&recording, &recipe, &mut warnings);
         Ok((Imported { recording, recipe, issues: warnings }, clean))
     }
+}
+
+/// Neither V̇O₂ nor heart rate, or too short.
+fn refuse_if_no_test(plan: &Plan, span_s: f64) -> Result<(), Problem> {
+    let one = [Quantity::Vo2, Quantity::Hr, Quantity::RrInterval];
+    if one.into_iter().all(|q| plan.reads(q).is_none()) {
+        return Err(issue::nothing_to_read(!plan.questions.is_empty()));
+    }
+    if span_s < SHORTEST_S {
+        return Err(issue::too_short(span_s, SHORTEST_S));
+    }
+    Ok(())
+}
+
+fn rows_are(plan: &Plan, rows: &[&Row], times: &[f64], decimal: Decimal) -> RowsAre {
+    let of = |q| -> Option<Vec<Option<f64>>> {
+        let column = plan.reads(q)?;
+        Some(rows.iter().map(|r| build::value(r.cell(column.index), column, decimal)).collect())
+    };
+    clock_column::rows_are(
+        times,
+        of(Quantity::Vo2).as_deref(),
+        of(Quantity::RrInterval).as_deref(),
+        of(Quantity::Hr).as_deref(),
+    )
 }
 
 fn add_warnings(recording: &Recording, recipe: &Recipe, warnings: &mut Vec<Problem>) {

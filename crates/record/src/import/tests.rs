@@ -310,3 +310,15 @@ fn pressure_pairs_and_times_of_day_are_read() {
     assert_eq!(breaths.value(Quantity::DiaBp, 0), Some(80.0));
     assert_eq!(breaths.value(Quantity::DiaBp, 1), None);
 }
+
+#[test]
+fn a_known_unit_of_another_quantity_means_another_quantity_and_an_unknown_one_is_asked() {
+    let text = table("time [s],VO2 [mL/min],P [mmHg],Load [kpm/min]\n", |t, v, h| {
+        format!("{t},{v},{h},{h}")
+    });
+    let read = import(&text).unwrap();
+    assert!(matches!(&read.left_out()[0],
+        LeftOut::Column { index: 2, code, .. } if code == "unit-does-not-fit"));
+    assert_eq!(read.questions()[0].column, "Load [kpm/min]");
+    assert!(!read.recording.has(Quantity::WorkRate));
+}
