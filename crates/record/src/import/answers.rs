@@ -63,6 +63,12 @@ impl Answers {
             .map(|(_, r)| *r)
     }
 
+    /// The answer about a column of exactly this header, wherever it stands.
+    pub(crate) fn named(&self, header: &str) -> Option<Reading> {
+        let found = self.columns.iter().find(|(c, _)| !header.is_empty() && c.trim() == header);
+        found.map(|(_, r)| *r)
+    }
+
     /// The names of all columns answered about.
     pub(crate) fn names(&self) -> impl Iterator<Item = &str> {
         self.columns.iter().map(|(c, _)| c.as_str())

@@ -1,5 +1,6 @@
 //! The parts of the grid: preamble, header, row of units, rows of breaths, and what is neither.
 
+use super::answers::{Answers, Profile};
 use super::columns::{self, Header, Name};
 use super::grid::Row;
 use super::number::{self, Decimal};
@@ -54,9 +55,13 @@ pub struct Layout {
 ///
 /// # Errors
 /// No row names a time and another known column, or nothing follows it.
-pub fn find(rows: &[Row]) -> Result<Layout, Problem> {
+pub fn find(rows: &[Row], answers: &Answers, profile: Option<&Profile>) -> Result<Layout, Problem> {
+    let told = |row: &Row, i: usize, unit: &str| {
+        let named = answers.named(row.cell(i));
+        named.or_else(|| profile?.about(row.cell(i), unit)).map(|r| r.target)
+    };
     let parsed = rows.iter().take(SEARCH).map(headers_of);
-    let header = parsed.enumerate().find(|(i, h)| is_header(&rows[*i], h));
+    let header = parsed.enumerate().find(|(i, h)| is_header(&rows[*i], h, &told));
     let Some((header, mut headers)) = header else { return Err(issue::no_header()) };
     let (mut unit_row, mut first) = (None, header + 1);
     for (i, row) in rows.iter().enumerate().skip(header + 1).take(3) {
@@ -99,10 +104,20 @@ fn says_unit(cell: &str) -> bool {
     condition.is_some() || units::is_unit_like(&rest) || number::is_missing(cell)
 }
 
-fn is_header(row: &Row, headers: &[Header]) -> bool {
-    let reads = headers.iter().filter(|h| matches!(h.name, Some(Name::Reads(_)))).count();
-    let known = headers.iter().filter(|h| h.name.is_some()).count();
-    let time = headers.iter().any(|h| h.name == Some(Name::Reads(&[Target::Time])));
+/// A header names at least three columns, or a time and one more among few others. A name counts
+/// by the table of names, or because an answer or the profile names it.
+fn is_header(
+    row: &Row,
+    headers: &[Header],
+    told: &impl Fn(&Row, usize, &str) -> Option<Target>,
+) -> bool {
+    let (mut reads, mut known, mut time) = (0, 0, false);
+    for (i, head) in headers.iter().enumerate() {
+        let told = told(row, i, &head.unit);
+        reads += usize::from(told.is_some() || matches!(head.name, Some(Name::Reads(_))));
+        known += usize::from(told.is_some() || head.name.is_some());
+        time |= told == Some(Target::Time) || head.name == Some(Name::Reads(&[Target::Time]));
+    }
     let filled = row.cells.iter().filter(|c| !c.is_empty()).count();
     let numbers = row.cells.iter().filter(|c| is_number(c)).count();
     numbers * 2 <= filled && (reads >= 3 || (time && reads >= 2 && known * 2 >= filled))

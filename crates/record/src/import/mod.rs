@@ -105,7 +105,7 @@ fn read(bytes: &[u8], answers: &Answers, profile: Option<&Profile>) -> Result<Im
     }
     let separator = grid::sniff(&text);
     let rows = grid::split(&text, separator)?;
-    let layout = layout::find(&rows)?;
+    let layout = layout::find(&rows, answers, profile)?;
     let headers = &rows[layout.header];
     for column in answers.names() {
         let known = (0..headers.cells.len())

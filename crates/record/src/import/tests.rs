@@ -322,3 +322,19 @@ fn a_known_unit_of_another_quantity_means_another_quantity_and_an_unknown_one_is
     assert_eq!(read.questions()[0].column, "Load [kpm/min]");
     assert!(!read.recording.has(Quantity::WorkRate));
 }
+
+#[test]
+fn a_time_of_unknown_name_or_unit_is_told_by_an_answer() {
+    let named = table("when,VO2 [mL/min],HR [/min]\n", |t, v, h| format!("{t},{v},{h}"));
+    assert_eq!(import(&named).unwrap_err().code, "import-no-header");
+    let told = with_answers(&named, &["when=time s"]).unwrap();
+    assert_eq!(told.columns()[0].decided, Decided::Answer);
+    // 1, 2, 3 … 40 may be seconds or minutes.
+    let bare =
+        table("time,VO2 [mL/min],HR [/min]\n", |t, v, h| format!("{},{v},{h}", (t / 3.0).floor()));
+    let problem = import(&bare).unwrap_err();
+    assert_eq!(problem.code, "import-no-time");
+    assert!(problem.what.contains("s or min"), "{problem}");
+    let told = with_answers(&bare, &["time=time min"]).unwrap();
+    assert_eq!(told.recording.breaths.end_s()[1], 120.0);
+}
