@@ -49,6 +49,12 @@ impl Headless {
         &self.ctx
     }
 
+    /// What paints, with the textures of all frames so far.
+    #[must_use]
+    pub fn rasteriser(&self) -> &Rasteriser {
+        &self.rasteriser
+    }
+
     /// Runs one frame with `events`; the clock advances by a sixtieth of a second.
     pub fn frame(&mut self, events: Vec<egui::Event>, ui: impl FnMut(&mut Ui)) -> FullOutput {
         let Screen { width, height, scale, theme } = self.screen;

@@ -2,6 +2,7 @@
 
 pub mod app;
 pub mod chart;
+pub mod cli;
 pub mod command;
 pub mod context;
 pub mod demo;

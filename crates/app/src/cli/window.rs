@@ -1,0 +1,49 @@
+//! The window; without a display, what can be had of it in files.
+
+use std::path::Path;
+
+use super::args::Args;
+use super::failure::{Exit, Failure};
+use super::{files, open, views};
+use crate::App;
+use crate::shell::{self, Content, Paint, StartError};
+
+/// Shows the window on the files, or on the demonstration test.
+pub fn show(args: &Args) -> Result<Exit, Failure> {
+    let app = match args.files.first() {
+        Some(path) => open::app(path, args)?,
+        None => App::on_demo(),
+    };
+    match shell::run(args.renderer, content(app)) {
+        Ok(()) => Ok(Exit::Ok),
+        Err(error) if args.files.is_empty() => instead(args, &error),
+        Err(error) => Err(Failure::new(
+            Exit::NoDisplay,
+            "no-display",
+            "window",
+            error.to_string(),
+            "Use a headless command: see rampcrest --help.",
+        )),
+    }
+}
+
+fn content(mut app: App) -> Content {
+    let build = Box::new(move |ctx: &egui::Context| -> Paint {
+        app.setup(ctx);
+        Box::new(move |ui| app.ui(ui))
+    });
+    Content { title: "Rampcrest".to_owned(), build }
+}
+
+/// The demonstration test derived into a folder, because no window came up.
+fn instead(args: &Args, error: &StartError) -> Result<Exit, Failure> {
+    let folder = args.out.as_deref().unwrap_or(Path::new("out"));
+    std::fs::create_dir_all(folder).map_err(|error| Failure::unwritable(folder, &error))?;
+    let picture = views::window_png(App::on_demo())?;
+    files::write(&folder.join("window.png"), &picture)?;
+    files::print(&format!(
+        "{error} The demonstration test was derived into {} instead.",
+        folder.display()
+    ));
+    Ok(Exit::Ok)
+}
