@@ -9,6 +9,7 @@ use super::args::Args;
 use super::failure::Failure;
 use super::files;
 use crate::App;
+use crate::document::Document;
 
 /// The window's state on a file.
 ///
@@ -16,10 +17,9 @@ use crate::App;
 /// Unreadable or refused (3).
 pub fn app(path: &Path, args: &Args) -> Result<App, Failure> {
     let Imported { recording, .. } = table(path, args)?;
-    let (facts, _, _) = facts(args)?.to_analysis();
     let mut app = App::new();
     let label = path.file_stem().unwrap_or_default().to_string_lossy().into_owned();
-    app.document.open(recording, facts, label);
+    app.document = Document::opened(recording, facts(args)?, &label);
     Ok(app)
 }
 
