@@ -2,6 +2,7 @@
 
 mod facts;
 mod people;
+mod session;
 mod table;
 mod truth;
 
@@ -47,18 +48,24 @@ fn write(folder: &Path, file: &DemoFile) -> std::io::Result<()> {
 }
 
 /// The files of one case.
+///
+/// # Panics
+/// When the project's own importer refuses the demo (a test forbids it).
 #[must_use]
 pub fn build(case: &Case) -> Vec<DemoFile> {
     let plan = (case.plan)();
     let (recording, truth) = generate(&plan);
-    let file = |name: &str, text: String| DemoFile {
-        path: Path::new(case.name).join(name),
-        bytes: text.into_bytes(),
-    };
+    let table = table::text(case, &recording);
+    let facts = facts::text(case);
+    let session = session::bytes(table.as_bytes(), &facts, &truth)
+        .unwrap_or_else(|p| panic!("{}: {} {}", case.name, p.where_, p.what));
+    let file =
+        |name: &str, bytes: Vec<u8>| DemoFile { path: Path::new(case.name).join(name), bytes };
     vec![
-        file("table.csv", table::text(case, &recording)),
-        file("facts.json", facts::text(case)),
-        file("truth.json", truth::text(case, &plan, &truth)),
+        file("table.csv", table.into_bytes()),
+        file("facts.json", facts.into_bytes()),
+        file("truth.json", truth::text(case, &plan, &truth).into_bytes()),
+        file("session.json", session),
     ]
 }
 
