@@ -12,9 +12,9 @@ use crate::unit::Unit;
 
 /// Width of the average, s: a longer one would shrink the cycles themselves.
 const SMOOTH_S: f64 = 10.0;
-/// Autocorrelation that confirms a period (common practice: 0.3; raised because the highest of many
-/// lags is looked at).
-const PERIODIC: f64 = 0.4;
+/// Autocorrelation that confirms a period. In 300 simulated tests without oscillation the highest was
+/// 0.35; with cycles of ±15 % the first centile was 0.44, the fifth 0.54.
+const PERIODIC: f64 = 0.45;
 /// Width of the mean that is taken off to see the cycles, s.
 const TREND_S: f64 = 120.0;
 
