@@ -28,6 +28,18 @@ const LABELS: &[(&str, &str)] = &[
     ("o2-pulse-deficit-hr-part", "of it HR acceleration"),
     ("vo2-hr-slope-ratio", "V̇O₂–HR slope, late ÷ early"),
     ("o2-pulse-detection-limit", "Shortest levelling that would be seen"),
+    ("o2-pulse-early-slope", "O₂ pulse, own early line"),
+    ("o2-pulse-asymptote", "O₂ pulse, value it rises towards"),
+    ("o2-pulse-score", "O₂-pulse course, score"),
+    ("o2-pulse-onset", "Slowing begins"),
+    ("vo2-hr-slope-over-pulse", "V̇O₂–HR slope ÷ O₂ pulse, late"),
+    ("fick-forward-sv-bound", "Forward stroke volume, probably not below"),
+    ("fick-arterial-content", "Arterial O₂ content"),
+    ("fick-sv-change", "Stroke volume, change under the assumption"),
+    ("fick-extraction-change", "Extraction, change under the assumption"),
+    ("fick-hr-deficit", "HR below the line to predicted peak"),
+    ("fick-content-share", "O₂ pulse lost to saturation"),
+    ("fick-shunt-signature", "Simultaneous end-tidal step"),
 ];
 
 /// The label of `id` at `at`.

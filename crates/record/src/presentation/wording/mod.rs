@@ -7,6 +7,7 @@ mod course;
 mod engine;
 mod import;
 mod predicted;
+mod signs;
 mod statements;
 mod ui;
 
@@ -19,8 +20,15 @@ use super::values;
 pub type Entry = (&'static str, &'static str);
 
 /// All files of the catalogue.
-pub const FILES: &[&[Entry]] =
-    &[engine::TEXTS, course::TEXTS, predicted::TEXTS, statements::TEXTS, import::TEXTS, ui::TEXTS];
+pub const FILES: &[&[Entry]] = &[
+    engine::TEXTS,
+    course::TEXTS,
+    predicted::TEXTS,
+    statements::TEXTS,
+    signs::TEXTS,
+    import::TEXTS,
+    ui::TEXTS,
+];
 
 /// The template of `code`.
 #[must_use]
@@ -141,3 +149,6 @@ mod tests {
         }
     }
 }
+
+#[cfg(test)]
+mod circulation_tests;
