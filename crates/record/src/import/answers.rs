@@ -135,7 +135,10 @@ impl Profile {
     /// # Errors
     /// Not a profile; the message names the place.
     pub fn read(json: &str) -> Result<Self, Problem> {
-        serde_json::from_str(json).map_err(|e| issue::profile(&e.to_string()))
+        crate::json::read(json).map_err(|e| {
+            let place = if e.path.is_empty() { String::new() } else { format!("{}: ", e.path) };
+            issue::profile(&format!("{place}{}", e.what))
+        })
     }
 
     /// Writes the profile file.

@@ -93,6 +93,30 @@ proptest! {
     }
 
     #[test]
+    fn a_recipe_that_does_not_fit_is_a_problem(
+        first_line in any::<usize>(),
+        index in 0..9_usize,
+        from in any::<usize>(),
+        to in any::<usize>(),
+        step in -1e300..1e300_f64,
+        beats in any::<bool>(),
+    ) {
+        let mut text = "time [s];VO2 [mL/min];HR [/min]\n".to_owned();
+        for i in 0..60 {
+            let x = f64::from(i);
+            text += &format!("{:.1};{:.0};{:.0}\n", 3.1 * x, 400.0 + x, 80.0 + x / 4.0);
+        }
+        let read = import(text.as_bytes(), "", &Answers::none(), None).unwrap();
+        let mut recipe = read.recipe.clone();
+        recipe.first_line = first_line % 80;
+        recipe.columns[index % 3].index = index;
+        recipe.rows = if beats { RowsAre::Beats } else { RowsAre::Averages { step_s: step } };
+        recipe.left_out.push(LeftOut::Rows { from, to, code: "x".into(), why: "x".into() });
+        let other = recording_from(text.as_bytes(), &recipe);
+        prop_assert!(other.is_err(), "the digest tells that this is another reading");
+    }
+
+    #[test]
     fn a_good_table_with_damage(
         cuts in prop::collection::vec((0..5000_usize, any::<u8>()), 0..6),
         end in 0..6000_usize,

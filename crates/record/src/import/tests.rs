@@ -127,6 +127,11 @@ fn what_is_open_is_asked_and_left_out_and_an_answer_closes_it() {
     assert_eq!(next.columns()[3].decided, Decided::Profile);
     assert_eq!(next.recording, answered.recording);
 
+    let twice = profile.write().replacen('{', "{\"name\":\"x\",", 1);
+    for wrong in ["", "{}", twice.as_str(), &profile.write().replace("fr /min", "fr kPa")] {
+        assert_eq!(Profile::read(wrong).unwrap_err().code, "import-profile");
+    }
+
     assert_eq!(with_answers(&text, &["Nope=fr /min"]).unwrap_err().code, "import-answer-column");
     for wrong in ["RR", "RR=breaths", "RR=fr kPa", "=fr /min", "RR=fr"] {
         assert_eq!(with_answers(&text, &[wrong]).unwrap_err().code, "import-answer", "{wrong}");
