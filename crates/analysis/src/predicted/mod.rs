@@ -18,5 +18,6 @@ pub use evaluate::{Prediction, evaluate};
 pub(crate) fn derive(stage: &mut Stage<'_>) {
     if !stage.settings.sets.is_empty() {
         outcomes::derive(stage);
+        overlay::derive(stage);
     }
 }
