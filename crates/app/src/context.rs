@@ -56,7 +56,13 @@ pub struct Context<'a> {
     pub saved: bool,
 }
 
-impl Context<'_> {
+impl<'a> Context<'a> {
+    /// The same look again, to be varied.
+    #[must_use]
+    pub fn copied(&self) -> Context<'a> {
+        Context { ..*self }
+    }
+
     /// State of the session in words.
     #[must_use]
     pub fn state_words(&self) -> &'static str {

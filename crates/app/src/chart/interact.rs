@@ -9,8 +9,8 @@ use super::layout::Scale;
 /// Reach of a handle on each side, px at 1×.
 pub const REACH: f32 = 12.0;
 
-/// Columns that may show time side by side.
-pub const COLUMNS: usize = 4;
+/// Places that may show time in one view.
+pub const COLUMNS: usize = 9;
 
 /// Where a time column stood in the last frame.
 #[derive(Clone, Debug, PartialEq)]

@@ -3,10 +3,17 @@
 pub mod circulation;
 pub mod empty;
 pub mod findings;
+pub mod gas_exchange;
+pub mod nine_panels;
+pub mod outcome_list;
 pub mod overlay;
+pub mod recovery;
 pub mod series;
+pub mod thresholds;
 pub mod time_charts;
 pub mod time_course;
+pub mod ventilation;
+pub mod xy;
 
 use egui::{Align, Rect, Ui, pos2};
 
@@ -22,6 +29,11 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
     match cx.view.view {
         View::TimeCourse => time_course::show(ui, cx, out, rect),
         View::Circulation => circulation::show(ui, cx, out, rect),
+        View::Thresholds => thresholds::show(ui, cx, out, rect),
+        View::Ventilation => ventilation::show(ui, cx, out, rect),
+        View::GasExchange => gas_exchange::show(ui, cx, out, rect),
+        View::Recovery => recovery::show(ui, cx, out, rect),
+        View::NinePanels => nine_panels::show(ui, cx, out, rect),
         View::Findings => {
             findings::show(ui, cx, out, rect);
             Vec::new()
