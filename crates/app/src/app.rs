@@ -19,6 +19,7 @@ use crate::theme::{self, Tokens};
 use crate::view_state::ViewState;
 use crate::{panels, views};
 
+static NO_FACTS: LazyLock<FactsFile> = LazyLock::new(FactsFile::default);
 static NO_TEST: LazyLock<Arc<Recording>> = LazyLock::new(Default::default);
 
 /// The window.
@@ -51,7 +52,8 @@ impl App {
 
     /// Opens a breath table; a refusal stands in the status line.
     pub fn open_table(&mut self, bytes: &[u8], name: &str, facts: FactsFile) {
-        match crate::opening::table(bytes, name, facts) {
+        let answers = record::import::Answers::none();
+        match crate::opening::table(bytes, name, facts, &answers, None) {
             Ok(document) => self.show(document),
             Err(problem) => self.view.status = Some(problem.to_string()),
         }
@@ -110,7 +112,7 @@ impl App {
     fn handles(&self) -> Vec<handles::Handle> {
         let whole = self.document.recording().and_then(|r| r.span_s()).unwrap_or((0.0, 60.0));
         let results = self.derived.shown();
-        let mut all = handles::handles(results, self.document.decisions(), whole);
+        let mut all = handles::handles(results, &self.document.decisions(), whole);
         if let Some(drag) = self.view.drag.filter(|d| d.kind != HandleKind::Cursor) {
             for handle in all.iter_mut().filter(|h| h.kind == drag.kind) {
                 handle.t_s = drag.t_s;
@@ -123,7 +125,7 @@ impl App {
     /// Brings the results up to date with the session and the handle under way.
     fn derive(&mut self) {
         let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor).map(|d| {
-            let mut decisions = self.document.decisions().clone();
+            let mut decisions = self.document.decisions();
             d.kind.set(&mut decisions, d.t_s);
             decisions
         });
@@ -149,16 +151,16 @@ impl App {
         let mut handles = self.handles();
         let recording = self.document.recording().unwrap_or(&NO_TEST);
         let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor);
-        let mut decisions = self.document.decisions().clone();
+        let mut decisions = self.document.decisions();
         if let Some(drag) = moving {
             drag.kind.set(&mut decisions, drag.t_s);
         }
         let open = self.document.recording().is_some();
-        let findings = self.document.findings(self.derived.shown());
+        let label = self.document.label();
         let mut cx = Context {
             recording,
             facts: self.document.facts(),
-            facts_file: self.document.facts_file(),
+            facts_file: self.document.facts_file().unwrap_or(&NO_FACTS),
             decisions: &decisions,
             settings: self.document.settings(),
             results: self.derived.shown(),
@@ -167,12 +169,13 @@ impl App {
             tokens,
             grid,
             handles: &[],
-            findings: &findings,
-            label: self.document.label(),
+            findings: self.derived.findings(),
+            session: self.document.session(),
+            label: &label,
             open,
             signed: self.document.signed(),
-            can_undo: self.document.can_undo(),
-            can_redo: self.document.can_redo(),
+            can_undo: self.document.can_undo().is_some(),
+            can_redo: self.document.can_redo().is_some(),
             provisional: self.derived.provisional(),
             saved: self.document.saved(),
         };

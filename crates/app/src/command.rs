@@ -4,8 +4,8 @@
 use egui::{Key, KeyboardShortcut, Modifiers};
 
 use crate::context::Context;
-use crate::document::Edit;
 use crate::view_state::{Dialog, View};
+use record::session::Edit;
 
 /// Something to be done, sent by a panel and carried out by `dispatch`.
 #[derive(Clone, Debug, PartialEq)]
@@ -129,8 +129,8 @@ impl Command {
             Command::ZoomBy(_) => "Zoom out at the cursor".into(),
             Command::Select(_) => "Select breaths".into(),
             Command::Evidence(_) => "Evidence".into(),
-            Command::Edit(edit) => edit.label().into(),
-            Command::Edits(edits) => edits.first().map_or("", Edit::label).into(),
+            Command::Edit(edit) => edit.label(),
+            Command::Edits(edits) => edits.first().map_or_else(String::new, Edit::label),
             Command::Quit => "Close".into(),
         }
     }

@@ -7,10 +7,11 @@ use analysis::results::Results;
 use analysis::settings::Settings;
 
 use record::facts_file::FactsFile;
+use record::session::Session;
+use record::session::findings::FindingShown;
 
 use crate::chart::handles::Handle;
 use crate::chart::layout::Grid;
-use crate::shown::Finding;
 use crate::theme::Tokens;
 use crate::view_state::ViewState;
 
@@ -39,7 +40,9 @@ pub struct Context<'a> {
     /// Handles of the time axis.
     pub handles: &'a [Handle],
     /// Statements.
-    pub findings: &'a [Finding],
+    pub findings: &'a [FindingShown],
+    /// The session, if a test is open.
+    pub session: Option<&'a Session>,
     /// Label of the case.
     pub label: &'a str,
     /// Whether a test is open.

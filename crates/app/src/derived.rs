@@ -1,7 +1,10 @@
 //! What follows from the session: the one caller of `derive`.
 
+use std::sync::Arc;
+
 use analysis::decisions::Decisions;
 use analysis::results::Results;
+use record::session::findings::FindingShown;
 
 use crate::document::Document;
 
@@ -9,52 +12,51 @@ use crate::document::Document;
 #[derive(Debug, Default)]
 pub struct Derived {
     revision: Option<u64>,
-    committed: Results,
+    committed: Arc<Results>,
     preview: Option<(Decisions, Results)>,
-    /// How often `derive` ran.
+    findings: Vec<FindingShown>,
+    /// How often anything was derived.
     runs: u64,
 }
 
 impl Derived {
     /// Brings the results up to date. `moving` are the decisions as a moving handle would have them.
     pub fn update(&mut self, document: &Document, moving: Option<&Decisions>) {
-        let Some(recording) = document.recording() else {
+        let Some(session) = document.session() else {
             return;
         };
+        let mut changed = false;
         if self.revision != Some(document.revision()) {
-            let known = self.preview.take().filter(|(d, _)| d == document.decisions());
-            // A released handle leaves exactly the decisions of its last preview; nothing else can
-            // have changed while the pointer was down.
-            self.committed = match known {
-                Some((_, results)) => results,
-                None => {
-                    self.runs += 1;
-                    analysis::derive(
-                        recording,
-                        document.facts(),
-                        document.decisions(),
-                        document.settings(),
-                    )
-                }
-            };
+            self.runs += 1;
+            self.committed = Arc::clone(session.results());
             self.revision = Some(document.revision());
+            self.preview = None;
+            changed = true;
         }
         match moving {
-            None => self.preview = None,
+            None => changed |= self.preview.take().is_some(),
             Some(moving) if self.preview.as_ref().is_some_and(|(d, _)| d == moving) => {}
             Some(moving) => {
                 self.runs += 1;
-                let results =
-                    analysis::derive(recording, document.facts(), moving, document.settings());
+                let results = analysis::derive(
+                    session.recording(),
+                    document.facts(),
+                    moving,
+                    document.settings(),
+                );
                 self.preview = Some((moving.clone(), results));
+                changed = true;
             }
+        }
+        if changed {
+            self.findings = session.findings(self.shown());
         }
     }
 
     /// What panels show: the preview while a handle moves, else the committed results.
     #[must_use]
     pub fn shown(&self) -> &Results {
-        self.preview.as_ref().map_or(&self.committed, |(_, results)| results)
+        self.preview.as_ref().map_or(&*self.committed, |(_, results)| results)
     }
 
     /// The committed results: what page, export and description read.
@@ -63,13 +65,19 @@ impl Derived {
         &self.committed
     }
 
+    /// Statements under the results shown.
+    #[must_use]
+    pub fn findings(&self) -> &[FindingShown] {
+        &self.findings
+    }
+
     /// Whether what is shown is provisional.
     #[must_use]
     pub fn provisional(&self) -> bool {
         self.preview.is_some()
     }
 
-    /// How often `derive` has run.
+    /// How often anything was derived.
     #[must_use]
     pub fn runs(&self) -> u64 {
         self.runs

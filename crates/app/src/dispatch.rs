@@ -7,7 +7,7 @@ use crate::chart::column::zoomed;
 use crate::chart::handles::HandleKind;
 use crate::chart::interact::step;
 use crate::command::{Command, Outbox};
-use crate::document::Edit;
+use record::session::Edit;
 
 /// The command of a handle that came to rest at `t_s`.
 #[must_use]
@@ -52,7 +52,7 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::Go(view) => app.view.view = view,
         Command::ToggleOverlay => {
             let shown = !app.document.settings().overlay_shown;
-            app.document.apply(Edit::ShowOverlay(shown));
+            edit(app, &[Edit::SetOverlayShown { shown }]);
         }
         Command::ToggleRaw => app.view.raw = !app.view.raw,
         Command::WidenFindings => app.view.wide_findings = !app.view.wide_findings,
@@ -70,8 +70,8 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::ZoomBy(factor) => zoom_by(app, factor),
         Command::Select(stretch) => app.view.selected_s = stretch,
         Command::Evidence(id) => app.view.evidence_of = id,
-        Command::Edit(edit) => app.document.apply(edit),
-        Command::Edits(edits) => edits.into_iter().for_each(|edit| app.document.apply(edit)),
+        Command::Edit(one) => edit(app, &[one]),
+        Command::Edits(edits) => edit(app, &edits),
         Command::Quit => ui.ctx().send_viewport_cmd(egui::ViewportCommand::Close),
         Command::OpenDemo => {
             app.open_table(crate::demo::TABLE, crate::demo::NAME, crate::demo::facts());
@@ -82,6 +82,11 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         | Command::SaveTo(_)
         | Command::ExportTo(_) => {}
     }
+}
+
+/// Carries out edits; a refusal stands in the status line.
+fn edit(app: &mut App, edits: &[Edit]) {
+    app.view.status = app.document.apply(edits).err().map(|problem| problem.to_string());
 }
 
 fn whole(app: &App) -> Option<(f64, f64)> {

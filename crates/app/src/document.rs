@@ -1,239 +1,179 @@
-//! The open test: its source and the reader's judgement, changed by edits only.
+//! The open test: owner of the session, changed by edits only.
 
-use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use analysis::decisions::{Decisions, Mark, Phase};
+use analysis::decisions::Decisions;
 use analysis::facts::Facts;
 use analysis::recording::Recording;
-use analysis::results::Results;
-use analysis::settings::{Averaging, Settings};
+use analysis::settings::Settings;
 use record::facts_file::FactsFile;
+use record::problem::Problem;
+use record::session::{Edit, Session};
 
-use crate::shown::Finding;
-
-/// What the reader did with a statement.
-#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub enum Status {
-    /// Nothing yet.
-    #[default]
-    Draft,
-    /// Accepted.
-    Accepted,
-    /// Declined.
-    Declined,
-}
-
-/// A change of the session.
-#[derive(Clone, Debug, PartialEq)]
-pub enum Edit {
-    /// A phase starts here.
-    SetBoundary {
-        /// Which.
-        phase: Phase,
-        /// Start, s.
-        t_s: f64,
-    },
-    /// A mark stands here.
-    SetMark {
-        /// Which.
-        mark: Mark,
-        /// Time, s.
-        t_s: f64,
-    },
-    /// Average so.
-    SetAveraging(Averaging),
-    /// Accepts or declines a statement.
-    FindingStatus {
-        /// Which.
-        id: String,
-        /// What becomes of it.
-        status: Status,
-    },
-    /// The reader's own text of a statement.
-    FindingText {
-        /// Which.
-        id: String,
-        /// The text.
-        text: String,
-    },
-    /// Draw the overlay or not.
-    ShowOverlay(bool),
-}
-
-impl Edit {
-    /// What it does, for the undo button.
-    #[must_use]
-    pub fn label(&self) -> &'static str {
-        match self {
-            Edit::SetBoundary { .. } => "Move boundary",
-            Edit::SetMark { .. } => "Move mark",
-            Edit::SetAveraging(_) => "Choose averaging",
-            Edit::ShowOverlay(_) => "Predicted overlay",
-            Edit::FindingStatus { .. } => "Decide on statement",
-            Edit::FindingText { .. } => "Edit statement",
-        }
-    }
-}
-
-#[derive(Clone, Debug, Default)]
-struct Judgement {
-    facts: Facts,
-    decisions: Decisions,
-    settings: Settings,
-    findings: BTreeMap<String, (Status, Option<String>)>,
-}
-
-/// The open test.
+/// The open test, or none.
 #[derive(Debug, Default)]
 pub struct Document {
-    recording: Option<Arc<Recording>>,
-    label: String,
+    session: Option<Session>,
     path: Option<PathBuf>,
-    facts_file: FactsFile,
-    now: Judgement,
-    before: Vec<Judgement>,
-    after: Vec<Judgement>,
+    facts: Facts,
+    settings: Settings,
     revision: u64,
+    saved_revision: Option<u64>,
+    clock: Option<String>,
 }
 
 impl Document {
-    /// A test just read.
+    /// A test just opened; `path` is that of its session file, if it has one.
     #[must_use]
-    pub fn opened(recording: Recording, facts_file: FactsFile, name: &str) -> Self {
-        let (facts, identity, phases) = facts_file.to_analysis();
-        let decisions = Decisions { phases, ..Decisions::default() };
-        Self {
-            recording: Some(Arc::new(recording)),
-            label: identity.label.unwrap_or_else(|| name.to_owned()),
-            facts_file,
-            now: Judgement { facts, decisions, ..Judgement::default() },
-            revision: 1,
-            ..Self::default()
-        }
+    pub fn of(session: Session, path: Option<PathBuf>) -> Self {
+        let facts = session.judgement().engine_facts();
+        let saved_revision = path.as_ref().map(|_| 1);
+        let session = Some(session);
+        Self { session, path, facts, revision: 1, saved_revision, ..Self::default() }
     }
 
-    /// The facts as the file format holds them, free text included.
+    /// The same with a fixed clock, RFC 3339.
     #[must_use]
-    pub fn facts_file(&self) -> &FactsFile {
-        &self.facts_file
+    pub fn at(mut self, now: Option<String>) -> Self {
+        self.clock = now;
+        self
     }
 
-    /// Carries out `edit`.
-    pub fn apply(&mut self, edit: Edit) {
-        let before = self.now.clone();
-        match edit {
-            Edit::SetBoundary { phase, t_s } => self.now.decisions.phases.set(phase, Some(t_s)),
-            Edit::SetMark { mark: Mark::Vt1, t_s } => self.now.decisions.vt1_s = Some(t_s),
-            Edit::SetMark { mark: Mark::Vt2, t_s } => self.now.decisions.vt2_s = Some(t_s),
-            Edit::SetAveraging(a) => self.now.settings.averaging = a,
-            Edit::FindingStatus { id, status } => {
-                self.now.findings.entry(id).or_default().0 = status;
-            }
-            Edit::FindingText { id, text } => {
-                self.now.findings.entry(id).or_default().1 = Some(text);
-            }
-            Edit::ShowOverlay(shown) => self.now.settings.overlay_shown = shown,
-        }
-        self.before.push(before);
-        self.after.clear();
-        self.revision += 1;
+    /// The time that edits bear, RFC 3339 with offset.
+    #[must_use]
+    pub fn now(&self) -> String {
+        self.clock.clone().unwrap_or_else(now)
     }
 
-    /// Takes back the last edit.
+    /// The session, if a test is open.
+    #[must_use]
+    pub fn session(&self) -> Option<&Session> {
+        self.session.as_ref()
+    }
+
+    /// Carries out `edits` as one undo step.
+    ///
+    /// # Errors
+    /// One cannot be carried out, or the session is signed; nothing is changed then.
+    pub fn apply(&mut self, edits: &[Edit]) -> Result<(), Problem> {
+        let now = self.now();
+        let Some(session) = self.session.as_mut() else {
+            return Ok(());
+        };
+        session.apply_together(edits, &now)?;
+        self.changed();
+        Ok(())
+    }
+
+    /// Takes back the last step.
     pub fn undo(&mut self) {
-        if let Some(before) = self.before.pop() {
-            self.after.push(std::mem::replace(&mut self.now, before));
-            self.revision += 1;
+        let now = self.now();
+        if let Some(session) = self.session.as_mut()
+            && session.undo(&now).unwrap_or(false)
+        {
+            self.changed();
         }
     }
 
-    /// Carries out again what was taken back.
+    /// Makes the last step again.
     pub fn redo(&mut self) {
-        if let Some(after) = self.after.pop() {
-            self.before.push(std::mem::replace(&mut self.now, after));
-            self.revision += 1;
+        let now = self.now();
+        if let Some(session) = self.session.as_mut()
+            && session.redo(&now).unwrap_or(false)
+        {
+            self.changed();
         }
     }
 
-    /// Whether there is something to take back.
-    #[must_use]
-    pub fn can_undo(&self) -> bool {
-        !self.before.is_empty()
+    fn changed(&mut self) {
+        self.revision += 1;
+        if let Some(session) = &self.session {
+            self.facts = session.judgement().engine_facts();
+        }
     }
 
-    /// Whether there is something to carry out again.
+    /// Saves the session at `path`.
+    ///
+    /// # Errors
+    /// Nothing could be written; nothing is lost.
+    pub fn save(&mut self, path: &Path) -> Result<(), Problem> {
+        if let Some(session) = &self.session {
+            session.save(path)?;
+            self.path = Some(path.to_owned());
+            self.saved_revision = Some(self.revision);
+        }
+        Ok(())
+    }
+
+    /// The edit that would be taken back.
     #[must_use]
-    pub fn can_redo(&self) -> bool {
-        !self.after.is_empty()
+    pub fn can_undo(&self) -> Option<&Edit> {
+        self.session.as_ref().and_then(Session::can_undo)
+    }
+
+    /// The edit that would be made again.
+    #[must_use]
+    pub fn can_redo(&self) -> Option<&Edit> {
+        self.session.as_ref().and_then(Session::can_redo)
     }
 
     /// The recording, if a test is open.
     #[must_use]
     pub fn recording(&self) -> Option<&Arc<Recording>> {
-        self.recording.as_ref()
+        self.session.as_ref().map(Session::recording)
     }
 
-    /// Facts of person and test.
+    /// Facts of person and test, as the engine reads them.
     #[must_use]
     pub fn facts(&self) -> &Facts {
-        &self.now.facts
+        &self.facts
+    }
+
+    /// Facts as the file format holds them, free text included.
+    #[must_use]
+    pub fn facts_file(&self) -> Option<&FactsFile> {
+        self.session.as_ref().map(|s| &s.judgement().facts)
     }
 
     /// The reader's decisions.
     #[must_use]
-    pub fn decisions(&self) -> &Decisions {
-        &self.now.decisions
-    }
-
-    /// Statements as the sheet shows them.
-    #[must_use]
-    pub fn findings(&self, results: &Results) -> Vec<Finding> {
-        let texts = |list: &[analysis::results::Evidence]| {
-            list.iter().map(|e| crate::words::note(&e.note)).collect()
-        };
-        results
-            .statements
-            .iter()
-            .map(|s| {
-                let (status, text) = self.now.findings.get(s.id).cloned().unwrap_or_default();
-                Finding {
-                    id: s.id.to_owned(),
-                    section: s.section,
-                    status,
-                    text: text.unwrap_or_else(|| crate::words::note(&s.note)),
-                    stale: false,
-                    supports: texts(&s.supports),
-                    contradicts: texts(&s.contradicts),
-                    open: texts(&s.open),
-                }
-            })
-            .collect()
+    pub fn decisions(&self) -> Decisions {
+        self.session.as_ref().map(|s| s.judgement().decisions.clone()).unwrap_or_default()
     }
 
     /// Settings.
     #[must_use]
     pub fn settings(&self) -> &Settings {
-        &self.now.settings
+        self.session.as_ref().map_or(&self.settings, |s| &s.judgement().settings)
     }
 
-    /// Label of the case.
+    /// Label of the case: a pseudonym stated with the facts, else the name of the file.
     #[must_use]
-    pub fn label(&self) -> &str {
-        &self.label
+    pub fn label(&self) -> String {
+        let Some(session) = &self.session else {
+            return String::new();
+        };
+        let label = session.judgement().facts.identity.label.clone();
+        label.unwrap_or_else(|| session.source().name.clone())
     }
 
     /// Whether the session is signed.
     #[must_use]
     pub fn signed(&self) -> bool {
-        false
+        self.session.as_ref().is_some_and(|s| s.signed().is_some())
     }
 
     /// Whether the session stands saved as it is.
     #[must_use]
     pub fn saved(&self) -> bool {
-        false
+        self.session.is_none() || self.saved_revision == Some(self.revision)
+    }
+
+    /// Whether the reader has changed anything that is not saved.
+    #[must_use]
+    pub fn unsaved_work(&self) -> bool {
+        !self.saved() && self.revision > 1
     }
 
     /// Where the session was saved.
@@ -247,4 +187,11 @@ impl Document {
     pub fn revision(&self) -> u64 {
         self.revision
     }
+}
+
+/// The time of the desk, RFC 3339 with its offset where it can be told.
+#[must_use]
+pub fn now() -> String {
+    let now = time::OffsetDateTime::now_local().unwrap_or_else(|_| time::OffsetDateTime::now_utc());
+    record::clock::write(now.replace_nanosecond(0).unwrap_or(now))
 }

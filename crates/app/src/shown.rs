@@ -1,8 +1,7 @@
-//! Outcomes as shown: rounded once, with both intervals.
+//! Outcomes as shown: rounded once, with both intervals, reason and doubts in words.
 
-use analysis::results::{At, Interval, Outcome, Results, Section, Value};
-
-use crate::document::Status;
+use analysis::results::{At, Outcome, Results};
+use record::presentation::{values, wording};
 
 /// An outcome as strings.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -25,68 +24,24 @@ pub struct Shown {
     pub doubts: Vec<String>,
 }
 
-/// A statement as the sheet shows it.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Finding {
-    /// Id.
-    pub id: String,
-    /// Section.
-    pub section: Section,
-    /// What the reader did.
-    pub status: Status,
-    /// The text.
-    pub text: String,
-    /// Whether a value under it changed since it was taken up.
-    pub stale: bool,
-    /// Evidence for.
-    pub supports: Vec<String>,
-    /// Evidence against.
-    pub contradicts: Vec<String>,
-    /// Not measured, would matter.
-    pub open: Vec<String>,
-}
-
-impl Finding {
-    /// Whether the reader has decided on it.
-    #[must_use]
-    pub fn decided(&self) -> bool {
-        self.status != Status::Draft && !self.stale
-    }
-}
-
 /// The primary outcome (id, at) as shown; `None` where the engine gives none.
 #[must_use]
 pub fn primary(results: &Results, id: &str, at: At) -> Option<Shown> {
-    results.primary(id, at).map(outcome)
+    results.primary(id, at).map(|o| outcome(o, results))
 }
 
 /// An outcome as shown.
 #[must_use]
-pub fn outcome(o: &Outcome) -> Shown {
-    let decimals = o.unit.map_or(0, decimals);
-    let number = |v: f64| format!("{v:.decimals$}").replace('-', "−");
-    let range = |i: Interval| format!("[{}, {}]", number(i.low), number(i.high));
+pub fn outcome(o: &Outcome, results: &Results) -> Shown {
+    let shown = values::shown(o);
     Shown {
-        key: format!("{}@{}", o.id, o.at.code()),
-        label: format!("{} {}", o.id.replace('-', " "), o.at.code()),
-        value: match &o.value {
-            Some(Value::Number(v)) => number(*v),
-            Some(Value::Word(w)) => w.to_string(),
-            None => "–".into(),
-        },
-        unit: o.unit.map_or(String::new(), |u| u.shown().to_owned()),
-        recording: o.recording.map(range),
-        repeat: o.repeat.map(range),
-        reason: o.reason.as_ref().map(crate::words::note),
-        doubts: o.doubts.iter().map(crate::words::note).collect(),
-    }
-}
-
-fn decimals(unit: analysis::unit::Unit) -> usize {
-    use analysis::unit::Unit as U;
-    match unit {
-        U::MlPerBeat | U::MlPerKgMin | U::PercentPerMin | U::MlPerMinPerWatt => 1,
-        U::One | U::LPerMin => 2,
-        _ => 0,
+        key: shown.key,
+        label: shown.label,
+        value: shown.value,
+        unit: shown.unit,
+        recording: shown.recording,
+        repeat: shown.repeat,
+        reason: o.reason.as_ref().map(|n| wording::text(n, results)),
+        doubts: o.doubts.iter().map(|n| wording::text(n, results)).collect(),
     }
 }

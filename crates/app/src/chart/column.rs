@@ -69,10 +69,10 @@ pub(crate) fn frame_input(
     let whole = cx.whole();
     if response.double_clicked() {
         out.push(Command::Zoom(None));
-    } else if response.clicked() {
-        if let Some(pos) = response.interact_pointer_pos() {
-            out.push(Command::Cursor(scale.value_at(pos.x).clamp(whole.0, whole.1)));
-        }
+    } else if response.clicked()
+        && let Some(pos) = response.interact_pointer_pos()
+    {
+        out.push(Command::Cursor(scale.value_at(pos.x).clamp(whole.0, whole.1)));
     }
     if let (true, Some(from), Some(to)) = (
         response.dragged() || response.drag_stopped(),

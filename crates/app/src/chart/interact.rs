@@ -163,10 +163,10 @@ fn pointer(
     if held.kind != handle.kind || held.column != place.column {
         return;
     }
-    if let Some(pos) = response.interact_pointer_pos() {
-        if response.dragged() || response.drag_stopped() {
-            held.to(&place.scale, pos.x, ends, free);
-        }
+    if let Some(pos) = response.interact_pointer_pos()
+        && (response.dragged() || response.drag_stopped())
+    {
+        held.to(&place.scale, pos.x, ends, free);
     }
     if response.drag_stopped() {
         if held.moved {
@@ -181,21 +181,25 @@ fn keys(ui: &Ui, handle: &Handle, ends: &[f64], moved: &mut Vec<Moved>) {
         return;
     }
     let none = egui::Modifiers::NONE;
-    let mut to = handle.t_s;
-    ui.input_mut(|i| {
+    let from = handle.t_s;
+    let to = ui.input_mut(|i| {
         let shift = egui::Modifiers::SHIFT;
         if i.consume_key(shift, Key::ArrowLeft) {
-            to -= 10.0;
+            Some(from - 10.0)
         } else if i.consume_key(shift, Key::ArrowRight) {
-            to += 10.0;
+            Some(from + 10.0)
         } else if i.consume_key(none, Key::ArrowLeft) {
-            to = step(to, ends, -1);
+            Some(step(from, ends, -1))
         } else if i.consume_key(none, Key::ArrowRight) {
-            to = step(to, ends, 1);
+            Some(step(from, ends, 1))
+        } else {
+            None
         }
     });
-    let to = place(to, ends, false, handle.range_s);
-    if (to - handle.t_s).abs() > 1e-9 {
+    // Focus alone moves nothing, even where a proposal stands between two breaths.
+    if let Some(to) = to.map(|to| place(to, ends, false, handle.range_s))
+        && (to - from).abs() > 1e-9
+    {
         moved.push(Moved::To(handle.kind, to));
     }
 }

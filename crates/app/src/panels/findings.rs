@@ -2,6 +2,8 @@
 
 use egui::{Align, Rect, ScrollArea, Stroke, StrokeKind, Ui, UiBuilder, pos2, vec2};
 
+use record::session::findings::Status;
+
 use super::{key_values, statements};
 use crate::command::{Command, Outbox};
 use crate::context::Context;
@@ -18,7 +20,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let big = if cx.grid.narrow { 15.0 } else { size::TITLE };
     text::plain(ui, pos2(rect.left() + pad, base), Align::Min, "Findings", big, t.ink);
     let list = cx.findings;
-    let decided = list.iter().filter(|f| f.decided()).count();
+    let decided = list.iter().filter(|f| f.status != Status::Draft && !f.stale).count();
     let mut words = format!("{decided} of {} decided", list.len());
     if !cx.grid.narrow {
         words.push_str("  ·  widen  F");

@@ -5,11 +5,11 @@ use egui::{Align, Pos2, Rect, Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo, p
 
 use crate::command::{Command, Outbox};
 use crate::context::Context;
-use crate::document::{Edit, Status};
-use crate::shown::Finding;
 use crate::theme::size;
 use crate::view_state::Dialog;
 use crate::widgets::{button, text};
+use record::session::Edit;
+use record::session::findings::{FindingShown, Status};
 
 /// The question of a section.
 #[must_use]
@@ -26,7 +26,7 @@ pub fn question(section: Section) -> &'static str {
 
 /// State in a word.
 #[must_use]
-pub fn state_word(finding: &Finding) -> &'static str {
+pub fn state_word(finding: &FindingShown) -> &'static str {
     match (finding.stale, finding.status) {
         (true, _) => "out of date",
         (false, Status::Draft) => "draft",
@@ -47,7 +47,7 @@ pub fn list(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, width: f32) {
     }
 }
 
-fn one(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, width: f32, finding: &Finding) {
+fn one(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, width: f32, finding: &FindingShown) {
     let t = cx.tokens;
     let top = ui.cursor().min;
     let indent = 20.0;
@@ -91,7 +91,7 @@ fn one(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, width: f32, finding: &Fi
 }
 
 /// Square of the state: hollow machine, solid reader, triangle out of date.
-fn square(ui: &mut Ui, cx: &Context<'_>, at: Pos2, finding: &Finding) {
+fn square(ui: &mut Ui, cx: &Context<'_>, at: Pos2, finding: &FindingShown) {
     let t = cx.tokens;
     let ink = Stroke::new(1.5, t.ink);
     let rect = Rect::from_center_size(at, vec2(11.0, 11.0));
@@ -124,7 +124,7 @@ fn square(ui: &mut Ui, cx: &Context<'_>, at: Pos2, finding: &Finding) {
     response.widget_info(|| WidgetInfo::labeled(Role::Image, true, &words));
 }
 
-fn actions(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, row: Rect, finding: &Finding) {
+fn actions(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, row: Rect, finding: &FindingShown) {
     let status = |status| Command::Edit(Edit::FindingStatus { id: finding.id.clone(), status });
     let edit = Command::Show(Dialog::Statement(finding.id.clone()));
     let buttons: Vec<(Command, &str)> = if finding.stale {
@@ -163,7 +163,7 @@ fn actions(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, row: Rect, finding: 
 }
 
 /// Tells buttons of the same label apart for assistive technology.
-fn name(ui: &Ui, response: &egui::Response, label: &str, finding: &Finding) {
+fn name(ui: &Ui, response: &egui::Response, label: &str, finding: &FindingShown) {
     let words = format!("{label} · {}", question(finding.section));
     ui.ctx().accesskit_node_builder(response.id, |node| {
         node.set_description(words);
@@ -171,7 +171,7 @@ fn name(ui: &Ui, response: &egui::Response, label: &str, finding: &Finding) {
     });
 }
 
-fn counts(finding: &Finding) -> String {
+fn counts(finding: &FindingShown) -> String {
     let mut parts = Vec::new();
     for (name, n) in [
         ("for", finding.supports.len()),
@@ -185,15 +185,15 @@ fn counts(finding: &Finding) -> String {
     parts.join("  ·  ")
 }
 
-fn evidence(ui: &mut Ui, cx: &Context<'_>, at: Pos2, width: f32, finding: &Finding) -> f32 {
+fn evidence(ui: &mut Ui, cx: &Context<'_>, at: Pos2, width: f32, finding: &FindingShown) -> f32 {
     let mut y = at.y;
     for (name, list) in [
         ("for", &finding.supports),
         ("against", &finding.contradicts),
         ("not measured", &finding.open),
     ] {
-        for words in list {
-            let words = format!("{name}: {words}");
+        for one in list {
+            let words = format!("{name}: {}", one.text);
             let t = cx.tokens;
             let block = text::block(ui, pos2(at.x, y), width, &words, size::BODY, t.ink2);
             y = block.rect.bottom() + 3.0;

@@ -5,10 +5,10 @@ use egui::{Align, Rect, Role, Sense, Ui, WidgetInfo, pos2, vec2};
 
 use crate::command::{Command, Outbox};
 use crate::context::Context;
-use crate::document::Edit;
 use crate::theme::size;
 use crate::view_state::View;
 use crate::widgets::text::{self, Run};
+use record::session::Edit;
 
 /// Draws the row.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
@@ -167,7 +167,7 @@ pub fn averaging(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
         .show_ui(ui, |ui| {
             for choice in AVERAGINGS {
                 if ui.selectable_label(choice == now, averaging_name(choice)).clicked() {
-                    out.push(Command::Edit(Edit::SetAveraging(choice)));
+                    out.push(Command::Edit(Edit::averaging(choice)));
                 }
             }
         })

@@ -37,7 +37,7 @@ pub fn key_table(ui: &mut Ui, cx: &Context<'_>, width: f32) {
     ui.painter().hline(top.x..=(top.x + width), top.y + 23.0, Stroke::new(1.0, t.frame));
     let mut y = top.y + 24.0;
     for outcome in cx.results.outcomes.iter().filter(|o| o.primary) {
-        let shown = shown::outcome(outcome);
+        let shown = shown::outcome(outcome, cx.results);
         row(ui, cx, top.x, width, x, y, &shown);
         y += 22.0;
         ui.painter().hline(top.x..=(top.x + width), y, Stroke::new(1.0, t.grid));

@@ -18,7 +18,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, rect: Rect, title: &str, ids: &[&str]
             if y + 40.0 > rect.bottom() {
                 return;
             }
-            let shown = shown::outcome(o);
+            let shown = shown::outcome(o, cx.results);
             y += 18.0;
             text::plain(ui, pos2(rect.left(), y), Align::Min, &shown.label, size::BODY, t.ink2);
             let value = format!("{} {}", shown.value, shown.unit).trim().to_owned();

@@ -114,7 +114,7 @@ fn summary(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
         ui.painter().hline(rect.x_range(), y - 2.0, egui::Stroke::new(1.0, t.grid));
         for outcome in cx.results.outcomes.iter().filter(|o| o.id == id && o.at == at) {
             y += 18.0;
-            let shown = crate::shown::outcome(outcome);
+            let shown = crate::shown::outcome(outcome, cx.results);
             let label = format!("{name}  ·  {}", outcome.method.replace('-', " "));
             let ink = if outcome.primary { t.ink } else { t.ink2 };
             text::plain(ui, pos2(rect.left(), y), Align::Min, label, size::BODY, ink);
@@ -160,9 +160,9 @@ fn why(cx: &Context<'_>, mark: Threshold) -> Option<String> {
         Threshold::Vt2 => &cx.results.thresholds.vt2,
     };
     match proposal {
-        Proposal::Proposed(t) => t.doubts.first().map(crate::words::note),
+        Proposal::Proposed(t) => t.doubts.first().map(|n| crate::words::note(n, cx.results)),
         Proposal::NotReached(n) | Proposal::Indeterminate(n) | Proposal::Absent(n) => {
-            Some(crate::words::note(n))
+            Some(crate::words::note(n, cx.results))
         }
     }
 }

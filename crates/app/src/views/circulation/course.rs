@@ -9,13 +9,12 @@ use crate::chart::handles::HandleKind;
 use crate::chart::interact::Geometry;
 use crate::chart::layout::Scale;
 use crate::chart::paint;
-use crate::chart::spec::{CARRIED, Chart, EndLabel, FINE, Item, Mark, Missing, Title};
+use crate::chart::spec::{CARRIED, Chart, EndLabel, FINE, Item, Mark, Title};
 use crate::chart::ticks::{Axis, clock, ticks, time_step};
-use crate::command::{Command, Outbox};
+use crate::command::Outbox;
 use crate::context::Context;
 use crate::ribbon;
 use crate::theme::{Family, size};
-use crate::view_state::Dialog;
 use crate::views::series::{self, GAP_S};
 use crate::widgets::text::{self, Run};
 
@@ -265,16 +264,4 @@ fn ramp_time(ui: &mut Ui, cx: &Context<'_>, labels: Rect, scale: &Scale) {
     }
     let run = [Run::new("ramp time", size::BODY, cx.tokens.ink2)];
     text::paint(ui, pos2(labels.right(), labels.bottom() - 4.0), Align::Max, &run);
-}
-
-/// What to do about a course that waits for a fact.
-#[must_use]
-pub fn waiting(cx: &Context<'_>) -> Option<Missing> {
-    let course = cx.results.course.as_ref()?;
-    let first = course.withheld.first()?;
-    Some(Missing {
-        what: crate::words::note(first),
-        then: String::new(),
-        todo: Some(Command::Show(Dialog::Facts)),
-    })
 }

@@ -44,7 +44,7 @@ fn chart(cx: &Context<'_>) -> Chart {
     chart.description = describe(cx);
     if let Some(why) = fick.withheld.first() {
         chart.missing = Some(Missing {
-            what: crate::words::note(why),
+            what: crate::words::note(why, cx.results),
             then: String::new(),
             todo: Some(Command::Show(Dialog::Facts)),
         });

@@ -24,7 +24,11 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     text::line(ui, pos2(rect.left(), rect.top() + 14.0), Align::Min, &head);
     let mut y = rect.top() + 24.0;
     let Some(table) = &fick.table else {
-        let words = fick.withheld.first().or(fick.no_bound.as_ref()).map(crate::words::note);
+        let words = fick
+            .withheld
+            .first()
+            .or(fick.no_bound.as_ref())
+            .map(|n| crate::words::note(n, cx.results));
         let words = words.unwrap_or_else(|| "Waits for a course and stated facts.".into());
         text::block(ui, pos2(rect.left(), y + 8.0), rect.width(), &words, size::STATEMENT, t.ink);
         return;
@@ -137,7 +141,7 @@ fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f
     if let Some(sentence) = &fick.sentence {
         let at = pos2(rect.left() + 15.0, y + 4.0);
         let size = if cx.grid.narrow { size::BODY } else { size::SECTION };
-        let words = crate::words::note(sentence);
+        let words = crate::words::note(sentence, cx.results);
         let block = text::block(ui, at, rect.width() - 15.0, &words, size, t.ink);
         let bar = Rect::from_min_max(
             pos2(rect.left(), y),
@@ -148,14 +152,15 @@ fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f
     }
     let why = match (&fick.bound, &fick.no_bound) {
         (Some(bound), _) => {
-            let inputs: Vec<String> = bound.assumptions.iter().map(crate::words::note).collect();
+            let inputs: Vec<String> =
+                bound.assumptions.iter().map(|n| crate::words::note(n, cx.results)).collect();
             format!(
                 "Forward stroke volume at peak was probably not below {:.0}\u{a0}mL. Cautious end of every input: {}.",
                 bound.stroke_volume,
                 inputs.join(", ")
             )
         }
-        (None, Some(why)) => crate::words::note(why),
+        (None, Some(why)) => crate::words::note(why, cx.results),
         (None, None) => String::new(),
     };
     if !why.is_empty() && y + 30.0 < rect.bottom() {
