@@ -14,6 +14,7 @@ use crate::context::Context;
 use crate::derived::Derived;
 use crate::dispatch;
 use crate::document::Document;
+use crate::opening::{self, Reading};
 use crate::preferences::Preferences;
 use crate::theme::{self, Tokens};
 use crate::view_state::ViewState;
@@ -52,8 +53,8 @@ impl App {
 
     /// Opens a breath table; a refusal stands in the status line.
     pub fn open_table(&mut self, bytes: &[u8], name: &str, facts: FactsFile) {
-        let answers = record::import::Answers::none();
-        match crate::opening::table(bytes, name, facts, &answers, None) {
+        let reading = Reading { facts, ..Reading::default() };
+        match opening::table(bytes, name, reading) {
             Ok(document) => self.show(document),
             Err(problem) => self.view.status = Some(problem.to_string()),
         }

@@ -3,29 +3,28 @@
 use std::path::Path;
 
 use record::facts_file::FactsFile;
-use record::import::{Answers, Imported, MAX_BYTES, Profile, import};
+use record::import::{Answers, MAX_BYTES, Profile};
 
 use super::args::Args;
 use super::failure::Failure;
 use super::files;
 use crate::App;
-use crate::document::Document;
+use crate::opening::{self, Reading};
 
 /// The window's state on a file.
 ///
 /// # Errors
 /// Unreadable or refused (3).
 pub fn app(path: &Path, args: &Args) -> Result<App, Failure> {
-    let Imported { recording, .. } = table(path, args)?;
+    let bytes = files::read(path, MAX_BYTES)?;
+    let document = opening::bytes(&bytes, path, reading(args)?).map_err(Failure::refused)?;
     let mut app = App::new();
-    let label = path.file_stem().unwrap_or_default().to_string_lossy().into_owned();
-    app.document = Document::opened(recording, facts(args)?, &label);
+    app.show(document);
     Ok(app)
 }
 
-/// A breath table, read.
-fn table(path: &Path, args: &Args) -> Result<Imported, Failure> {
-    let bytes = files::read(path, MAX_BYTES)?;
+/// How a breath table is to be read.
+fn reading(args: &Args) -> Result<Reading, Failure> {
     let mut answers = Answers::none();
     for answer in &args.answers {
         answers.add(answer).map_err(Failure::refused)?;
@@ -37,8 +36,7 @@ fn table(path: &Path, args: &Args) -> Result<Imported, Failure> {
         }
         None => None,
     };
-    let name = path.display().to_string();
-    import(&bytes, &name, &answers, profile.as_ref()).map_err(Failure::refused)
+    Ok(Reading { facts: facts(args)?, answers, profile, clock: args.now.clone() })
 }
 
 /// The facts beside the test; nothing stated without `--facts`.
