@@ -95,7 +95,11 @@ pub fn draw(seed: u64, protocol: Protocol, class: Class) -> Plan {
     let vt2_factor = rng.between(1.2, 1.7);
     match class {
         Class::Submaximal => metabolism.vt1_vo2 = metabolism.vo2_unloaded + 1.3 * rise,
-        Class::Straight => metabolism.v_slope_rise = 0.0,
+        // Steep enough for an RER near 1.0 at the end: the harder null.
+        Class::Straight => {
+            metabolism.v_slope_rise = 0.0;
+            metabolism.v_slope += 0.1;
+        }
         _ => {}
     }
     let mut ventilation = ventilation(&mut rng, rise);

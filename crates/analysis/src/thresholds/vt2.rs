@@ -14,9 +14,10 @@ use crate::stage::Stage;
 const FIRST_SHARE: f64 = 0.40;
 const LAST_S: f64 = 30.0;
 /// Least evidence of the V̇E bend, the PETCO₂ bend and of both.
-const T_VE: f64 = 4.0;
+// Raised from 4 and 20 on simulated tests of seeds below 10,000, against false proposals.
+const T_VE: f64 = 7.0;
 const T_PETCO2: f64 = 6.0;
-const T_SUM: f64 = 20.0;
+const T_SUM: f64 = 22.0;
 /// Evidence below which VT2 counts as not seen.
 const T_NOT_SEEN: f64 = 4.0;
 /// Admissible relative rise of the V̇E–V̇CO₂ slope.

@@ -38,6 +38,8 @@ struct Scored {
     half_pct: f64,
     /// Error against the functional truth, %.
     error_pct: f64,
+    /// Size of the error in half widths.
+    in_widths: f64,
 }
 
 /// What became of a threshold.
@@ -54,6 +56,8 @@ struct Tested {
     items: [Option<Scored>; ITEMS.len()],
     vt1: Fate,
     vt2: Fate,
+    /// Codes of why not.
+    why: [Option<&'static str>; 2],
     /// Error against the structural truth, % of it.
     vt1_error: Option<f64>,
     vt2_error: Option<f64>,
@@ -67,6 +71,13 @@ fn fate(proposal: &Proposal) -> Fate {
         Proposal::Proposed(_) => Fate::Proposed,
         Proposal::NotReached(_) => Fate::NotReached,
         Proposal::Indeterminate(_) | Proposal::Absent(_) => Fate::Indeterminate,
+    }
+}
+
+fn why(proposal: &Proposal) -> Option<&'static str> {
+    match proposal {
+        Proposal::Proposed(_) => None,
+        Proposal::NotReached(n) | Proposal::Indeterminate(n) | Proposal::Absent(n) => Some(n.code),
     }
 }
 
@@ -132,6 +143,11 @@ fn score(id: &str, noisy: &Results, clean: &Clean) -> Option<Scored> {
         covered: interval.low <= truth && truth <= interval.high,
         half_pct: 50.0 * (interval.high - interval.low) / truth,
         error_pct: 100.0 * (value - truth) / truth,
+        in_widths: if truth < value {
+            (value - truth) / (value - interval.low)
+        } else {
+            (truth - value) / (interval.high - value)
+        },
     })
 }
 
@@ -154,6 +170,7 @@ fn test(seed: u64, protocol: Protocol, class: Class) -> Tested {
         items: ITEMS.map(|id| score(id, &noisy, &clean)),
         vt1: fate(&noisy.thresholds.vt1),
         vt2: fate(&noisy.thresholds.vt2),
+        why: [&noisy.thresholds.vt1, &noisy.thresholds.vt2].map(why),
         vt1_error: against(&noisy.thresholds.vt1, truth.vt1_vo2),
         vt2_error: against(&noisy.thresholds.vt2, truth.vt2_vo2),
         reached_vt1: truth.vt1_vo2.is_some(),
@@ -192,6 +209,7 @@ pub fn report(seeds: Range<u64>) -> String {
     width_table(&mut out, &all);
     threshold_table(&mut out, &all);
     noise_table(&mut out, &all);
+    reason_table(&mut out, &all);
     class_table(&mut out, &seeds);
     out
 }
@@ -221,7 +239,8 @@ fn width_table(out: &mut String, all: &[(&str, Vec<Tested>)]) {
     let _ = writeln!(
         out,
         "\n## Width and error against the functional truth, all protocols\n\n\
-         | item | median half width, % | median error, % | SD of error, % |\n|---|---|---|---|"
+         | item | median half width, % | median error, % | SD of error, % | factor on the width that \
+         would cover 90 % |\n|---|---|---|---|---|"
     );
     for (k, id) in ITEMS.iter().enumerate() {
         let scored: Vec<Scored> =
@@ -232,9 +251,10 @@ fn width_table(out: &mut String, all: &[(&str, Vec<Tested>)]) {
         let sd = (errors.iter().map(|e| (e - mean) * (e - mean)).sum::<f64>() / n).sqrt();
         let _ = writeln!(
             out,
-            "| `{id}` | {:.1} | {:+.1} | {sd:.1} |",
+            "| `{id}` | {:.1} | {:+.1} | {sd:.1} | {:.2} |",
             centile(scored.iter().map(|s| s.half_pct), 50),
-            centile(errors.iter().copied(), 50)
+            centile(errors.iter().copied(), 50),
+            centile(scored.iter().map(|s| s.in_widths), 90)
         );
     }
 }
@@ -302,6 +322,27 @@ fn noise_table(out: &mut String, all: &[(&str, Vec<Tested>)]) {
             .filter(|t| (low..high).contains(&t.noise) && t.reached_vt1 && t.reached_vt2)
             .collect();
         let _ = writeln!(out, "| {name} | {}", threshold_row(&group));
+    }
+}
+
+/// What stood in the way of a proposal, most frequent first.
+fn reason_table(out: &mut String, all: &[(&str, Vec<Tested>)]) {
+    let _ = writeln!(out, "\n## Why no proposal, share of tests that passed both thresholds\n");
+    for (k, name) in ["VT1", "VT2"].iter().enumerate() {
+        let had: Vec<&Tested> = all
+            .iter()
+            .flat_map(|a| a.1.iter())
+            .filter(|t| t.reached_vt1 && t.reached_vt2)
+            .collect();
+        let mut codes: Vec<&str> = had.iter().filter_map(|t| t.why[k]).collect();
+        codes.sort_unstable();
+        let mut counts: Vec<(usize, &str)> =
+            codes.chunk_by(|a, b| a == b).map(|c| (c.len(), c[0])).collect();
+        counts.sort_by(|a, b| b.cmp(a));
+        let share = |n: usize| 100.0 * n as f64 / had.len().max(1) as f64;
+        let list: Vec<String> =
+            counts.iter().map(|(n, code)| format!("`{code}` {:.1} %", share(*n))).collect();
+        let _ = writeln!(out, "- {name}: {}", list.join(", "));
     }
 }
 
