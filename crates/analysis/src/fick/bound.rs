@@ -81,7 +81,9 @@ pub(crate) fn bound(pulse: Ranged, blood: &Blood, s: &FickSettings) -> Bound {
     assumptions.push(Note::new("bound-sao2").with("value", percent(blood.sao2_upper)));
     assumptions.push(Note::new("bound-cohb").with("value", percent(blood.cohb)));
     assumptions.push(Note::new("bound-extraction").with("value", percent(s.extraction_limit)));
-    assumptions.push(Note::new("bound-hufner").with("value", Arg::Number(s.hufner, Unit::One)));
+    assumptions.push(
+        Note::new("bound-hufner").with("value", Arg::Name(format!("{:.2}", s.hufner).into())),
+    );
     Bound {
         stroke_volume: equal_pulse_sv(low, content),
         usual: equal_pulse_sv(pulse.value, usual_content),

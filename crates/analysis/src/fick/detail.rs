@@ -94,9 +94,9 @@ pub struct Bound {
 pub struct FactorRow {
     /// The assumption.
     pub model: Model,
-    /// Change of extraction, ln %.
+    /// Change of extraction, %.
     pub content: Ranged,
-    /// Change of stroke volume, ln %; `None` where it is assumed.
+    /// Change of stroke volume, %.
     pub stroke_volume: Ranged,
     /// Whether the stroke-volume column is the assumption itself.
     pub stroke_volume_assumed: bool,
@@ -117,7 +117,7 @@ pub struct FactorTable {
     pub pulse: (f64, f64),
     /// V̇O₂ at both, mL/min.
     pub vo2: (f64, f64),
-    /// Change of the O₂ pulse, ln %.
+    /// Change of the O₂ pulse, %.
     pub pulse_change: Ranged,
     /// Rows.
     pub rows: Vec<FactorRow>,

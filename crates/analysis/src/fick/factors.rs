@@ -39,9 +39,11 @@ fn log_ranged(median: f64, sd: f64) -> Ranged {
     Ranged { value: median, interval: Interval { low: median / width, high: median * width } }
 }
 
-/// ln % with its interval.
+/// Change in % with its interval, from a difference of logarithms.
 fn change(ln: f64, sd: f64) -> Ranged {
-    Ranged { value: 100.0 * ln, interval: Interval::around(100.0 * ln, 100.0 * Z * sd) }
+    let percent = |x: f64| 100.0 * libm::expm1(x);
+    let interval = Interval { low: percent(ln - Z * sd), high: percent(ln + Z * sd) };
+    Ranged { value: percent(ln), interval }
 }
 
 fn hypot(parts: &[f64]) -> f64 {
@@ -160,7 +162,7 @@ mod tests {
         assert!((a - b).abs() <= tolerance, "{what}: {a} is not {b} ± {tolerance}");
     }
 
-    /// One case: second point, ln % (5, 50, 95) of stroke volume under A1 and A2, stroke volume at
+    /// One case: second point, 100 × ln (5, 50, 95) of stroke volume under A1 and A2, stroke volume at
     /// the end under both, probabilities, and extraction needed under B.
     struct Case {
         vo2: f64,
@@ -209,7 +211,8 @@ mod tests {
                 let row = t.row(model).unwrap();
                 let triple = |r: Ranged| [r.interval.low, r.value, r.interval.high];
                 for j in 0..3 {
-                    near("change", triple(row.stroke_volume)[j], case.change[k][j], 1.0);
+                    let ln = 100.0 * libm::log1p(triple(row.stroke_volume)[j] / 100.0);
+                    near("change", ln, case.change[k][j], 1.0);
                     near("stroke", triple(row.stroke_volume_end)[j], case.stroke[k][j], 1.1);
                 }
                 near("probability", row.probability_lower, case.lower[k], 0.011);
@@ -231,8 +234,9 @@ mod tests {
         let t = table(points, 2200.0, CONTENT_SD);
         assert_eq!(t.rows.len(), 4);
         for row in &t.rows {
-            let sum = row.content.value + row.stroke_volume.value;
-            near("sum", sum, t.pulse_change.value, 1e-9);
+            let factor = |r: Ranged| 1.0 + r.value / 100.0;
+            let product = factor(row.content) * factor(row.stroke_volume);
+            near("product", product, factor(t.pulse_change), 1e-12);
         }
     }
 

@@ -207,3 +207,6 @@ mod expected {
         Some(Ranged { value, interval: Interval::around(value, 1.645 * line.sd(vo2)) })
     }
 }
+
+#[cfg(test)]
+mod tests;

@@ -123,31 +123,39 @@ fn rate(stage: &Stage<'_>) -> Outcome {
     }
 }
 
-/// Share of the change of the O₂ pulse that saturation alone explains, ln %, rest to peak.
+/// Share of the O₂ pulse that the fall of saturation alone explains, %: from rest to the last 30 s
+/// of the increments, which may lie after the window of peak V̇O₂.
 fn content_share(stage: &Stage<'_>) -> Outcome {
     let (id, method, unit) = ("fick-content-share", "ln-saturation", Unit::Percent);
-    let absent = |reason| Outcome::absent(id, At::Peak, method, reason).in_unit(unit);
+    let absent = |reason| Outcome::absent(id, At::Ramp, method, reason).in_unit(unit);
     if !spo2_usable(stage) {
         let reason = stage
             .missing(&[Quantity::Spo2])
             .filter(|_| stage.results.number("spo2", At::Peak).is_none());
         return absent(reason.unwrap_or_else(|| Note::new("spo2-not-confirmed")));
     }
-    let first =
-        stage.results.number("spo2", At::Rest).or_else(|| stage.results.number("spo2", At::WarmUp));
-    let (Some(first), Some(peak)) = (first, stage.results.number("spo2", At::Peak)) else {
+    let number = |at| stage.results.number("spo2", at);
+    let first = number(At::Rest).or_else(|| number(At::WarmUp));
+    let Some((first, last)) = first.zip(last_saturation(stage)) else {
         return absent(Note::new("spo2-not-at-both"));
     };
-    if first <= 0.0 || peak <= 0.0 {
+    if first <= 0.0 || last <= 0.0 {
         return absent(Note::new("spo2-not-at-both"));
     }
-    let value = 100.0 * libm::log(peak / first);
-    let (a, b) = (spo2_error(first) / first, spo2_error(peak) / peak);
     // The stated error of an oximeter is read as its 90 % interval.
-    let half = 100.0 * (a * a + b * b).sqrt();
-    Outcome::quantity(id, At::Peak, method, unit, value)
-        .recorded_within(Some(Interval::around(value, half)))
+    let (a, b) = (spo2_error(first) / first, spo2_error(last) / last);
+    let (ln, half) = (libm::log(last / first), (a * a + b * b).sqrt());
+    let percent = |x: f64| 100.0 * libm::expm1(x);
+    Outcome::quantity(id, At::Ramp, method, unit, percent(ln))
+        .recorded_within(Some(Interval { low: percent(ln - half), high: percent(ln + half) }))
         .repeated_within(None)
+}
+
+/// SpO₂ over the last 30 s of the increments, else at peak.
+fn last_saturation(stage: &Stage<'_>) -> Option<f64> {
+    let end = stage.results.phases.ramp()?.1;
+    let last = stage.window_mean(Quantity::Spo2, (end - 30.0, end));
+    last.or_else(|| stage.results.number("spo2", At::Peak))
 }
 
 fn shunt(stage: &Stage<'_>, detail: &FickDetail) -> Outcome {

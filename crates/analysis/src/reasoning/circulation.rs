@@ -233,14 +233,14 @@ fn rate(stage: &Stage<'_>) -> Option<Statement> {
 /// How much of a change saturation explains; always with low perfusion as another explanation.
 fn content(stage: &Stage<'_>) -> Option<Statement> {
     let id = "fick-content-share";
-    let share = stage.results.number(id, At::Peak)?;
+    let share = stage.results.number(id, At::Ramp)?;
     if share > -4.0 {
         return None;
     }
     let note = Note::new("content-share").with("share", Arg::Number(-share, Unit::Percent));
     Some(
         Draft::new("content-share", Section::Circulation, note)
-            .resting_on(id, At::Peak)
+            .resting_on(id, At::Ramp)
             .contradicted_by(Evidence {
                 note: Note::new("low-perfusion-possible"),
                 rests_on: Vec::new(),

@@ -200,10 +200,8 @@ pub(crate) fn breathing(stage: &Stage<'_>) -> Vec<Statement> {
 
 fn saturation(stage: &Stage<'_>) -> Option<Statement> {
     let results = &stage.results;
-    results.number("spo2-lowest", At::Ramp)?;
-    let rest = results.number("spo2", At::Rest);
-    let peak = results.number("spo2", At::Peak);
-    let fell = rest.zip(peak).map(|(a, b)| a - b >= 4.0);
+    let lowest = results.number("spo2-lowest", At::Ramp)?;
+    let fell = results.number("spo2", At::Rest).map(|rest| rest - lowest >= 4.0);
     let code = match (spo2_usable(stage), fell) {
         (false, _) => "saturation-unconfirmed",
         (true, Some(true)) => "saturation-fell",

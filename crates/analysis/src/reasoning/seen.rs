@@ -74,9 +74,10 @@ impl Seen {
             petco2_low: number("petco2", At::Peak).map(|peak| {
                 peak < 33.0 && number("petco2", At::Vt1).is_none_or(|vt1| peak <= vt1 - 1.0)
             }),
-            spo2_fall: pair("spo2", At::Rest, At::Peak)
+            spo2_fall: number("spo2", At::Rest)
+                .zip(number("spo2-lowest", At::Ramp))
                 .filter(|_| spo2_usable(stage))
-                .map(|(a, b)| a - b),
+                .map(|(rest, lowest)| rest - lowest),
             shunt: results
                 .primary("fick-shunt-signature", At::Ramp)
                 .and_then(Outcome::word)

@@ -90,7 +90,7 @@ signs! {
     /// PETCO₂ low at peak and lower than at VT1.
     Petco2Low "sign-petco2-low" "sign-petco2-not-low" ["petco2" Peak] |s| s.petco2_low;
     /// Confirmed, gradual fall of saturation by 4 points or more.
-    Desaturation "sign-desaturation" "sign-no-desaturation" ["spo2" Peak] |s| s.spo2_fall.map(|x| x >= 4.0);
+    Desaturation "sign-desaturation" "sign-no-desaturation" ["spo2-lowest" Ramp] |s| s.spo2_fall.map(|x| x >= 4.0);
     /// The step of a shunt.
     ShuntStep "sign-shunt-step" "sign-no-shunt-step" ["fick-shunt-signature" Ramp] |s| s.shunt;
     /// Haemoglobin below 130 (men) or 120 g/L (women), the limits of the WHO.
