@@ -212,16 +212,18 @@ mod tests {
         assert!((one_line - sse - fit.gain).abs() < 1e-9);
     }
 
+    fn square(x: f64) -> f64 {
+        x * x
+    }
+
     fn fits_line_sse(points: &Points<'_>) -> f64 {
         let n = points.x.len();
         let total: f64 = points.w.iter().sum();
         let mx = (0..n).map(|i| points.w[i] * points.x[i]).sum::<f64>() / total;
         let my = (0..n).map(|i| points.w[i] * points.y[i]).sum::<f64>() / total;
-        let xx: f64 = (0..n).map(|i| points.w[i] * (points.x[i] - mx).powi(2)).sum();
+        let xx: f64 = (0..n).map(|i| points.w[i] * square(points.x[i] - mx)).sum();
         let xy: f64 = (0..n).map(|i| points.w[i] * (points.x[i] - mx) * (points.y[i] - my)).sum();
-        (0..n)
-            .map(|i| points.w[i] * (points.y[i] - my - xy / xx * (points.x[i] - mx)).powi(2))
-            .sum()
+        (0..n).map(|i| points.w[i] * square(points.y[i] - my - xy / xx * (points.x[i] - mx))).sum()
     }
 
     #[test]

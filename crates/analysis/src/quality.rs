@@ -179,10 +179,9 @@ fn drift(stage: &Stage<'_>, found: &mut Vec<Finding>) {
     let rer: Vec<f64> = vco2.iter().zip(&vo2).map(|(c, o)| c / o).collect();
     if let Some(line) = regression::line(&t, &rer) {
         let per_min = 60.0 * line.slope;
-        let scatter = (rer.iter().zip(&t).map(|(r, t)| (r - line.at(*t)).powi(2)).sum::<f64>()
-            / (t.len() as f64 - 2.0)
-            / line.sxx)
-            .sqrt();
+        let off = rer.iter().zip(&t).map(|(r, t)| r - line.at(*t));
+        let squares: f64 = off.map(|o| o * o).sum();
+        let scatter = (squares / (t.len() as f64 - 2.0) / line.sxx).sqrt();
         if per_min.abs() > 0.05 && line.slope.abs() > 2.0 * scatter {
             let note = number("rer-drift", "per-min", per_min, Unit::One);
             add(found, Severity::Remark, Some(window), note);

@@ -36,7 +36,7 @@ pub fn line(x: &[f64], y: &[f64]) -> Option<Line> {
     }
     let slope = sxy / sxx;
     let spread = sxx > 1e-18 * mx * mx * n as f64;
-    (spread && slope.is_finite()).then(|| Line { slope, intercept: my - slope * mx, sxx, n })
+    (spread && slope.is_finite()).then_some(Line { slope, intercept: my - slope * mx, sxx, n })
 }
 
 /// Share of the variance of `y` that the line explains.

@@ -157,12 +157,12 @@ fn inspiratory_capacity(stage: &Stage<'_>, rest: Option<(f64, f64)>) -> Outcome 
     let value = || {
         let ramp = stage.results.phases.ramp().ok_or_else(|| stage.no_ramp())?;
         let before = rest.map_or(ramp.0, |r| r.1);
-        let at = stage.facts.events.iter().filter_map(|e| match e.kind {
+        let mut at = stage.facts.events.iter().filter_map(|e| match e.kind {
             EventKind::IcManoeuvre(Some(x)) => Some((e.t_s, x)),
             _ => None,
         });
-        let resting = at.clone().filter(|(t, _)| *t <= before).next_back();
-        let loaded = at.filter(|(t, _)| *t > ramp.0 && *t <= ramp.1 + 15.0).next_back();
+        let resting = at.clone().rfind(|(t, _)| *t <= before);
+        let loaded = at.rfind(|(t, _)| *t > ramp.0 && *t <= ramp.1 + 15.0);
         let (rest, load) = resting.zip(loaded).ok_or_else(|| Note::missing_fact("ic-manoeuvre"))?;
         Ok((load.1 - rest.1, (rest.0, load.0)))
     };

@@ -18,7 +18,8 @@ fn plan(seed: u64) -> Plan {
     let mut p = Plan::healthy(seed);
     let mut r = Rng::new(seed, 77);
     let minutes = [8.0, 10.0, 12.0, 15.0][(seed % 4) as usize];
-    let rise = if seed % 2 == 0 { r.between(550.0, 1300.0) } else { r.between(1200.0, 2900.0) };
+    let rise =
+        if seed.is_multiple_of(2) { r.between(550.0, 1300.0) } else { r.between(1200.0, 2900.0) };
     p.schedule.ramp_s = 60.0 * minutes;
     p.schedule.w_per_min = rise / p.metabolism.gain / minutes;
     p.metabolism.lag_s = r.between(20.0, 75.0);
