@@ -5,6 +5,7 @@ pub mod facts_file;
 pub mod identity;
 pub mod import;
 pub mod json;
+pub mod page;
 pub mod predicted_sets;
 pub mod presentation;
 pub mod problem;

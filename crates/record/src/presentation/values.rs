@@ -169,7 +169,13 @@ impl Form {
         }
     }
 
+    /// Both ends in brackets; a limit on one side only as such.
     fn interval(&self, i: Interval) -> String {
+        match (i.low.is_finite(), i.high.is_finite()) {
+            (true, false) => return format!("≥ {}", self.number(i.low)),
+            (false, true) => return format!("≤ {}", self.number(i.high)),
+            _ => {}
+        }
         format!("[{}, {}]", self.number(i.low), self.number(i.high))
     }
 }

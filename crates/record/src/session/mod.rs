@@ -9,6 +9,7 @@ pub mod codes;
 pub mod edit;
 mod file_v1;
 pub mod findings;
+pub mod frozen;
 pub mod history;
 mod judgement;
 mod problems;

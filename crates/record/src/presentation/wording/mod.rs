@@ -6,6 +6,7 @@
 mod course;
 mod engine;
 mod import;
+mod page;
 mod predicted;
 mod signs;
 mod statements;
@@ -28,6 +29,7 @@ pub const FILES: &[&[Entry]] = &[
     signs::TEXTS,
     import::TEXTS,
     ui::TEXTS,
+    page::TEXTS,
 ];
 
 /// The template of `code`.

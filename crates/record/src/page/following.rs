@@ -1,0 +1,296 @@
+//! The pages after the first: findings with their evidence, every result, methods, source, history.
+
+use analysis::decisions::{Mark, Phase};
+
+use super::first::{heading, number, square};
+use super::html::Html;
+use super::model::Model;
+use crate::clock;
+use crate::presentation::key_table::set_names;
+use crate::presentation::values;
+use crate::presentation::wording::{plain_text as t, text, with};
+use crate::session::findings::{EvidenceShown, FindingShown, SECTIONS};
+use crate::session::history::Action;
+
+/// Writes the following pages.
+pub(super) fn write(h: &mut Html, m: &Model<'_>) {
+    findings(h, m);
+    all_results(h, m);
+    methods(h, m);
+    source(h, m);
+    history(h, m);
+}
+
+fn findings(h: &mut Html, m: &Model<'_>) {
+    h.open("section", "sheet");
+    heading(h, "page-findings", "page-conclusion-key");
+    for section in SECTIONS {
+        let list: Vec<&FindingShown> = m.of(section).collect();
+        if list.is_empty() {
+            continue;
+        }
+        h.element("h3", "", &t(&format!("section-{}", section.code())));
+        for finding in list {
+            one(h, m, finding);
+        }
+    }
+    h.close("section");
+}
+
+fn one(h: &mut Html, m: &Model<'_>, f: &FindingShown) {
+    h.open("article", "");
+    h.open("p", "said");
+    square(h, f);
+    h.text(&f.text);
+    for (yes, code) in [
+        (f.edited && !f.id.starts_with("own-"), "page-edited"),
+        (f.id.starts_with("own-"), "page-own"),
+    ] {
+        if yes {
+            h.raw(" <span class=\"quiet\">");
+            h.text(&t(code));
+            h.raw("</span>");
+        }
+    }
+    if f.stale {
+        h.raw(" <strong class=\"stale\">");
+        h.text(&t("page-out-of-date"));
+        h.raw("</strong>");
+    }
+    h.close("p");
+    if let Some(now) = f.draft_now.as_ref().filter(|_| f.stale) {
+        h.element("p", "quiet now", &with("page-draft-now", &[("text", now.clone())]));
+    }
+    h.open("dl", "evidence");
+    for (code, list) in
+        [("page-for", &f.supports), ("page-against", &f.contradicts), ("page-unmeasured", &f.open)]
+    {
+        evidence(h, m, code, list);
+    }
+    h.close("dl");
+    h.close("article");
+}
+
+fn evidence(h: &mut Html, m: &Model<'_>, code: &str, list: &[EvidenceShown]) {
+    if list.is_empty() {
+        return;
+    }
+    h.element("dt", "", &t(code));
+    h.open("dd", "");
+    for (i, e) in list.iter().enumerate() {
+        if i > 0 {
+            h.raw(" · ");
+        }
+        h.text(&e.text);
+        for key in &e.keys {
+            let shown = m.primaries().map(values::shown).find(|s| s.key == *key);
+            if let Some(s) = shown.filter(|s| !e.text.contains(&s.value)) {
+                h.raw(" (");
+                h.text(&s.label);
+                h.raw("\u{a0}");
+                h.keyed("v", &s.key, &s.with_unit());
+                h.raw(")");
+            }
+        }
+    }
+    h.close("dd");
+}
+
+fn all_results(h: &mut Html, m: &Model<'_>) {
+    h.open("section", "break");
+    heading(h, "page-all", "page-all-note");
+    h.raw("<table class=\"all\"><thead><tr>");
+    for (class, code) in [
+        ("", "page-col-result"),
+        ("number", "page-col-value"),
+        ("number", "page-col-recording"),
+        ("number", "page-col-repeat"),
+        ("", "page-col-method"),
+    ] {
+        h.raw(&format!("<th scope=\"col\" class=\"{class}\">"));
+        h.text(&t(code));
+        h.raw("</th>");
+    }
+    h.raw("</tr></thead><tbody>\n");
+    for outcome in m.primaries() {
+        let shown = values::shown(outcome);
+        h.raw("<tr><th scope=\"row\">");
+        h.text(&shown.label);
+        h.raw("</th><td class=\"number\">");
+        number(h, &shown);
+        h.raw("</td>");
+        if let Some(reason) = &outcome.reason {
+            h.raw("<td colspan=\"3\" class=\"reason\">");
+            h.text(&text(reason, &m.results));
+            h.raw("</td></tr>\n");
+            continue;
+        }
+        for interval in [&shown.recording, &shown.repeat] {
+            h.raw("<td class=\"number\">");
+            if let Some(i) = interval {
+                h.keyed("i", &shown.key, i);
+            }
+            h.raw("</td>");
+        }
+        h.raw("<td class=\"basis\">");
+        h.text(&basis(outcome, m));
+        h.raw("</td></tr>\n");
+    }
+    h.raw("</tbody></table>\n");
+    doubts(h, m);
+    h.close("section");
+}
+
+/// Method, window and breaths.
+fn basis(outcome: &analysis::results::Outcome, m: &Model<'_>) -> String {
+    let settings = &m.session.judgement().settings;
+    let mut out = set_names(&outcome.method, settings);
+    if let Some((from, to)) = outcome.basis.window_s {
+        out.push_str(&format!("; {}–{}", values::time(from), values::time(to)));
+    }
+    if outcome.basis.breaths > 0 {
+        out.push_str(&format!(", {}", outcome.basis.breaths));
+    }
+    out
+}
+
+fn doubts(h: &mut Html, m: &Model<'_>) {
+    let mut lines: Vec<(String, Vec<String>)> = Vec::new();
+    for outcome in m.primaries() {
+        for note in outcome.doubts.iter().filter(|n| n.code != "no-published-repeatability") {
+            let words = text(note, &m.results);
+            let label = values::shown(outcome).label;
+            match lines.iter_mut().find(|(w, _)| *w == words) {
+                Some((_, labels)) => labels.push(label),
+                None => lines.push((words, vec![label])),
+            }
+        }
+    }
+    let whole: Vec<String> = m.results.doubts.iter().map(|n| text(n, &m.results)).collect();
+    if lines.is_empty() && whole.is_empty() {
+        return;
+    }
+    h.element("h3", "", &t("page-doubts"));
+    h.open("ul", "doubts");
+    for words in whole {
+        h.element("li", "", &words);
+    }
+    for (words, labels) in lines {
+        h.open("li", "");
+        h.text(&words);
+        h.raw(" <span class=\"quiet\">");
+        h.text(&labels.join(", "));
+        h.raw("</span>");
+        h.close("li");
+    }
+    h.close("ul");
+}
+
+fn methods(h: &mut Html, m: &Model<'_>) {
+    h.open("section", "");
+    heading(h, "page-methods", "");
+    h.open("dl", "methods");
+    let mut seen: Vec<&str> = Vec::new();
+    for outcome in m.primaries().filter(|o| o.value.is_some()) {
+        let code = outcome.method.as_ref();
+        if seen.contains(&code) {
+            continue;
+        }
+        seen.push(code);
+        if let Some(how) = analysis::methods::describe(code) {
+            h.element("dt", "", code);
+            h.element("dd", "", &how);
+        }
+    }
+    let settings = &m.session.judgement().settings;
+    for set in settings.sets.iter().filter(|s| {
+        m.primaries().any(|o| o.value.is_some() && o.method.split('/').any(|id| id == s.id))
+    }) {
+        h.element("dt", "", &set.name);
+        h.element("dd", "", &format!("{} {}", set.population, set.citation));
+    }
+    h.close("dl");
+    h.close("section");
+}
+
+fn source(h: &mut Html, m: &Model<'_>) {
+    let source = m.session.source();
+    h.open("section", "");
+    heading(h, "page-source", "");
+    h.open("dl", "methods");
+    let line =
+        with("page-file-line", &[("name", source.name.clone()), ("size", source.size.to_string())]);
+    for (label, words) in [
+        ("page-file", line),
+        ("page-sha", source.sha256.clone()),
+        ("page-engine", m.version()),
+        ("page-decisions", decisions(m).join("; ")),
+    ] {
+        h.element("dt", "", &t(label));
+        h.element("dd", if label == "page-sha" { "hash" } else { "" }, &words);
+    }
+    h.close("dl");
+    h.close("section");
+}
+
+fn decisions(m: &Model<'_>) -> Vec<String> {
+    let j = m.session.judgement();
+    let mut out = Vec::new();
+    for phase in Phase::ALL {
+        if let Some(at) = j.decisions.phases.get(phase) {
+            let args =
+                [("phase", t(&format!("phase-{}", phase.code()))), ("time", values::time(at))];
+            out.push(with("page-boundary", &args));
+        }
+    }
+    for mark in [Mark::Vt1, Mark::Vt2] {
+        if let Some(at) = j.decisions.mark(mark) {
+            let args = [("mark", mark.code().to_uppercase()), ("time", values::time(at))];
+            out.push(with("page-mark", &args));
+        }
+    }
+    for (e, reason) in j.decisions.excluded.iter().zip(&j.exclusion_reasons) {
+        let args = [
+            ("from", values::time(e.from_s)),
+            ("to", values::time(e.to_s)),
+            ("reason", reason.clone()),
+        ];
+        out.push(with("page-excluded", &args));
+    }
+    if out.is_empty() {
+        out.push(t("page-none-made"));
+    }
+    out
+}
+
+fn history(h: &mut Html, m: &Model<'_>) {
+    h.open("section", "");
+    h.element("h3", "", &t("page-history"));
+    h.raw("<ol class=\"history\">\n");
+    for entry in m.session.history() {
+        let edit = entry.edit.as_ref().map(|e| e.label()).unwrap_or_default();
+        let words = match entry.action {
+            Action::Imported => t("page-imported"),
+            Action::Edited => with("page-edited-entry", &[("edit", edit)]),
+            Action::Undone => with("page-undone", &[("edit", edit)]),
+            Action::Redone => with("page-redone", &[("edit", edit)]),
+        };
+        h.open("li", "");
+        h.raw("<span class=\"quiet\">");
+        h.text(&clock::shown(&entry.at));
+        h.raw("</span> ");
+        h.text(&words);
+        for change in &entry.changed {
+            let args = [
+                ("label", m.label(&change.key)),
+                ("from", change.from.clone()),
+                ("to", change.to.clone()),
+            ];
+            h.raw("; ");
+            h.text(&with("page-history-changed", &args));
+        }
+        h.close("li");
+    }
+    h.raw("</ol>\n");
+    h.close("section");
+}

@@ -1,0 +1,118 @@
+//! What stands on the page, before any markup.
+
+use std::borrow::Cow;
+
+use analysis::results::{Outcome, Results, Section};
+
+use super::facts_lines;
+use crate::presentation::key_table::{self, Row};
+use crate::presentation::{values, wording};
+use crate::session::findings::{FindingShown, Status};
+use crate::session::{ENGINE, Session, frozen};
+
+/// Lines that the conclusion may take on page 1; the rest stands on the next page.
+const CONCLUSION_LINES: usize = 13;
+
+/// Letters in one line of the conclusion.
+const LINE: usize = 112;
+
+/// The page's content.
+pub(super) struct Model<'a> {
+    pub session: &'a Session,
+    /// Results on the page: frozen ones where the session is signed.
+    pub results: Cow<'a, Results>,
+    pub now: &'a str,
+    pub identity: Vec<String>,
+    pub question: String,
+    pub person: Vec<String>,
+    pub test: Vec<String>,
+    pub safety: Vec<String>,
+    pub findings: Vec<FindingShown>,
+    /// Indices of `findings` that stand on page 1.
+    pub conclusion: Vec<usize>,
+    /// Statements left for the next page.
+    pub further: usize,
+    pub rows: Vec<Row>,
+    /// Keys whose signed value the present engine does not give.
+    pub differing: Vec<String>,
+}
+
+impl<'a> Model<'a> {
+    pub fn new(session: &'a Session, results: &'a Results, now: &'a str) -> Self {
+        let (results, differing) = match session.signed() {
+            Some(signed) => frozen::shown(&signed.results, results),
+            None => (Cow::Borrowed(results), Vec::new()),
+        };
+        let facts = &session.judgement().facts;
+        let findings: Vec<FindingShown> = session
+            .findings(&results)
+            .into_iter()
+            .filter(|f| f.status != Status::Declined)
+            .collect();
+        let (conclusion, further) = conclusion(&findings);
+        Self {
+            session,
+            now,
+            identity: facts_lines::identity(facts),
+            question: facts_lines::stated(facts.test.question.as_deref()),
+            person: facts_lines::person(facts),
+            test: facts_lines::test(facts, &results, session.recording()),
+            safety: facts_lines::safety(facts),
+            rows: key_table::rows(&results, &session.judgement().settings),
+            findings,
+            conclusion,
+            further,
+            results,
+            differing,
+        }
+    }
+
+    /// Findings of `section`.
+    pub fn of(&self, section: Section) -> impl Iterator<Item = &FindingShown> {
+        self.findings.iter().filter(move |f| f.section == section)
+    }
+
+    /// Primary outcomes, in the order of the engine.
+    pub fn primaries(&self) -> impl Iterator<Item = &Outcome> {
+        self.results.outcomes.iter().filter(|o| o.primary)
+    }
+
+    /// Version line.
+    pub fn version(&self) -> String {
+        let engine = self.session.signed().map_or(ENGINE, |s| s.engine.as_str());
+        wording::with("page-version", &[("version", engine.to_owned())])
+    }
+
+    /// Label of an outcome's key.
+    pub fn label(&self, key: &str) -> String {
+        self.results
+            .outcomes
+            .iter()
+            .map(values::shown)
+            .find(|s| s.key == key)
+            .map_or_else(|| key.to_owned(), |s| s.label)
+    }
+}
+
+/// Statements of page 1: accepted ones first come in, then drafts, in the order of the sheet.
+/// Safety has its box, and what would separate the explanations its own line.
+fn conclusion(findings: &[FindingShown]) -> (Vec<usize>, usize) {
+    let concerns = |f: &FindingShown| {
+        !matches!(f.section, Section::Safety | Section::Separate) && f.id != "circulation-caveat"
+    };
+    let candidates: Vec<usize> = (0..findings.len()).filter(|i| concerns(&findings[*i])).collect();
+    let mut room = CONCLUSION_LINES;
+    let mut taken = Vec::new();
+    for wanted in [Status::Accepted, Status::Draft] {
+        for i in candidates.iter().copied().filter(|i| findings[*i].status == wanted) {
+            let lines = findings[i].text.chars().count().div_ceil(LINE).max(1);
+            if lines <= room {
+                room -= lines;
+                taken.push(i);
+            }
+        }
+    }
+    taken.sort_unstable();
+    let further = candidates.len() - taken.len();
+    (taken, further)
+}

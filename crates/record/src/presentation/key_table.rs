@@ -1,0 +1,115 @@
+//! The key table: which results stand on page 1 and on the findings sheet, and what each is held
+//! against.
+
+use analysis::predicted::sets::Predicts;
+use analysis::results::{At, Outcome, Results};
+use analysis::settings::Settings;
+
+use super::values::{self, Shown};
+use super::wording;
+
+/// One row.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Row {
+    /// The result as shown.
+    pub shown: Shown,
+    /// What it is held against; empty where there is nothing.
+    pub against: String,
+    /// Stands under the row above as a part of it.
+    pub indented: bool,
+    /// Why there is no value.
+    pub reason: Option<String>,
+    /// Whether a repeatability is published for it.
+    pub is_word: bool,
+}
+
+/// The rows' ids, place, and whether they are indented.
+const ROWS: &[(&str, At, bool)] = &[
+    ("vo2-peak", At::Peak, false),
+    ("vo2-peak-per-kg", At::Peak, false),
+    ("o2-pulse-at-peak", At::Peak, false),
+    ("o2-pulse-course", At::Ramp, false),
+    ("o2-pulse-late-slope", At::Ramp, true),
+    ("o2-pulse-deficit", At::Ramp, true),
+    ("vt1-vo2", At::Vt1, false),
+    ("vt2-vo2", At::Vt2, false),
+    ("ve-vco2-slope-to-vt2", At::Ramp, false),
+    ("hr-peak", At::Peak, false),
+    ("breathing-reserve", At::Peak, false),
+];
+
+/// Rows of the results that the engine gives.
+#[must_use]
+pub fn rows(results: &Results, settings: &Settings) -> Vec<Row> {
+    ROWS.iter()
+        .filter_map(|(id, at, indented)| {
+            let outcome = results.primary(id, *at)?;
+            // Parts of a course that is withheld say nothing more than the course.
+            if *indented && outcome.value.is_none() {
+                return None;
+            }
+            Some(Row {
+                shown: values::shown(outcome),
+                against: against(outcome, results, settings),
+                indented: *indented,
+                reason: outcome.reason.as_ref().map(|n| wording::text(n, results)),
+                is_word: outcome.word().is_some(),
+            })
+        })
+        .collect()
+}
+
+fn against(outcome: &Outcome, results: &Results, settings: &Settings) -> String {
+    let shown = |id: &str, at| results.primary(id, at).map(|o| values::shown(o).with_unit());
+    let predicted = of_predicted(outcome, results, settings);
+    let said = match outcome.id.as_ref() {
+        "o2-pulse-course" => shown_onset(results),
+        "o2-pulse-late-slope" => shown("o2-pulse-early-slope", At::Ramp)
+            .map(|slope| wording::with("page-own-early", &[("slope", slope)])),
+        "o2-pulse-deficit" => shown("o2-pulse-deficit-vo2-part", At::Ramp)
+            .zip(shown("o2-pulse-deficit-hr-part", At::Ramp))
+            .map(|(vo2, hr)| wording::with("page-parts", &[("vo2", vo2), ("hr", hr)])),
+        "vt1-vo2" | "vt2-vo2" => {
+            let id = if outcome.at == At::Vt1 { "vt1-vo2-of-peak" } else { "vt2-vo2-of-peak" };
+            shown(id, outcome.at).map(|p| wording::with("page-of-peak", &[("percent", p)]))
+        }
+        "breathing-reserve" => {
+            outcome.doubts.iter().find(|n| n.code == "mvv-used").map(|n| wording::text(n, results))
+        }
+        _ => None,
+    };
+    predicted.or(said).unwrap_or_default()
+}
+
+fn shown_onset(results: &Results) -> Option<String> {
+    let onset = results.primary("o2-pulse-onset", At::Ramp).filter(|o| o.value.is_some())?;
+    let shown = values::shown(onset);
+    let interval = shown.recording.clone().unwrap_or_default();
+    Some(wording::with("page-onset", &[("time", shown.value), ("interval", interval)]))
+}
+
+/// "92 % of Hansen 1984, limit 83 %" where the quantity has a prediction.
+fn of_predicted(outcome: &Outcome, results: &Results, settings: &Settings) -> Option<String> {
+    let id = format!(
+        "predicted-{}",
+        if outcome.id == "o2-pulse-at-peak" { "o2-pulse" } else { &outcome.id }
+    );
+    Predicts::all().find(|p| p.predicted_id() == id)?;
+    let predicted = results.primary(&id, outcome.at)?;
+    let (value, of) = (outcome.number()?, predicted.number()?);
+    let set = set_names(&predicted.method, settings);
+    let mut args = vec![("percent", values::fixed(100.0 * value / of, 0)), ("set", set)];
+    let limit = predicted.recording.map(|i| if i.low.is_finite() { i.low } else { i.high });
+    let Some(limit) = limit else { return Some(wording::with("page-of-predicted", &args)) };
+    args.push(("limit", format!("{} %", values::fixed(100.0 * limit / of, 0))));
+    Some(wording::with("page-of-predicted-limit", &args))
+}
+
+/// Names of the sets behind a method such as `hansen-1984/hansen-hr`.
+#[must_use]
+pub fn set_names(method: &str, settings: &Settings) -> String {
+    let name = |id: &str| {
+        settings.sets.iter().find(|s| s.id == id).map_or_else(|| id.to_owned(), |s| s.name.clone())
+    };
+    method.split('/').map(name).collect::<Vec<_>>().join(" ÷ ")
+}
