@@ -233,7 +233,8 @@ mod tests {
     fn ticks_stand_at_round_values() {
         let labels = |from, to| ticks(from, to, 4).into_iter().map(|t| t.1).collect::<Vec<_>>();
         assert_eq!(labels(3.4, 20.1), ["5", "10", "15", "20"]);
-        assert_eq!(labels(0.4, 2.6), ["1.0", "2.0"]);
+        assert_eq!(labels(0.4, 2.6), ["1", "2"]);
+        assert_eq!(labels(0.4, 1.6), ["0.5", "1.0", "1.5"]);
         assert_eq!(labels(0.0, 193.0), ["0", "50", "100", "150"]);
         let axis = time_axis(302.0, 1032.0);
         let labels: Vec<&str> = axis.ticks.iter().map(|t| t.1.as_str()).collect();
