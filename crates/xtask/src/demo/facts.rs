@@ -1,6 +1,7 @@
 //! `facts.json` of a demo test.
 
 use analysis::model::demo::Case;
+use record::facts_file::FactsFile;
 use serde_json::{Map, Value, json};
 
 use super::people::{Person, person};
@@ -8,13 +9,13 @@ use super::people::{Person, person};
 /// `rampcrest-facts/1` of a case.
 ///
 /// # Panics
-/// When the case has no person in the table (a test forbids it).
+/// When the case has no person in the table, or facts that the format refuses (tests forbid it).
 #[must_use]
 pub fn text(case: &Case) -> String {
     let person = person(case.name).expect("every case has a person");
-    let mut value = facts(case, person);
-    value.sort_all_objects();
-    format!("{value:#}\n")
+    let file = FactsFile::from_value(facts(case, person))
+        .unwrap_or_else(|p| panic!("{}: {} {}", case.name, p.where_, p.what));
+    file.write()
 }
 
 fn facts(case: &Case, p: &Person) -> Value {
