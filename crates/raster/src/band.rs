@@ -1,17 +1,17 @@
 //! One horizontal strip of the target: everything that touches it, in painting order.
 
-use egui::Rect;
 use egui::epaint::{Mesh, Primitive, Vertex};
+use egui::{ClippedPrimitive, Rect};
 
 use crate::blend::{modulate, pack};
 use crate::canvas::PixelRect;
 use crate::guard;
 use crate::paint::Frame;
 use crate::quad::Quad;
-use crate::setup::Corner;
+use crate::setup::{Paint, Point};
 use crate::shade::{Gradient, Textured, solid};
 use crate::texture::{Texture, Textures};
-use crate::triangle::Triangle;
+use crate::triangle::{Span, Triangle};
 
 /// A strip of rows starting at `top`.
 pub struct Band<'a> {
@@ -28,15 +28,15 @@ pub struct Band<'a> {
 struct Job<'a> {
     mesh: &'a Mesh,
     texture: &'a Texture,
+    /// The texel of shapes without a picture; egui keeps a white one at the origin.
+    plain: u32,
     clip: PixelRect,
     scale: f32,
-    /// The strip in points, with a pixel to spare, to skip triangles of other strips early.
-    reach: (f32, f32),
 }
 
 impl Band<'_> {
-    /// Paints all primitives, in order.
-    pub fn paint(&mut self, frame: &Frame<'_>, textures: &Textures) {
+    /// Paints all primitives, in order. `reaches` are those of [`Reach::of`].
+    pub fn paint(&mut self, frame: &Frame<'_>, reaches: &[Reach], textures: &Textures) {
         if let Some(colour) = frame.background {
             self.clear(pack(colour));
         }
@@ -44,7 +44,7 @@ impl Band<'_> {
         if !scale.is_finite() || scale <= 0.0 {
             return;
         }
-        for primitive in frame.primitives {
+        for (primitive, reach) in frame.primitives.iter().zip(reaches) {
             let Primitive::Mesh(mesh) = &primitive.primitive else {
                 continue; // a callback into a graphics card: there is none
             };
@@ -55,8 +55,8 @@ impl Band<'_> {
             if clip.is_empty() {
                 continue;
             }
-            let reach = ((clip.y0 as f32 - 1.0) / scale, (clip.y1 as f32 + 1.0) / scale);
-            self.mesh(&Job { mesh, texture, clip, scale, reach });
+            let plain = texture.row(0, 0, 1).map_or(0, |texels| texels[0]);
+            self.mesh(&Job { mesh, texture, plain, clip, scale }, reach);
         }
     }
 
@@ -66,27 +66,37 @@ impl Band<'_> {
         }
     }
 
-    fn mesh(&mut self, job: &Job<'_>) {
-        let mut rest = job.mesh.indices.as_slice();
+    fn mesh(&mut self, job: &Job<'_>, reach: &Reach) {
+        // In points, with a pixel to spare.
+        let low = (job.clip.y0 as f32 - 1.0) / job.scale;
+        let high = (job.clip.y1 as f32 + 1.0) / job.scale;
+        let pieces = job.mesh.indices.chunks(PIECE);
+        for (indices, (top, bottom)) in pieces.zip(&reach.0) {
+            if *bottom >= low && *top <= high {
+                self.piece(job, indices);
+            }
+        }
+    }
+
+    fn piece(&mut self, job: &Job<'_>, mut rest: &[u32]) {
+        let vertices = job.mesh.vertices.as_slice();
+        let at = |index: u32| vertices.get(index as usize);
         while let [a, b, c, tail @ ..] = rest {
             rest = tail;
-            let vertices = &job.mesh.vertices;
-            let (Some(va), Some(vb), Some(vc)) =
-                (vertices.get(*a as usize), vertices.get(*b as usize), vertices.get(*c as usize))
-            else {
+            let (Some(va), Some(vb), Some(vc)) = (at(*a), at(*b), at(*c)) else {
                 continue;
             };
             if let [c2, b2, d, after @ ..] = tail
                 && (c2, b2) == (c, b)
-                && let Some(vd) = vertices.get(*d as usize)
+                // Cheap refusal first: most pairs of triangles are pieces of lines.
+                && va.pos.y == vb.pos.y
+                && va.pos.x == vc.pos.x
+                && let Some(vd) = at(*d)
+                && vb.pos.x == vd.pos.x
+                && vc.pos.y == vd.pos.y
                 && self.quad([va, vb, vc, vd], job)
             {
                 rest = after;
-                continue;
-            }
-            let (low, high) = job.reach;
-            let [ya, yb, yc] = [va.pos.y, vb.pos.y, vc.pos.y];
-            if (ya < low && yb < low && yc < low) || (ya > high && yb > high && yc > high) {
                 continue;
             }
             self.corners([va, vb, vc], job);
@@ -94,26 +104,12 @@ impl Band<'_> {
     }
 
     /// Paints two triangles at once if they form a plain rectangle or a glyph.
-    #[inline]
     fn quad(&mut self, vertices: [&Vertex; 4], job: &Job<'_>) -> bool {
-        // Cheap refusal first: most pairs of triangles are pieces of lines.
-        let [a, b, c, d] = vertices;
-        if a.pos.y != b.pos.y || a.pos.x != c.pos.x || b.pos.x != d.pos.x || c.pos.y != d.pos.y {
-            return false;
-        }
-        if c.pos.y < job.reach.0 || a.pos.y > job.reach.1 {
-            return a.pos.y <= c.pos.y;
-        }
-        let [Some(a), Some(b), Some(c), Some(d)] = vertices.map(|v| Corner::new(v, job.scale))
-        else {
-            return false;
-        };
-        let Some(quad) = Quad::new([a, b, c, d]) else {
+        let Some(quad) = Quad::new(vertices, job.scale) else {
             return false;
         };
         if quad.is_plain() {
-            let texel = plain_texel(job.texture, a.uv);
-            let colour = modulate(quad.colour, texel);
+            let colour = modulate(quad.colour, job.texel(vertices[0].uv.into()));
             quad.fill(job.clip, colour, self.pixels, self.width, self.top);
             return true;
         }
@@ -126,60 +122,99 @@ impl Band<'_> {
     }
 
     #[inline]
-    fn corners(&mut self, vertices: [&Vertex; 3], job: &Job<'_>) {
-        if let [Some(a), Some(b), Some(c)] = vertices.map(|v| Corner::new(v, job.scale)) {
-            self.triangle([a, b, c], job);
+    fn corners(&mut self, [a, b, c]: [&Vertex; 3], job: &Job<'_>) {
+        let scale = job.scale;
+        if let (Some(pa), Some(pb), Some(pc)) =
+            (Point::new(a, scale), Point::new(b, scale), Point::new(c, scale))
+        {
+            if let Some(triangle) = Triangle::new([pa, pb, pc], job.clip) {
+                self.triangle(&triangle, [Paint::new(a), Paint::new(b), Paint::new(c)], job);
+            }
             return;
         }
-        let fan = guard::cut(vertices, job.scale);
+        let fan = guard::cut([a, b, c], scale);
         for pair in fan.get(1..).unwrap_or_default().windows(2) {
-            self.triangle([fan[0], pair[0], pair[1]], job);
+            let [(pa, a), (pb, b), (pc, c)] = [fan[0], pair[0], pair[1]];
+            if let Some(triangle) = Triangle::new([pa, pb, pc], job.clip) {
+                self.triangle(&triangle, [a, b, c], job);
+            }
         }
     }
 
     #[inline]
-    fn triangle(&mut self, mut corners: [Corner; 3], job: &Job<'_>) {
-        let [a, b, c] = corners;
-        let plain = a.uv == b.uv && a.uv == c.uv;
-        if plain {
-            if a.colour | b.colour | c.colour == 0 {
-                return;
-            }
-            let texel = plain_texel(job.texture, a.uv);
-            for corner in &mut corners {
-                corner.colour = modulate(corner.colour, texel);
-            }
+    fn triangle(&mut self, triangle: &Triangle, mut paints: [Paint; 3], job: &Job<'_>) {
+        if triangle.flipped {
+            paints.swap(1, 2);
         }
-        let Some(triangle) = Triangle::new(corners, job.clip) else {
-            return;
-        };
-        let [a, b, c] = triangle.corners;
+        let [a, b, c] = paints;
         let (width, top) = (self.width, self.top);
-        let row = |y: usize, x0: usize, x1: usize| {
-            let start = (y - top) * width;
-            start + x0..start + x1
-        };
         let pixels = &mut *self.pixels;
-        if !plain {
-            let shade = Textured::new(&triangle, job.texture);
-            triangle.spans(|span| shade.paint(&mut pixels[row(span.y, span.x0, span.x1)], &span));
-        } else if a.colour == b.colour && a.colour == c.colour {
-            triangle.spans(|span| solid(&mut pixels[row(span.y, span.x0, span.x1)], a.colour));
+        let row = |span: &Span| {
+            let start = (span.y - top) * width;
+            start + span.x0..start + span.x1
+        };
+        if a.uv != b.uv || a.uv != c.uv {
+            let shade = Textured::new(triangle, paints, job.texture);
+            triangle.spans(|span| shade.paint(&mut pixels[row(&span)], &span));
+            return;
+        }
+        let mut colours = [a.colour, b.colour, c.colour];
+        if colours == [0; 3] {
+            return;
+        }
+        let texel = job.texel(a.uv);
+        if texel != WHITE {
+            colours = colours.map(|colour| modulate(colour, texel));
+        }
+        if colours[0] == colours[1] && colours[0] == colours[2] {
+            triangle.spans(|span| solid(&mut pixels[row(&span)], colours[0]));
         } else {
-            let shade = Gradient::new(&triangle);
-            triangle.spans(|span| shade.paint(&mut pixels[row(span.y, span.x0, span.x1)], &span));
+            let shade = Gradient::new(triangle, colours);
+            triangle.spans(|span| shade.paint(&mut pixels[row(&span)], &span));
         }
     }
 }
 
-/// The texel of a shape without picture; egui keeps a white one at the origin.
-#[inline]
-fn plain_texel(texture: &Texture, uv: [f32; 2]) -> u32 {
-    if uv == [0.0, 0.0] {
-        return texture.row(0, 0, 1).map_or(0, |texels| texels[0]);
+const WHITE: u32 = u32::MAX;
+
+impl Job<'_> {
+    /// The one texel of a shape that shows no picture.
+    #[inline]
+    fn texel(&self, uv: [f32; 2]) -> u32 {
+        if uv == [0.0, 0.0] {
+            return self.plain;
+        }
+        let size = [self.texture.width as f64, self.texture.height as f64];
+        self.texture.sample(f64::from(uv[0]) * size[0], f64::from(uv[1]) * size[1])
     }
-    let size = [texture.width as f64, texture.height as f64];
-    texture.sample(f64::from(uv[0]) * size[0], f64::from(uv[1]) * size[1])
+}
+
+/// Indices per piece of a mesh: 32 triangles, an even number so that pairs stay together.
+const PIECE: usize = 96;
+
+/// Top and bottom, in points, of each piece of a mesh: strips skip pieces that do not touch them.
+/// Not-a-number is left out, because it drops its triangle.
+#[derive(Default)]
+pub struct Reach(Vec<(f32, f32)>);
+
+impl Reach {
+    /// Looks at every corner of `primitive` once.
+    pub fn of(primitive: &ClippedPrimitive) -> Self {
+        let Primitive::Mesh(mesh) = &primitive.primitive else {
+            return Self::default();
+        };
+        let pieces = mesh.indices.chunks(PIECE).map(|indices| {
+            let (mut top, mut bottom) = (f32::INFINITY, f32::NEG_INFINITY);
+            for index in indices {
+                if let Some(vertex) = mesh.vertices.get(*index as usize) {
+                    top = top.min(vertex.pos.y);
+                    bottom = bottom.max(vertex.pos.y);
+                }
+            }
+            (top, bottom)
+        });
+        Self(pieces.collect())
+    }
 }
 
 /// A rectangle in points to the pixels it covers, rounded as egui's own renderers round.

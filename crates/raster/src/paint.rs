@@ -4,7 +4,7 @@ use std::sync::Mutex;
 
 use egui::{ClippedPrimitive, Color32, Context, TexturesDelta};
 
-use crate::band::Band;
+use crate::band::{Band, Reach};
 use crate::canvas::{Canvas, PixelRect, Target};
 use crate::texture::Textures;
 
@@ -72,6 +72,7 @@ impl Rasteriser {
         let threads = frame.threads.max(1);
         let rows = (area.y1 - area.y0).div_ceil(threads * STRIPS).max(LEAST_ROWS);
         let strips = target.pixels[area.y0 * width..area.y1 * width].chunks_mut(rows * width);
+        let reaches: Vec<Reach> = frame.primitives.iter().map(Reach::of).collect();
         let work = Mutex::new(strips.enumerate());
         let run = || {
             loop {
@@ -83,7 +84,7 @@ impl Rasteriser {
                 let bottom = top + pixels.len() / width;
                 let damage = PixelRect { y0: top, y1: bottom, ..area };
                 let mut band = Band { pixels, width, top, damage };
-                band.paint(frame, &self.textures);
+                band.paint(frame, &reaches, &self.textures);
             }
         };
         std::thread::scope(|scope| {

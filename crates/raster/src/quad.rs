@@ -1,8 +1,10 @@
 //! Two short cuts: rectangles of one colour, and glyphs whose texels fall on pixels one to one.
 
-use crate::blend::{modulate, over};
+use egui::epaint::Vertex;
+
+use crate::blend::{modulate, over, pack};
 use crate::canvas::PixelRect;
-use crate::setup::{Corner, first_centre};
+use crate::setup::{Point, first_centre};
 use crate::shade::solid;
 use crate::texture::Texture;
 
@@ -17,17 +19,21 @@ pub struct Quad {
 
 impl Quad {
     /// Recognises egui's rectangles and glyphs: left top, right top, left bottom, right bottom.
+    /// The caller has seen that the sides run along the axes.
     #[inline]
-    pub fn new([a, b, c, d]: [Corner; 4]) -> Option<Self> {
-        let aligned =
-            a.x == c.x && b.x == d.x && a.y == b.y && c.y == d.y && a.x < b.x && a.y < c.y;
-        let same = a.colour == b.colour && a.colour == c.colour && a.colour == d.colour;
-        let mapped =
-            a.uv[0] == c.uv[0] && b.uv[0] == d.uv[0] && a.uv[1] == b.uv[1] && c.uv[1] == d.uv[1];
-        (aligned && same && mapped).then_some(Self {
-            edges: [a.x, a.y, d.x, d.y],
-            uv: [a.uv, d.uv],
-            colour: a.colour,
+    pub fn new(corners: [&Vertex; 4], pixels_per_point: f32) -> Option<Self> {
+        let [a, b, c, d] = corners;
+        let same = a.color == b.color && a.color == c.color && a.color == d.color;
+        let mapped = a.uv.x == c.uv.x && b.uv.x == d.uv.x && a.uv.y == b.uv.y && c.uv.y == d.uv.y;
+        if !same || !mapped {
+            return None;
+        }
+        let from = Point::new(a, pixels_per_point)?;
+        let to = Point::new(d, pixels_per_point)?;
+        (from.x < to.x && from.y < to.y).then(|| Self {
+            edges: [from.x, from.y, to.x, to.y],
+            uv: [[a.uv.x, a.uv.y], [d.uv.x, d.uv.y]],
+            colour: pack(a.color),
         })
     }
 
@@ -44,7 +50,7 @@ impl Quad {
         self.uv[0] == self.uv[1]
     }
 
-    /// Paints one colour; `rows` yields the pixels of a row.
+    /// Paints one colour; `pixels` starts with row `top`.
     #[inline]
     pub fn fill(&self, clip: PixelRect, colour: u32, pixels: &mut [u32], width: usize, top: usize) {
         let area = self.pixels(clip);

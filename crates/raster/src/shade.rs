@@ -1,6 +1,7 @@
 //! Colours one span of one triangle.
 
 use crate::blend::{modulate, over};
+use crate::setup::{Paint, round};
 use crate::texture::Texture;
 use crate::triangle::{Span, Triangle};
 
@@ -21,9 +22,11 @@ pub fn solid(row: &mut [u32], colour: u32) {
 /// Interpolates the three corner colours: exact at each row's first pixel, then by steps of
 /// 1/65536 of a level.
 pub struct Gradient {
-    /// Channel values of corner 0, and the differences of corners 1 and 2 to it, over the area.
+    /// Channel values of corner 0.
     base: [f64; 4],
-    slopes: [[f64; 4]; 2],
+    /// Differences of corners 1 and 2 to it, over the area.
+    to1: [f64; 4],
+    to2: [f64; 4],
     /// Change per pixel to the right.
     step: [i32; 4],
 }
@@ -32,35 +35,38 @@ const ONE: f64 = 65_536.0;
 
 impl Gradient {
     #[inline]
-    pub fn new(triangle: &Triangle) -> Self {
-        let [a, b, c] = triangle.corners.map(|corner| channels(corner.colour));
+    pub fn new(triangle: &Triangle, [a, b, c]: [u32; 3]) -> Self {
+        let (a, b, c) = (channels(a), channels(b), channels(c));
         let per_area = ONE / triangle.area as f64;
-        let [right1, right2] = triangle.weight_steps().map(|step| step as f64);
-        let mut gradient = Self { base: [0.0; 4], slopes: [[0.0; 4]; 2], step: [0; 4] };
+        let [right1, right2] = triangle.weight_steps();
+        let (right1, right2) = (right1 as f64, right2 as f64);
+        let (mut base, mut to1, mut to2, mut step) = ([0.0; 4], [0.0; 4], [0.0; 4], [0; 4]);
         for i in 0..4 {
             // Half a level up front, so that dropping the fraction rounds to nearest.
-            gradient.base[i] = f64::from(a[i]) * ONE + 0.5 * ONE;
-            gradient.slopes[0][i] = f64::from(b[i] - a[i]) * per_area;
-            gradient.slopes[1][i] = f64::from(c[i] - a[i]) * per_area;
-            let step = gradient.slopes[0][i] * right1 + gradient.slopes[1][i] * right2;
+            base[i] = a[i] * ONE + 0.5 * ONE;
+            to1[i] = (b[i] - a[i]) * per_area;
+            to2[i] = (c[i] - a[i]) * per_area;
             // Steeper than the whole range per pixel means a span of one pixel: no step is taken.
-            gradient.step[i] = step.clamp(-255.0 * ONE, 255.0 * ONE) as i32;
+            let slope = to1[i] * right1 + to2[i] * right2;
+            step[i] = round(slope.clamp(-255.0 * ONE, 255.0 * ONE));
         }
-        gradient
+        Self { base, to1, to2, step }
     }
 
     #[inline]
     fn start(&self, span: &Span) -> [i32; 4] {
-        let [w1, w2] = span.weights.map(|w| w as f64);
-        std::array::from_fn(|i| {
-            (self.base[i] + self.slopes[0][i] * w1 + self.slopes[1][i] * w2) as i32
-        })
+        let (w1, w2) = (span.weights[0] as f64, span.weights[1] as f64);
+        let mut value = [0; 4];
+        for (i, value) in value.iter_mut().enumerate() {
+            *value = round(self.base[i] + self.to1[i] * w1 + self.to2[i] * w2);
+        }
+        value
     }
 
     #[inline]
     fn advance(&self, value: &mut [i32; 4]) {
-        for (v, step) in value.iter_mut().zip(self.step) {
-            *v = v.wrapping_add(step);
+        for (value, step) in value.iter_mut().zip(self.step) {
+            *value = value.wrapping_add(step);
         }
     }
 
@@ -86,17 +92,16 @@ pub struct Textured<'a> {
 }
 
 impl<'a> Textured<'a> {
-    pub fn new(triangle: &Triangle, texture: &'a Texture) -> Self {
+    pub fn new(triangle: &Triangle, paints: [Paint; 3], texture: &'a Texture) -> Self {
         let size = [texture.width as f64, texture.height as f64];
-        let [a, b, c] =
-            triangle.corners.map(|corner| [0, 1].map(|i| finite(corner.uv[i]) * size[i]));
+        let [a, b, c] = paints.map(|paint| [0, 1].map(|i| finite(paint.uv[i]) * size[i]));
         let per_area = 1.0 / triangle.area as f64;
         let [right1, right2] = triangle.weight_steps().map(|step| step as f64);
         let slopes =
             [[0, 1].map(|i| (b[i] - a[i]) * per_area), [0, 1].map(|i| (c[i] - a[i]) * per_area)];
         Self {
             texture,
-            colour: Gradient::new(triangle),
+            colour: Gradient::new(triangle, paints.map(|paint| paint.colour)),
             base: a,
             step: [0, 1].map(|i| slopes[0][i] * right1 + slopes[1][i] * right2),
             slopes,
@@ -124,11 +129,13 @@ fn finite(x: f32) -> f64 {
 
 /// Blue, green, red, alpha.
 #[inline]
-fn channels(colour: u32) -> [i32; 4] {
-    colour.to_le_bytes().map(i32::from)
+fn channels(colour: u32) -> [f64; 4] {
+    let [b, g, r, a] = colour.to_le_bytes();
+    [f64::from(b), f64::from(g), f64::from(r), f64::from(a)]
 }
 
 #[inline]
 fn join(value: [i32; 4]) -> u32 {
-    u32::from_le_bytes(value.map(|v| (v >> 16) as u8))
+    let [b, g, r, a] = value.map(|v| (v >> 16) as u32 & 0xff);
+    b | g << 8 | r << 16 | a << 24
 }

@@ -1,17 +1,23 @@
 //! Which pixel centres lie in a triangle: exact integer edge functions, row by row.
+//!
+//! Corners lie within 2^28 sub-pixels of the origin, so differences stay below 2^29 and their
+//! products below 2^58: nothing here can overflow, and the arithmetic says `wrapping` only to do
+//! without checks in the innermost loops.
 
 use crate::canvas::PixelRect;
-use crate::setup::{Corner, SUB, first_centre};
+use crate::setup::{Point, SUB, first_centre};
 
 /// Rows narrower than this are found by testing pixels, wider ones by division.
 const NARROW: i64 = 12;
 
-/// A triangle with positive area, its corners in clockwise order on screen.
+/// A triangle with area, its corners in clockwise order on screen.
 pub struct Triangle {
-    pub corners: [Corner; 3],
+    pub points: [Point; 3],
+    /// Whether corners 1 and 2 have changed places to get there.
+    pub flipped: bool,
     /// Twice the area in square sub-pixels; > 0.
     pub area: i64,
-    /// Pixels to visit: the clip rectangle cut to the triangle's bounding box.
+    /// Left, top, right, bottom: the pixels to visit.
     bounds: [i64; 4],
 }
 
@@ -25,7 +31,7 @@ pub struct Span {
     pub weights: [i64; 2],
 }
 
-/// Edge function `a·x + b·y + c` that is ≥ 0 inside.
+/// Edge function that is ≥ 0 inside.
 #[derive(Clone, Copy)]
 struct Edge {
     /// Change per pixel to the right.
@@ -40,14 +46,15 @@ struct Edge {
 
 impl Edge {
     #[inline]
-    fn new(from: Corner, to: Corner, x: i64, y: i64) -> Self {
-        let (dx, dy) = (to.x - from.x, to.y - from.y);
-        let (px, py) = (x * SUB + SUB / 2, y * SUB + SUB / 2);
+    fn new(from: Point, to: Point, x: i64, y: i64) -> Self {
+        let (dx, dy) = (to.x.wrapping_sub(from.x), to.y.wrapping_sub(from.y));
+        let px = (x << 8).wrapping_add(SUB / 2).wrapping_sub(from.x);
+        let py = (y << 8).wrapping_add(SUB / 2).wrapping_sub(from.y);
         let owns = dy < 0 || (dy == 0 && dx > 0);
         Self {
-            right: -dy * SUB,
-            down: dx * SUB,
-            value: dx * (py - from.y) - dy * (px - from.x),
+            right: dy.wrapping_neg() << 8,
+            down: dx << 8,
+            value: dx.wrapping_mul(py).wrapping_sub(dy.wrapping_mul(px)),
             bias: i64::from(!owns),
         }
     }
@@ -56,57 +63,56 @@ impl Edge {
 impl Triangle {
     /// `None` for triangles without area or without a pixel centre in their bounding box.
     #[inline]
-    pub fn new(corners: [Corner; 3], clip: PixelRect) -> Option<Self> {
-        let [a, b, c] = corners;
+    pub fn new([a, b, c]: [Point; 3], clip: PixelRect) -> Option<Self> {
         let y0 = first_centre(a.y.min(b.y).min(c.y)).max(clip.y0 as i64);
-        let y1 = first_centre(a.y.max(b.y).max(c.y) + 1).min(clip.y1 as i64);
+        let y1 = first_centre(a.y.max(b.y).max(c.y).wrapping_add(1)).min(clip.y1 as i64);
         if y0 >= y1 {
             return None;
         }
         let x0 = first_centre(a.x.min(b.x).min(c.x)).max(clip.x0 as i64);
-        let x1 = first_centre(a.x.max(b.x).max(c.x) + 1).min(clip.x1 as i64);
+        let x1 = first_centre(a.x.max(b.x).max(c.x).wrapping_add(1)).min(clip.x1 as i64);
         if x0 >= x1 {
             return None;
         }
-        let area = (b.x - a.x) * (c.y - a.y) - (c.x - a.x) * (b.y - a.y);
-        let bounds = [x0, y0, x1, y1];
-        match area.signum() {
-            1 => Some(Self { corners, area, bounds }),
-            -1 => Some(Self { corners: [a, c, b], area: -area, bounds }),
-            _ => None,
+        let (bx, by) = (b.x.wrapping_sub(a.x), b.y.wrapping_sub(a.y));
+        let (cx, cy) = (c.x.wrapping_sub(a.x), c.y.wrapping_sub(a.y));
+        let area = bx.wrapping_mul(cy).wrapping_sub(cx.wrapping_mul(by));
+        if area == 0 {
+            return None;
         }
+        let flipped = area < 0;
+        let points = if flipped { [a, c, b] } else { [a, b, c] };
+        Some(Self { points, flipped, area: area.wrapping_abs(), bounds: [x0, y0, x1, y1] })
     }
 
     /// Change of the two weights per pixel to the right.
     #[inline]
     pub fn weight_steps(&self) -> [i64; 2] {
-        let [a, b, c] = self.corners;
-        [(c.y - a.y) * SUB, (a.y - b.y) * SUB]
+        let [a, b, c] = self.points;
+        [c.y.wrapping_sub(a.y) << 8, a.y.wrapping_sub(b.y) << 8]
     }
 
     /// Calls `paint` for every row that has pixel centres inside.
     #[inline]
     pub fn spans(&self, mut paint: impl FnMut(Span)) {
         let [x0, y0, x1, y1] = self.bounds;
-        let [a, b, c] = self.corners;
+        let [a, b, c] = self.points;
         let mut edges = [Edge::new(b, c, x0, y0), Edge::new(c, a, x0, y0), Edge::new(a, b, x0, y0)];
-        let narrow = x1 - x0 < NARROW;
+        let width = x1.wrapping_sub(x0);
         for y in y0..y1 {
             let (from, to) =
-                if narrow { tested(&edges, x1 - x0) } else { divided(&edges, x1 - x0) };
+                if width < NARROW { tested(&edges, width) } else { divided(&edges, width) };
             if from < to {
+                let at = |edge: &Edge| edge.value.wrapping_add(from.wrapping_mul(edge.right));
                 paint(Span {
                     y: y as usize,
-                    x0: (x0 + from) as usize,
-                    x1: (x0 + to) as usize,
-                    weights: [
-                        edges[1].value + from * edges[1].right,
-                        edges[2].value + from * edges[2].right,
-                    ],
+                    x0: x0.wrapping_add(from) as usize,
+                    x1: x0.wrapping_add(to) as usize,
+                    weights: [at(&edges[1]), at(&edges[2])],
                 });
             }
             for edge in &mut edges {
-                edge.value += edge.down;
+                edge.value = edge.value.wrapping_add(edge.down);
             }
         }
     }
@@ -115,18 +121,18 @@ impl Triangle {
 /// The pixels `from..to` of a row inside all three edges, by testing each.
 #[inline]
 fn tested(edges: &[Edge; 3], width: i64) -> (i64, i64) {
-    let mut values = edges.map(|edge| edge.value - edge.bias);
+    let [mut a, mut b, mut c] = [0, 1, 2].map(|i| edges[i].value.wrapping_sub(edges[i].bias));
     let mut from = width;
     for x in 0..width {
         // The sign bit of the union is set as soon as one edge is negative.
-        if values[0] | values[1] | values[2] >= 0 {
+        if a | b | c >= 0 {
             from = from.min(x);
         } else if from < x {
             return (from, x);
         }
-        for (value, edge) in values.iter_mut().zip(edges) {
-            *value += edge.right;
-        }
+        a = a.wrapping_add(edges[0].right);
+        b = b.wrapping_add(edges[1].right);
+        c = c.wrapping_add(edges[2].right);
     }
     (from, width)
 }
