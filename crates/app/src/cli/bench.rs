@@ -46,10 +46,7 @@ struct Times {
 
 /// `rampcrest bench-frame`.
 pub fn frame(args: &Args) -> Result<Exit, Failure> {
-    let mut app = match args.files.first() {
-        Some(path) => open::app(path, args)?,
-        None => App::on_demo(),
-    };
+    let mut app = open::app_or_demo(args)?;
     let view = args.view.as_deref().unwrap_or("time-course");
     app.view.view =
         View::from_code(view).ok_or_else(|| Failure::usage(format!("“{view}” is not a view")))?;

@@ -4,7 +4,9 @@ use std::fs::File;
 use std::io::{Read, Write};
 use std::path::Path;
 
-use super::failure::Failure;
+use record::session::store::write_atomic;
+
+use super::failure::{Exit, Failure};
 
 /// The whole of `path`; a file larger than `most` bytes is read no further than one byte beyond.
 ///
@@ -18,34 +20,6 @@ pub fn read(path: &Path, most: usize) -> Result<Vec<u8>, Failure> {
     Ok(bytes)
 }
 
-/// Writes beside the target and renames, so that a full disk never leaves half a file.
-///
-/// # Errors
-/// Cannot write (7).
-pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Failure> {
-    let folder = match path.parent() {
-        Some(parent) if !parent.as_os_str().is_empty() => parent,
-        _ => Path::new("."),
-    };
-    let mut name = std::ffi::OsString::from(".");
-    name.push(path.file_name().unwrap_or_default());
-    name.push(format!(".{}.part", std::process::id()));
-    let part = folder.join(name);
-    let result = File::create(&part)
-        .and_then(|mut file| file.write_all(bytes).and_then(|()| file.sync_all()))
-        .and_then(|()| std::fs::rename(&part, path));
-    result.map_err(|error| {
-        std::fs::remove_file(&part).ok();
-        Failure::unwritable(path, &error)
-    })
-}
-
-/// Writes a line to standard output; a reader that has gone away is no failure of ours.
-pub fn print(text: &str) {
-    let mut out = std::io::stdout().lock();
-    out.write_all(text.as_bytes()).and_then(|()| out.write_all(b"\n")).ok();
-}
-
 /// A text file of settings or facts.
 ///
 /// # Errors
@@ -56,4 +30,18 @@ pub fn read_text(path: &Path) -> Result<String, Failure> {
         let error = std::io::Error::new(std::io::ErrorKind::InvalidData, error.utf8_error());
         Failure::unreadable(path, &error)
     })
+}
+
+/// Writes the file whole or not at all.
+///
+/// # Errors
+/// Cannot write (7).
+pub fn write(path: &Path, bytes: &[u8]) -> Result<(), Failure> {
+    write_atomic(path, bytes).map_err(|problem| Failure { exit: Exit::CannotWrite, problem })
+}
+
+/// Writes a line to standard output; a reader that has gone away is no failure of ours.
+pub fn print(text: &str) {
+    let mut out = std::io::stdout().lock();
+    out.write_all(text.as_bytes()).and_then(|()| out.write_all(b"\n")).ok();
 }

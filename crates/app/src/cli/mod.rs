@@ -6,6 +6,7 @@ mod failure;
 mod files;
 mod hook;
 mod open;
+mod sessions;
 mod views;
 mod window;
 
@@ -41,7 +42,7 @@ pub fn run(given: impl IntoIterator<Item = OsString>) -> i32 {
     hook::install();
     let given: Vec<OsString> = given.into_iter().collect();
     let json = given.iter().any(|argument| argument == "--json");
-    let result = Args::parse(given).and_then(|args| carry_out(&args));
+    let result = Args::parse(given).and_then(clocked).and_then(|args| carry_out(&args));
     let exit = result.unwrap_or_else(|failure| {
         if json {
             files::print(&failure.json());
@@ -50,6 +51,17 @@ pub fn run(given: impl IntoIterator<Item = OsString>) -> i32 {
         failure.exit
     });
     i32::from(exit as u8)
+}
+
+/// Checks the fixed clock, or takes it from `SOURCE_DATE_EPOCH`.
+fn clocked(mut args: Args) -> Result<Args, Failure> {
+    let wrong = |problem: record::Problem| Failure { exit: Exit::Usage, problem };
+    if let Some(now) = &args.now {
+        record::clock::parse(now).map_err(wrong)?;
+    } else if let Ok(seconds) = std::env::var("SOURCE_DATE_EPOCH") {
+        args.now = Some(record::clock::from_epoch(&seconds).map_err(wrong)?);
+    }
+    Ok(args)
 }
 
 fn carry_out(args: &Args) -> Result<Exit, Failure> {
@@ -70,10 +82,10 @@ fn carry_out(args: &Args) -> Result<Exit, Failure> {
             files::print(concat!("rampcrest ", env!("CARGO_PKG_VERSION")));
             Ok(Exit::Ok)
         }
-        Verb::Derive => Err(Failure::not_yet("derive")),
-        Verb::Edit => Err(Failure::not_yet("edit")),
+        Verb::Derive => sessions::derive(args),
+        Verb::Edit => sessions::edit(args),
         Verb::Page => Err(Failure::not_yet("page")),
-        Verb::Import => Err(Failure::not_yet("import")),
+        Verb::Import => sessions::import(args),
         Verb::Sign => Err(Failure::not_yet("sign")),
         Verb::Verify => Err(Failure::not_yet("verify")),
         Verb::Batch => Err(Failure::not_yet("batch")),

@@ -2,7 +2,7 @@
 
 use super::args::Args;
 use super::failure::{Exit, Failure};
-use super::{files, open};
+use super::{files, open, sessions};
 use crate::App;
 use crate::describe::{Description, describe as walk};
 use crate::headless::{Headless, Screen};
@@ -11,10 +11,7 @@ use crate::view_state::View;
 /// The view's state and a window for it.
 fn prepared(args: &Args) -> Result<(App, Headless, View), Failure> {
     let view = view(args)?;
-    let mut app = match args.files.first() {
-        Some(path) => open::app(path, args)?,
-        None => App::on_demo(),
-    };
+    let mut app = open::app_or_demo(args)?;
     app.view.view = view;
     let default = Screen::default();
     let [width, height] = args.size.unwrap_or([default.width, default.height]);
@@ -36,20 +33,20 @@ fn view(args: &Args) -> Result<View, Failure> {
 
 /// `rampcrest picture`.
 pub fn picture(args: &Args) -> Result<Exit, Failure> {
-    let out = args.out.as_ref().ok_or_else(|| Failure::usage("“-o” is missing"))?;
-    let (app, headless, _) = prepared(args)?;
-    files::write(out, &png(app, headless)?)?;
-    Ok(Exit::Ok)
+    let out = sessions::out(args)?;
+    let (mut app, headless, _) = prepared(args)?;
+    files::write(out, &png(&mut app, headless)?)?;
+    Ok(open::exit(app.document.session()))
 }
 
-fn png(mut app: App, mut headless: Headless) -> Result<Vec<u8>, Failure> {
+fn png(app: &mut App, mut headless: Headless) -> Result<Vec<u8>, Failure> {
     let mut output = headless.settle(|ui| app.ui(ui));
     let canvas = headless.paint(&mut output, 2);
     crate::picture::png(&canvas).map_err(Failure::usage)
 }
 
 /// The time course of the test that is open, as an image.
-pub fn window_png(app: App) -> Result<Vec<u8>, Failure> {
+pub fn window_png(app: &mut App) -> Result<Vec<u8>, Failure> {
     let headless = Headless::new(Screen::default(), |ctx| app.setup(ctx));
     png(app, headless)
 }
@@ -79,5 +76,5 @@ pub fn describe(args: &Args) -> Result<Exit, Failure> {
             files::print(&format!("{}\t{key}\t{}\t{value}\t{x},{y} {w}x{h}", node.role, node.name));
         }
     }
-    Ok(Exit::Ok)
+    Ok(open::exit(app.document.session()))
 }

@@ -4,16 +4,13 @@ use std::path::Path;
 
 use super::args::Args;
 use super::failure::{Exit, Failure};
-use super::{files, open, views};
+use super::{files, open, sessions, views};
 use crate::App;
 use crate::shell::{self, Content, Paint, StartError};
 
 /// Shows the window on the files, or on the demonstration test.
 pub fn show(args: &Args) -> Result<Exit, Failure> {
-    let app = match args.files.first() {
-        Some(path) => open::app(path, args)?,
-        None => App::on_demo(),
-    };
+    let app = open::app_or_demo(args)?;
     match shell::run(args.renderer, content(app)) {
         Ok(()) => Ok(Exit::Ok),
         Err(error) if args.files.is_empty() => instead(args, &error),
@@ -39,8 +36,12 @@ fn content(mut app: App) -> Content {
 fn instead(args: &Args, error: &StartError) -> Result<Exit, Failure> {
     let folder = args.out.as_deref().unwrap_or(Path::new("out"));
     std::fs::create_dir_all(folder).map_err(|error| Failure::unwritable(folder, &error))?;
-    let picture = views::window_png(App::on_demo())?;
-    files::write(&folder.join("window.png"), &picture)?;
+    let mut app = open::demo(args)?;
+    files::write(&folder.join("window.png"), &views::window_png(&mut app)?)?;
+    if let Some(session) = app.document.session() {
+        files::write(&folder.join("results.json"), sessions::results(session).as_bytes())?;
+        files::write(&folder.join("session.json"), &session.write())?;
+    }
     files::print(&format!(
         "{error} The demonstration test was derived into {} instead.",
         folder.display()
