@@ -35,6 +35,7 @@ pub fn derive(
     predicted::derive(&mut stage);
     reserve::derive(&mut stage);
     effort::derive(&mut stage);
+    predicted::express(&mut stage);
     o2_pulse::derive(&mut stage);
     fick::derive(&mut stage);
     reasoning::derive(&mut stage);

@@ -37,7 +37,8 @@ pub enum Value {
     Word(Text),
 }
 
-/// An interval, low ≤ high, in the unit of its outcome.
+/// An interval, low ≤ high, in the unit of its outcome. Of a prediction it holds the limits of
+/// normal; an end that is not published is infinite.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Interval {
     /// Lower end.

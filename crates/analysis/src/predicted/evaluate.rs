@@ -8,6 +8,9 @@ use super::validity::{self, InputFit};
 use crate::facts::{Mode, Sex};
 use crate::note::{Arg, Note};
 
+/// Below this share of its prediction a lower limit says little (own rule).
+pub(super) const UNRELIABLE: f64 = 0.6;
+
 /// A prediction, in the unit of [`Predicts::unit`].
 #[derive(Clone, Debug, PartialEq)]
 pub struct Prediction {
@@ -81,9 +84,14 @@ pub fn evaluate(
     } else if arm.limits_by_convention {
         doubts.push(named(Note::new("limit-by-convention")));
     }
+    let per_kg = person.mass_kg.filter(|_| predicts == Predicts::Vo2Peak).map(|m| value / m);
+    let low_limit = low.and_then(to);
+    if low_limit.is_some_and(|low| low < UNRELIABLE * value) || per_kg.is_some_and(|v| v < 12.0) {
+        doubts.push(named(Note::new("limit-unreliable")));
+    }
     Ok(Prediction {
         value,
-        low: low.and_then(to),
+        low: low_limit,
         high: high.and_then(to),
         see: see.and_then(to),
         fits,

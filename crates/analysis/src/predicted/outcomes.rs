@@ -90,7 +90,7 @@ pub(super) fn chosen_value(
     person: &Person,
 ) -> Result<super::Prediction, Note> {
     let found = candidates(stage.settings, predicts, person).into_iter().find(|c| c.chosen);
-    found.map_or_else(|| Err(Note::new("set-unknown")), |c| c.result)
+    found.map_or_else(|| Err(Note::new("set-none-chosen")), |c| c.result)
 }
 
 /// Predicted V̇O₂ divided by predicted heart rate; the method names both sets.

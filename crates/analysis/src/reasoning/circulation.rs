@@ -4,6 +4,7 @@ use super::compose::{Draft, words};
 use super::rules::{self, Match};
 use super::seen::{Seen, low_in};
 use crate::facts::{Diagnosis, Facts};
+use crate::predicted::sets::Predicts;
 use crate::results::{Arg, At, Evidence, Note, Outcome, Section, Statement};
 use crate::stage::Stage;
 use crate::unit::Unit;
@@ -83,7 +84,7 @@ fn with_onset(stage: &Stage<'_>, draft: Draft) -> Draft {
 fn magnitude(stage: &Stage<'_>) -> Option<Statement> {
     let id = "o2-pulse-at-peak";
     let value = stage.results.number(id, At::Peak)?;
-    let (low, all) = low_in(stage, "predicted-o2-pulse", value);
+    let (low, all) = low_in(stage, Predicts::O2Pulse, value);
     let code = match (low, all) {
         (_, 0) => "pulse-not-compared",
         (0, _) => "pulse-within-limits",

@@ -4,6 +4,7 @@ use super::compose::Draft;
 use super::seen::low_in;
 use crate::facts::{EventKind, StopKind};
 use crate::fick::spo2_usable;
+use crate::predicted::sets::Predicts;
 use crate::results::{Arg, At, Evidence, Note, Outcome, Section, Statement, Text};
 use crate::stage::Stage;
 
@@ -128,7 +129,7 @@ pub(crate) fn effort(stage: &Stage<'_>) -> Option<Statement> {
 pub(crate) fn capacity(stage: &Stage<'_>) -> Option<Statement> {
     let value = stage.results.number("vo2-peak", At::Peak)?;
     let effort = stage.results.primary("effort", At::Test).and_then(Outcome::word);
-    let (low, all) = low_in(stage, "predicted-vo2-peak", value);
+    let (low, all) = low_in(stage, Predicts::Vo2Peak, value);
     let code = match (effort, low, all) {
         (Some("submaximal-without-limit"), _, _) => "capacity-not-graded",
         (_, _, 0) => "capacity-without-prediction",

@@ -2,6 +2,7 @@
 
 use crate::facts::Sex;
 use crate::fick::spo2_usable;
+use crate::predicted::sets::Predicts;
 use crate::results::{At, Outcome};
 use crate::stage::Stage;
 
@@ -101,22 +102,14 @@ impl Seen {
     }
 }
 
-/// Sets in range that predict `id`, and how many of them call `value` low: below the set's own
-/// lower limit, else below 80 % of its prediction.
-pub(crate) fn low_in(stage: &Stage<'_>, id: &str, value: f64) -> (usize, usize) {
-    let sets = stage.results.outcomes.iter().filter(|o| o.id == id && o.number().is_some());
-    let (mut low, mut all) = (0, 0);
-    for set in sets {
-        all += 1;
-        let limit = set.recording.map(|i| i.low).or(set.number().map(|x| 0.8 * x));
-        low += usize::from(limit.is_some_and(|l| value < l));
-    }
-    (low, all)
+/// How many of the sets in range that have a limit call `value` low, and how many there are.
+pub(crate) fn low_in(stage: &Stage<'_>, predicts: Predicts, value: f64) -> (usize, usize) {
+    crate::predicted::votes(stage, predicts, value)
 }
 
 /// Low only if low in every set in range.
 fn pulse_low(stage: &Stage<'_>) -> Option<bool> {
     let value = stage.results.number("o2-pulse-at-peak", At::Peak)?;
-    let (low, all) = low_in(stage, "predicted-o2-pulse", value);
+    let (low, all) = low_in(stage, Predicts::O2Pulse, value);
     (all > 0).then_some(low == all)
 }

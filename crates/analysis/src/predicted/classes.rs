@@ -1,0 +1,91 @@
+//! Published classes: facts with their source, shown only where the indication matches. They are
+//! statistics of groups; nothing here says fit or unfit, and the local pathway decides.
+
+mod bands;
+
+use super::express::submaximal;
+use super::outcomes::beta_blocked;
+use crate::facts::Indication;
+use crate::note::{Arg, Note};
+use crate::results::{At, Interval, Kind, Outcome};
+use crate::stage::Stage;
+
+pub use bands::{Band, Class, TABLE};
+
+/// Derives the classes of the stated indication; effort, predictions and slopes must be known.
+pub(super) fn derive(stage: &mut Stage<'_>) {
+    let Some(indication) = stage.facts.test.indication else { return };
+    let outcomes: Vec<Outcome> = TABLE
+        .iter()
+        .filter(|class| class.indication == indication)
+        .map(|class| outcome(stage, class))
+        .chain(transplant(stage, indication))
+        .collect();
+    for outcome in outcomes {
+        stage.push(outcome);
+    }
+}
+
+fn outcome(stage: &Stage<'_>, class: &Class) -> Outcome {
+    let absent = |why| Outcome::absent(class.id, class.at, class.method, why).of_kind(Kind::Class);
+    let Some(deciding) = stage.results.primary(class.deciding, class.deciding_at) else {
+        return absent(Note::new("not-derived"));
+    };
+    let Some(value) = deciding.number() else {
+        return absent(deciding.reason.clone().unwrap_or_else(|| Note::new("not-derived")));
+    };
+    if class.needs_effort && submaximal(stage) {
+        return absent(Note::new("not-graded-submaximal"));
+    }
+    let band = bands::band(class.bands, value);
+    let mut outcome = Outcome::reading(class.id, class.at, class.method, band.word);
+    outcome.kind = Kind::Class;
+    // Both intervals of the deciding value, in its unit.
+    outcome.unit = deciding.unit;
+    outcome.recording = deciding.recording;
+    outcome.repeat = deciding.repeat;
+    outcome.basis = deciding.basis.clone();
+    outcome.doubts.push(
+        Note::new("class-decided-by")
+            .with("value", Arg::Outcome(class.deciding, class.deciding_at))
+            .with("source", Arg::Name(class.source.into())),
+    );
+    let interval = deciding.repeat.or(deciding.recording);
+    outcome.doubts.extend(interval.and_then(|i| straddle(class, band, i)));
+    if class.needs_effort
+        && stage.results.primary("effort", At::Test).is_none_or(|e| e.word().is_none())
+    {
+        outcome.doubts.push(Note::new("class-effort-unknown"));
+    }
+    outcome.doubts.extend(class.caveat.map(Note::new));
+    outcome.doubts.push(Note::new("class-local-pathway-decides"));
+    outcome
+}
+
+/// The doubt when the interval reaches into another band.
+fn straddle(class: &Class, band: &Band, interval: Interval) -> Option<Note> {
+    let low = bands::band(class.bands, interval.low);
+    let high = bands::band(class.bands, interval.high);
+    (low.word != band.word || high.word != band.word).then(|| {
+        Note::new("class-straddles")
+            .with("low", Arg::Word(low.text))
+            .with("high", Arg::Word(high.text))
+    })
+}
+
+/// ISHLT 2016: the cut-off of peak V̇O₂ depends on whether a beta-blocker is taken.
+fn transplant(stage: &Stage<'_>, indication: Indication) -> Option<Outcome> {
+    (indication == Indication::HeartFailure).then_some(())?;
+    let drug = &stage.facts.test.rate_slowing_drug;
+    let class = if beta_blocked(stage) { &bands::ISHLT_BLOCKED } else { &bands::ISHLT };
+    let mut outcome = outcome(stage, class);
+    if outcome.value.is_some() && drug.taken.is_none() {
+        outcome.doubts.push(Note::new("class-drug-not-stated"));
+    }
+    if outcome.value.is_some()
+        && stage.results.number("rer-peak", At::Peak).is_none_or(|rer| rer <= 1.05)
+    {
+        outcome.doubts.push(Note::new("class-ishlt-not-maximal"));
+    }
+    Some(outcome)
+}
