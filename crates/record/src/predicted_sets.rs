@@ -8,7 +8,7 @@ mod parse;
 mod read;
 mod schema;
 
-pub use bundled::bundled;
+pub use bundled::{bundled, default_settings};
 pub use parse::{LARGEST, parse};
 
 #[cfg(test)]

@@ -3,6 +3,7 @@
 use std::sync::{Arc, OnceLock};
 
 use analysis::predicted::sets::PredictedSet;
+use analysis::settings::Settings;
 
 use super::parse::parse;
 
@@ -68,4 +69,10 @@ pub fn bundled() -> Arc<Vec<PredictedSet>> {
     Arc::clone(SETS.get_or_init(|| {
         Arc::new(FILES.iter().filter_map(|(name, text)| parse(text, name).ok()).collect())
     }))
+}
+
+/// The engine's default settings with the bundled sets.
+#[must_use]
+pub fn default_settings() -> Settings {
+    Settings { sets: bundled(), ..Settings::default() }
 }

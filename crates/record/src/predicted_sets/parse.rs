@@ -34,24 +34,32 @@ pub fn parse(text: &str, file: &str) -> Result<PredictedSet, Problem> {
     })?;
     let set = PredictedSet::from(set);
     for (index, equation) in set.equations.iter().enumerate() {
-        let line = line_of_equation(text, index);
+        let start = start_of_equation(text, index);
         if set.equations[..index].iter().any(|e| e.predicts == equation.predicts) {
             let code = equation.predicts.code();
-            return Err(refused(line, format!("`{code}` is predicted twice in this set.")));
+            let what = format!("`{code}` is predicted twice in this set.");
+            return Err(refused(line_of(text, start), what));
         }
-        check_worked(&set, equation).map_err(|what| refused(line, what))?;
+        // Each worked example has the key `origin` once.
+        check_worked(&set, equation).map_err(|(i, what)| {
+            let at = text[start..].match_indices("\"origin\"").nth(i).map_or(0, |(at, _)| at);
+            refused(line_of(text, start + at), what)
+        })?;
     }
     Ok(set)
 }
 
-/// Line of the n-th `"predicts"` key, which each equation has once.
-fn line_of_equation(text: &str, index: usize) -> usize {
-    let mut seen = text.match_indices("\"predicts\"").skip(index);
-    seen.next().map_or(1, |(at, _)| 1 + text[..at].matches('\n').count())
+/// Place of the n-th `"predicts"` key, which each equation has once.
+fn start_of_equation(text: &str, index: usize) -> usize {
+    text.match_indices("\"predicts\"").nth(index).map_or(0, |(at, _)| at)
+}
+
+fn line_of(text: &str, at: usize) -> usize {
+    1 + text[..at].matches('\n').count()
 }
 
 /// Every worked value of the file must come out of the formula of the file.
-fn check_worked(set: &PredictedSet, equation: &Equation) -> Result<(), String> {
+fn check_worked(set: &PredictedSet, equation: &Equation) -> Result<(), (usize, String)> {
     for (i, worked) in equation.worked.iter().enumerate() {
         let got = evaluate(set, equation.predicts, &worked.person, worked.overridden);
         let said = match (&worked.expected, &got) {
@@ -69,11 +77,12 @@ fn check_worked(set: &PredictedSet, equation: &Equation) -> Result<(), String> {
             (_, Err(note)) => format!("the refusal `{}`", note.code),
         };
         let unit = equation.predicts.unit().ucum();
-        return Err(format!(
-            "Worked value {} of `{}` does not come out: the formula gives {said} ({unit}).",
+        let code = equation.predicts.code();
+        let what = format!(
+            "Worked value {} of `{code}` does not come out: the formula gives {said} ({unit}).",
             i + 1,
-            equation.predicts.code()
-        ));
+        );
+        return Err((i, what));
     }
     Ok(())
 }

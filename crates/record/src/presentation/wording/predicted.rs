@@ -19,10 +19,7 @@ pub const TEXTS: &[Entry] = &[
     ("set-none-chosen", "No set is chosen for this."),
     ("set-unconfirmed", "{set}: coefficients not confirmed in a source; locked."),
     ("coefficients-unconfirmed", "{set}: unconfirmed coefficients, unlocked by the reader."),
-    (
-        "near-range",
-        "△ Near range: {input} {value} lies just outside {low} to {high} of {set}.",
-    ),
+    ("near-range", "△ Near range: {input} {value} lies just outside {low} to {high} of {set}."),
     (
         "outside-usual-size",
         "△ Outside the usual size: {input} {value}, usual {low} to {high} for {set}.",
@@ -50,13 +47,13 @@ pub const TEXTS: &[Entry] = &[
     ("no-limit-published", "{set}: no limit published."),
     ("no-limit-published-work-rate", "No limit is published for a work rate formed this way."),
     ("limit-by-convention", "{set}: the limit is a convention of practice, not published with it."),
-    (
-        "limit-by-convention-o2-pulse",
-        "Lower limit: 80 % of predicted, a convention of practice.",
-    ),
+    ("limit-by-convention-o2-pulse", "Lower limit: 80 % of predicted, a convention of practice."),
     ("limit-unreliable", "{set}: limit unreliable, the scatter is large against the prediction."),
     ("information-only", "For information; never graded."),
-    ("from-predicted-vo2", "From predicted V̇O₂, the slope of this ramp and the overlay parameters."),
+    (
+        "from-predicted-vo2",
+        "From predicted V̇O₂, the slope of this ramp and the overlay parameters.",
+    ),
     (
         "o2-pulse-looks-high-on-beta-blocker",
         "On a beta-blocker the predicted rate is wrong: the O₂ pulse looks high.",
@@ -146,7 +143,10 @@ pub const TEXTS: &[Entry] = &[
     ("class-only-major-abdominal", "Concerns major abdominal surgery only."),
     ("class-only-colorectal", "Concerns colorectal surgery only."),
     ("class-never-vo2-alone", "The source never uses peak V̇O₂ alone."),
-    ("class-drug-not-stated", "Whether a beta-blocker is taken is not stated; it changes the limit."),
+    (
+        "class-drug-not-stated",
+        "Whether a beta-blocker is taken is not stated; it changes the limit.",
+    ),
     ("class-ishlt-not-maximal", "The source asks for RER above 1.05; not shown here."),
     ("word-class-A", "A"),
     ("word-class-B", "B"),
