@@ -6,6 +6,7 @@ use analysis::recording::Recording;
 use egui::{Rect, Theme, Ui};
 use record::facts_file::FactsFile;
 
+use crate::background::{Background, Picked};
 use crate::chart::handles::{self, HandleKind};
 use crate::chart::interact;
 use crate::chart::layout::{Grid, Parts};
@@ -34,6 +35,8 @@ pub struct App {
     pub view: ViewState,
     /// Taste.
     pub preferences: Preferences,
+    /// What runs beside the window.
+    pub background: Background,
 }
 
 impl App {
@@ -78,7 +81,8 @@ impl App {
         if ui.ctx().theme() != self.preferences.theme {
             ui.ctx().set_theme(self.preferences.theme);
         }
-        let commands = self.read_handles(ui);
+        let mut commands = self.read_handles(ui);
+        commands.extend(self.arrivals(ui));
         self.carry_out(ui, commands);
         self.derive();
         let commands = self.draw(ui);
@@ -107,6 +111,23 @@ impl App {
             self.view.cursor_s = Some(drag.t_s);
         }
         out.extend(dispatch::keys(ui, self.view.dialog.is_some()));
+        out
+    }
+
+    /// Files that were dropped or picked.
+    fn arrivals(&mut self, ui: &Ui) -> Outbox {
+        let mut out = Outbox::new();
+        if let Some(file) = ui.input(|i| i.raw.dropped_files.first().cloned()) {
+            out.push(Command::OpenPath(file.path().to_owned()));
+        }
+        match self.background.poll() {
+            Some(Picked::File(path)) => out.push(Command::OpenPath(path)),
+            Some(Picked::NoDialog) => {
+                let words = "No file dialog on this desktop: type the path.";
+                self.view.status = Some(words.into());
+            }
+            Some(Picked::Cancelled) | None => {}
+        }
         out
     }
 
@@ -150,6 +171,7 @@ impl App {
         let parts = Parts::of(window, &grid);
         let tokens = Tokens::of(self.preferences.theme);
         let mut handles = self.handles();
+        let mut form = std::mem::take(&mut self.view.form);
         let recording = self.document.recording().unwrap_or(&NO_TEST);
         let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor);
         let mut decisions = self.document.decisions();
@@ -191,7 +213,9 @@ impl App {
         cx.handles = &handles;
         let mut out = Outbox::new();
         let geometry = paint(ui, &cx, &mut out, window, &parts);
+        crate::dialogs::show(ui, &cx, &mut form, &mut out);
         self.view.geometry = geometry;
+        self.view.form = form;
         out
     }
 

@@ -60,6 +60,8 @@ pub enum Command {
     Edits(Vec<Edit>),
     /// Close the window, work saved or not.
     Quit,
+    /// Carry this out although work is not saved.
+    Discard(Box<Command>),
 }
 
 impl Command {
@@ -132,6 +134,7 @@ impl Command {
             Command::Edit(edit) => edit.label(),
             Command::Edits(edits) => edits.first().map_or_else(String::new, Edit::label),
             Command::Quit => "Close".into(),
+            Command::Discard(_) => "Discard changes".into(),
         }
     }
 

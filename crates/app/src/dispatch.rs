@@ -9,6 +9,8 @@ use crate::chart::interact::step;
 use crate::command::{Command, Outbox};
 use record::session::Edit;
 
+use crate::view_state::Dialog;
+
 /// The command of a handle that came to rest at `t_s`.
 #[must_use]
 pub fn moved(kind: HandleKind, t_s: f64) -> Command {
@@ -76,11 +78,51 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::OpenDemo => {
             app.open_table(crate::demo::TABLE, crate::demo::NAME, crate::demo::facts());
         }
-        Command::OpenPath(_)
-        | Command::PickFile
-        | Command::Save
-        | Command::SaveTo(_)
-        | Command::ExportTo(_) => {}
+        Command::OpenPath(path) => open(app, &path),
+        Command::PickFile => app.background.pick(ui.ctx()),
+        Command::Save => match app.document.path().map(std::path::Path::to_owned) {
+            Some(path) => save(app, &path),
+            None => app.view.dialog = Some(Dialog::Save),
+        },
+        Command::SaveTo(path) => save(app, &path),
+        Command::ExportTo(path) => export(app, &path),
+        Command::Discard(next) => {
+            app.view.dialog = None;
+            app.document.forget_changes();
+            carry_out(app, ui, *next);
+        }
+    }
+}
+
+fn open(app: &mut App, path: &std::path::Path) {
+    if app.document.unsaved_work() {
+        let next = Command::OpenPath(path.to_owned());
+        app.view.dialog = Some(Dialog::Unsaved(Box::new(next)));
+        return;
+    }
+    match crate::opening::file(path) {
+        Ok(document) => app.show(document),
+        Err(problem) => app.view.status = Some(problem.to_string()),
+    }
+}
+
+fn save(app: &mut App, path: &std::path::Path) {
+    match app.document.save(path) {
+        Ok(()) => {
+            app.view.dialog = None;
+            app.view.status = Some("Session saved.".into());
+        }
+        Err(problem) => app.view.status = Some(problem.to_string()),
+    }
+}
+
+fn export(app: &mut App, path: &std::path::Path) {
+    match app.document.export(app.derived.committed(), path) {
+        Ok(()) => {
+            app.view.dialog = None;
+            app.view.status = Some("Page written.".into());
+        }
+        Err(problem) => app.view.status = Some(problem.to_string()),
     }
 }
 

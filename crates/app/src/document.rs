@@ -6,6 +6,7 @@ use std::sync::Arc;
 use analysis::decisions::Decisions;
 use analysis::facts::Facts;
 use analysis::recording::Recording;
+use analysis::results::Results;
 use analysis::settings::Settings;
 use record::facts_file::FactsFile;
 use record::problem::Problem;
@@ -104,6 +105,23 @@ impl Document {
             self.saved_revision = Some(self.revision);
         }
         Ok(())
+    }
+
+    /// Forgets that anything is unsaved, because the reader said so.
+    pub fn forget_changes(&mut self) {
+        self.saved_revision = Some(self.revision);
+    }
+
+    /// Writes the findings page at `path`, from the committed `results`.
+    ///
+    /// # Errors
+    /// Nothing could be written.
+    pub fn export(&self, results: &Results, path: &Path) -> Result<(), Problem> {
+        let Some(session) = &self.session else {
+            return Ok(());
+        };
+        let page = record::page::render(session, results, &self.now());
+        record::session::store::write_atomic(path, page.as_bytes())
     }
 
     /// The edit that would be taken back.

@@ -1,6 +1,7 @@
 //! The window of Rampcrest, without a shell: `App::ui` draws one frame into any `egui::Ui`.
 
 pub mod app;
+pub mod background;
 pub mod chart;
 pub mod cli;
 pub mod command;
@@ -8,6 +9,7 @@ pub mod context;
 pub mod demo;
 pub mod derived;
 pub mod describe;
+pub mod dialogs;
 pub mod dispatch;
 pub mod document;
 pub mod headless;

@@ -15,7 +15,7 @@ use crate::document::{Document, now};
 /// Settings of a new session, with the predicted sets that ship with the program.
 #[must_use]
 pub fn settings() -> Settings {
-    Settings::default()
+    Settings { sets: record::predicted_sets::bundled(), ..Settings::default() }
 }
 
 /// How a table is to be read.

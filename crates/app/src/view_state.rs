@@ -159,6 +159,8 @@ pub struct ViewState {
     pub evidence_of: Option<String>,
     /// Open dialog.
     pub dialog: Option<Dialog>,
+    /// What is typed in the open dialog.
+    pub form: crate::dialogs::Form,
     /// One line about the last action.
     pub status: Option<String>,
     /// Where the time columns stood in the last frame.
@@ -178,6 +180,7 @@ impl Default for ViewState {
             selected_s: None,
             evidence_of: None,
             dialog: None,
+            form: crate::dialogs::Form::default(),
             status: None,
             geometry: Vec::new(),
         }

@@ -137,10 +137,48 @@ fn controls(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> f32 
         .layout(egui::Layout::right_to_left(Align::Center));
     let ui = &mut ui.new_child(builder);
     ui.spacing_mut().item_spacing.x = 12.0;
+    sets(ui, cx, out);
     check(ui, out, Command::ToggleOverlay, cx.settings.overlay_shown);
     check(ui, out, Command::ToggleRaw, cx.view.raw);
     averaging(ui, cx, out);
     ui.min_rect().left() - 12.0
+}
+
+/// The predicted sets that stand on the page: of peak V̇O₂ and of peak HR.
+fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
+    use analysis::predicted::sets::Predicts;
+    let choice = &cx.settings.predicted;
+    let name = |id: &str| {
+        cx.settings.sets.iter().find(|s| s.id == id).map_or(id.to_owned(), |s| s.name.clone())
+    };
+    let words = format!("{} · {}", name(&choice.vo2), name(&choice.hr));
+    let response = egui::ComboBox::from_id_salt("predicted sets")
+        .selected_text(words)
+        .width(210.0)
+        .truncate()
+        .show_ui(ui, |ui| {
+            for (target, now) in [(Predicts::Vo2Peak, &choice.vo2), (Predicts::HrPeak, &choice.hr)]
+            {
+                let of = |s: &&analysis::predicted::sets::PredictedSet| {
+                    s.equations.iter().any(|e| e.predicts == target)
+                };
+                for set in cx.settings.sets.iter().filter(of) {
+                    let label = format!("{} ({})", set.name, set.year);
+                    if ui.selectable_label(set.id == *now, label).clicked() {
+                        let id = Some(set.id.clone());
+                        out.push(Command::Edit(match target {
+                            Predicts::Vo2Peak => Edit::SetPredicted { vo2: id, hr: None },
+                            _ => Edit::SetPredicted { vo2: None, hr: id },
+                        }));
+                    }
+                }
+                ui.separator();
+            }
+        })
+        .response;
+    response
+        .accessible_name("Predicted sets")
+        .on_hover_text("Which published equations stand on the page.");
 }
 
 fn check(ui: &mut Ui, out: &mut Outbox, command: Command, on: bool) {

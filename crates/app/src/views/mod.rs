@@ -1,9 +1,13 @@
 //! One file per view, named by it.
 
 pub mod circulation;
+pub mod comparison;
+pub mod data;
 pub mod empty;
+pub mod events;
 pub mod findings;
 pub mod gas_exchange;
+pub mod import;
 pub mod nine_panels;
 pub mod outcome_list;
 pub mod overlay;
@@ -15,14 +19,12 @@ pub mod time_course;
 pub mod ventilation;
 pub mod xy;
 
-use egui::{Align, Rect, Ui, pos2};
+use egui::{Rect, Ui};
 
 use crate::chart::interact::Geometry;
 use crate::command::Outbox;
 use crate::context::Context;
-use crate::theme::size;
 use crate::view_state::View;
-use crate::widgets::text;
 
 /// Draws the chosen view; returns where its time columns stood.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<Geometry> {
@@ -34,14 +36,20 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
         View::GasExchange => gas_exchange::show(ui, cx, out, rect),
         View::Recovery => recovery::show(ui, cx, out, rect),
         View::NinePanels => nine_panels::show(ui, cx, out, rect),
-        View::Findings => {
-            findings::show(ui, cx, out, rect);
-            Vec::new()
-        }
         other => {
-            let at = pos2(rect.left() + 16.0, rect.top() + 32.0);
-            text::plain(ui, at, Align::Min, other.name(), size::TITLE, cx.tokens.ink);
+            without_time(ui, cx, out, rect, other);
             Vec::new()
         }
+    }
+}
+
+/// Views without a time axis.
+fn without_time(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, view: View) {
+    match view {
+        View::Data => data::show(ui, cx, out, rect),
+        View::Events => events::show(ui, cx, out, rect),
+        View::Import => import::show(ui, cx, out, rect),
+        View::Comparison => comparison::show(ui, cx, rect),
+        _ => findings::show(ui, cx, out, rect),
     }
 }

@@ -41,6 +41,7 @@ pub fn gas(cx: &Context<'_>) -> Chart {
     let top = [Q::Vo2, Q::Vco2].iter().filter_map(|q| range(cx, *q)).map(|r| r.1);
     let watts = cx.recording.load.value.iter().copied().fold(0.0, f64::max);
     let top = top.fold(watts * 0.01, f64::max).max(0.5);
+    let top = top.max(super::overlay::top(cx, Q::Vo2));
     let mut chart = Chart::new("gas", cx.time(), Axis::from_zero(top * 1.08, count(cx, true)));
     chart.title = vec![title(Q::Vo2), title(Q::Vco2), Title::grey("L/min")];
     if range(cx, Q::Vo2).is_none() && range(cx, Q::Vco2).is_none() {
@@ -89,6 +90,7 @@ fn work_rate(cx: &Context<'_>, chart: &mut Chart, scale: f64) {
 #[must_use]
 pub fn o2_pulse(cx: &Context<'_>) -> Chart {
     let top = range(cx, Q::O2Pulse).map_or(10.0, |r| r.1);
+    let top = top.max(0.9 * super::overlay::top(cx, Q::O2Pulse));
     let axis = Axis::from_zero(top * 1.2, count(cx, true));
     let mut chart = Chart::new("o2-pulse", cx.time(), axis);
     chart.title = vec![title(Q::O2Pulse), Title::grey("mL/beat")];
@@ -110,6 +112,7 @@ pub fn o2_pulse(cx: &Context<'_>) -> Chart {
 #[must_use]
 pub fn heart_rate(cx: &Context<'_>) -> Chart {
     let (low, high) = range(cx, Q::Hr).unwrap_or((60.0, 160.0));
+    let high = high.max(0.9 * super::overlay::top(cx, Q::Hr));
     let axis = Axis::fixed(
         (low / 25.0 - 0.3).floor() * 25.0,
         (high * 1.12 / 12.5).ceil() * 12.5,
@@ -123,6 +126,9 @@ pub fn heart_rate(cx: &Context<'_>) -> Chart {
     super::overlay::time(cx, &mut chart, Q::Hr, same);
     raw(cx, &mut chart, Q::Hr, same);
     average(cx, &mut chart, Q::Hr, same);
+    if let (Some(why), Some((from, _))) = (super::overlay::withheld(cx), cx.results.phases.ramp()) {
+        chart.remarks.push(([from, chart.y.high], format!("no predicted overlay: {why}")));
+    }
     chart.description = describe(cx, &[Q::Hr]);
     chart
 }

@@ -10,6 +10,8 @@ use crate::context::Context;
 pub struct Note {
     /// Time, s.
     pub t_s: f64,
+    /// Closed code of its kind.
+    pub code: &'static str,
     /// In words.
     pub text: String,
     /// Whether it is set in ink rather than grey.
@@ -90,7 +92,13 @@ pub fn of_side(cx: &Context<'_>, wanted: Side) -> Vec<Note> {
                 Some(free) => format!("{plain}: {free}"),
                 None => plain,
             };
-            Note { t_s: event.t_s, text, strong: strong(&event.kind), side: wanted }
+            Note {
+                t_s: event.t_s,
+                code: code(&event.kind),
+                text,
+                strong: strong(&event.kind),
+                side: wanted,
+            }
         })
         .collect()
 }
