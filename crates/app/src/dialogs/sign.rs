@@ -38,7 +38,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
     }
     ui.label("Signing locks the session and freezes its results.");
     let ready = sure && !form.get("name").trim().is_empty();
-    if foot(ui, out, "Sign", ready) {
+    if foot(ui, out, "Sign and lock", ready) {
         let get = |name: &str| form.get(name).trim().to_owned();
         out.push(Command::Edit(Edit::Sign {
             name: get("name"),

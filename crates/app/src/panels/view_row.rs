@@ -148,10 +148,14 @@ fn controls(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> f32 
 fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
     use analysis::predicted::sets::Predicts;
     let choice = &cx.settings.predicted;
-    let name = |id: &str| {
-        cx.settings.sets.iter().find(|s| s.id == id).map_or(id.to_owned(), |s| s.name.clone())
-    };
-    let words = format!("{} · {}", name(&choice.vo2), name(&choice.hr));
+    let set = |id: &str| cx.settings.sets.iter().find(|s| s.id == id);
+    let vo2 = set(&choice.vo2).map_or(choice.vo2.clone(), |s| {
+        let first = s.name.split([',', ' ']).next().unwrap_or_default();
+        format!("{first} {}", s.year)
+    });
+    let hr = set(&choice.hr)
+        .map_or(choice.hr.clone(), |s| s.name.rsplit(": ").next().unwrap_or_default().to_owned());
+    let words = format!("{vo2} · {hr}");
     let response = egui::ComboBox::from_id_salt("predicted sets")
         .selected_text(words)
         .width(210.0)
