@@ -2,6 +2,9 @@
 
 use super::plan::Plan;
 
+/// Lag of the CO₂ stores behind arterial tension, s (assumed).
+const STORE_LAG_S: f64 = 25.0;
+
 /// One second of the noise-free response.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct Instant {
@@ -240,7 +243,7 @@ impl Plan {
         let (v, c, m) = (&self.ventilation, &self.circulation, &self.metabolism);
         let vo2_span = (vo2.iter().copied().fold(0.0, f64::max) - m.vo2_rest).max(1.0);
         let mut seconds: Vec<Instant> = Vec::with_capacity(vo2.len());
-        let mut saturation_open = 0.0;
+        let (mut saturation_open, mut stored) = (0.0, f64::NAN);
         for i in 0..vo2.len() {
             let t = i as f64;
             let mut now = Instant { vo2: vo2[i], hr: hr[i], ..Instant::default() };
@@ -255,8 +258,13 @@ impl Plan {
             let vd = self.dead_space(now.vt);
             let va = now.ve * (1.0 - vd / now.vt);
             now.paco2 = 863.0 * delivered[i] * (1.0 + 0.6 * swing) / 1000.0 / va;
-            let before = seconds.last().map_or(now.paco2, |b| b.paco2);
-            now.vco2 = delivered[i] * (1.0 + 0.6 * swing) - m.washout * (now.paco2 - before) * 60.0;
+            if i == 0 {
+                stored = now.paco2;
+            }
+            // The stores follow arterial tension with a lag; what they take the lung does not give.
+            let change = (now.paco2 - stored) / STORE_LAG_S;
+            stored += change;
+            now.vco2 = delivered[i] * (1.0 + 0.6 * swing) - m.washout * change * 60.0;
             let share = ((now.vo2 - m.vo2_rest) / vo2_span).clamp(0.0, 1.0);
             now.pet_gap = v.pet_gap_rest + v.pet_gap_rise * share.sqrt();
             // At a fixed mixed-venous floor V̇O₂ falls by exactly the shunt fraction; CO₂ crosses

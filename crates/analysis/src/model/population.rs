@@ -149,7 +149,7 @@ fn ventilation(rng: &mut Rng, rise: f64) -> Ventilation {
     let base = Plan::healthy(0).ventilation;
     let vt_max = (1.2 + 0.45 * rise / 1000.0) * rng.between(0.85, 1.2);
     Ventilation {
-        intercept: rng.between(1.5, 4.0),
+        intercept: rng.between(1.5, 3.2),
         slope: rng.between(22.0, 30.0),
         vt_max,
         vt_scale: 12.0 + 8.0 * rise / 1000.0,
@@ -216,5 +216,52 @@ fn noise(rng: &mut Rng, class: Class) -> Noise {
         hr_irregular: 0.0,
         smoothed: if class == Class::PreSmoothed { 3 } else { 1 },
         spo2_gap: None,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::model::test::generate;
+
+    /// Thresholds are passed exactly where the class has them, in this order.
+    #[test]
+    fn classes_have_the_thresholds_they_name() {
+        for class in Class::ALL {
+            for seed in 0..25 {
+                let (_, truth) = generate(&draw(seed, Protocol::Ramp(10.0), class));
+                assert_eq!(truth.vt1_vo2.is_some(), class.has_vt1(), "{class:?} {seed}");
+                assert_eq!(truth.vt2_vo2.is_some(), class.has_vt2(), "{class:?} {seed}");
+                if let (Some(one), Some(two)) = (truth.vt1_s, truth.vt2_s) {
+                    assert!(one < two, "{class:?} {seed}");
+                    assert!(two < truth.phases.recovery.unwrap(), "{class:?} {seed}");
+                }
+            }
+        }
+    }
+
+    /// Physiology of every second of every noise-free test: wide limits of what is ever seen
+    /// (common practice), so that no table is calibrated on impossible people.
+    #[test]
+    fn nobody_is_impossible() {
+        for protocol in [Protocol::Ramp(8.0), Protocol::Ramp(15.0), Protocol::Steps(10.0)] {
+            for seed in 0..60 {
+                let plan = draw(seed, protocol, Class::Both);
+                let response = plan.response();
+                let end = plan.schedule.end_at() as usize;
+                for (t, now) in response.seconds.iter().enumerate() {
+                    let rer = now.vco2 / now.vo2;
+                    let limit = if t < end { 1.5 } else { 1.9 };
+                    // CO₂ stores fill while pedalling begins: seconds of low RER, deeper here than
+                    // people show, and long over when the increments begin.
+                    let least = if t < plan.schedule.ramp_at() as usize { 0.45 } else { 0.7 };
+                    assert!((least..limit).contains(&rer), "{seed} {t}: RER {rer}");
+                    assert!((24.0..54.0).contains(&now.paco2), "{seed} {t}: {}", now.paco2);
+                    let rate = now.ve / now.vt;
+                    assert!((7.0..75.0).contains(&rate), "{seed} {t}: fR {rate}");
+                    assert!((50.0..215.0).contains(&now.hr), "{seed} {t}: HR {}", now.hr);
+                }
+            }
+        }
     }
 }
