@@ -166,12 +166,13 @@ fn key_row(h: &mut Html, row: &Row) {
         h.raw("</td></tr>\n");
         return;
     }
-    for interval in [&row.shown.recording, &row.shown.repeat] {
+    let absent = ["page-not-given", "page-not-published"];
+    for (interval, absent) in [&row.shown.recording, &row.shown.repeat].into_iter().zip(absent) {
         let class = if interval.is_some() { "number" } else { "number quiet" };
         h.raw(&format!("<td class=\"{class}\">"));
         match interval {
             Some(i) => h.keyed("i", &row.shown.key, i),
-            None => h.text(&t("page-not-published")),
+            None => h.text(&t(absent)),
         }
         h.raw("</td>");
     }
@@ -257,8 +258,8 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     h.close("figcaption");
     match charts::o2_pulse(recording, &m.results) {
         Some(chart) => {
-            let frame = Frame { left: 26.0, top: 4.0, width: 388.0, height: 150.0, x_labels: true };
-            h.raw(&svg::drawing(420.0, 172.0, &t("page-fig-pulse"), &[(&chart, frame)]));
+            let frame = Frame { left: 26.0, top: 4.0, width: 388.0, height: 128.0, x_labels: true };
+            h.raw(&svg::drawing(420.0, 150.0, &t("page-fig-pulse"), &[(&chart, frame)]));
         }
         None => h.element("p", "quiet", &t("page-no-pulse")),
     }
@@ -270,17 +271,17 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     let mut list = Vec::new();
     let both = hr.is_some() && vo2.is_some();
     if let Some(hr) = &hr {
-        let height = if both { 70.0 } else { 150.0 };
+        let height = if both { 58.0 } else { 128.0 };
         list.push((hr, Frame { left: 28.0, top: 4.0, width: 236.0, height, x_labels: !both }));
     }
     if let Some(vo2) = &vo2 {
-        let (top, height) = if both { (84.0, 70.0) } else { (4.0, 150.0) };
+        let (top, height) = if both { (74.0, 58.0) } else { (4.0, 128.0) };
         list.push((vo2, Frame { left: 28.0, top, width: 236.0, height, x_labels: true }));
     }
     if list.is_empty() {
         h.element("p", "quiet", &t("page-no-work"));
     } else {
-        h.raw(&svg::drawing(270.0, 172.0, &t("page-fig-work"), &list));
+        h.raw(&svg::drawing(270.0, 150.0, &t("page-fig-work"), &list));
     }
     h.close("figure");
     h.element("p", "quiet key", &t("page-fig-key-plain"));

@@ -1,6 +1,8 @@
 //! The pages after the first: findings with their evidence, every result, methods, source, history.
 
 use analysis::decisions::{Mark, Phase};
+use analysis::quantity::{Quantity, TABLE};
+use analysis::results::At;
 
 use super::first::{heading, number, square};
 use super::html::Html;
@@ -65,13 +67,13 @@ fn one(h: &mut Html, m: &Model<'_>, f: &FindingShown) {
     for (code, list) in
         [("page-for", &f.supports), ("page-against", &f.contradicts), ("page-unmeasured", &f.open)]
     {
-        evidence(h, m, code, list);
+        evidence(h, m, code, list, &f.keys);
     }
     h.close("dl");
     h.close("article");
 }
 
-fn evidence(h: &mut Html, m: &Model<'_>, code: &str, list: &[EvidenceShown]) {
+fn evidence(h: &mut Html, m: &Model<'_>, code: &str, list: &[EvidenceShown], own: &[String]) {
     if list.is_empty() {
         return;
     }
@@ -82,7 +84,8 @@ fn evidence(h: &mut Html, m: &Model<'_>, code: &str, list: &[EvidenceShown]) {
             h.raw(" · ");
         }
         h.text(&e.text);
-        for key in &e.keys {
+        // The statement's own values stand in it already.
+        for key in e.keys.iter().filter(|k| !own.contains(k)) {
             let shown = m.primaries().map(values::shown).find(|s| s.key == *key);
             if let Some(s) = shown.filter(|s| !e.text.contains(&s.value)) {
                 h.raw(" (");
@@ -99,20 +102,21 @@ fn evidence(h: &mut Html, m: &Model<'_>, code: &str, list: &[EvidenceShown]) {
 fn all_results(h: &mut Html, m: &Model<'_>) {
     h.open("section", "break");
     heading(h, "page-all", "page-all-note");
+    phases(h, m);
     h.raw("<table class=\"all\"><thead><tr>");
     for (class, code) in [
-        ("", "page-col-result"),
+        ("name", "page-col-result"),
         ("number", "page-col-value"),
         ("number", "page-col-recording"),
         ("number", "page-col-repeat"),
-        ("", "page-col-method"),
+        ("basis", "page-col-method"),
     ] {
         h.raw(&format!("<th scope=\"col\" class=\"{class}\">"));
         h.text(&t(code));
         h.raw("</th>");
     }
     h.raw("</tr></thead><tbody>\n");
-    for outcome in m.primaries() {
+    for outcome in m.primaries().filter(|o| Quantity::from_code(&o.id).is_none()) {
         let shown = values::shown(outcome);
         h.raw("<tr><th scope=\"row\">");
         h.text(&shown.label);
@@ -141,12 +145,47 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
     h.close("section");
 }
 
+/// Means of the phases: a quantity a row.
+fn phases(h: &mut Html, m: &Model<'_>) {
+    const PLACES: [At; 6] = [At::Rest, At::WarmUp, At::Vt1, At::Vt2, At::Peak, At::Recovery1Min];
+    let cell = |id: &str, at: At| m.results.primary(id, at).map(values::shown);
+    h.element("h3", "", &t("page-phases"));
+    h.raw("<table class=\"phases means\"><thead><tr><th scope=\"col\">");
+    h.text(&t("page-quantity"));
+    h.raw("</th>");
+    for at in PLACES {
+        h.raw("<th scope=\"col\">");
+        h.text(&t(&format!("at-{}", at.code())));
+        h.raw("</th>");
+    }
+    h.raw("</tr></thead><tbody>\n");
+    for row in TABLE {
+        let cells: Vec<_> = PLACES.iter().map(|at| cell(row.code, *at)).collect();
+        let Some(some) = cells.iter().flatten().find(|s| s.value != values::NONE) else { continue };
+        h.raw("<tr><th scope=\"row\">");
+        h.text(row.symbol);
+        h.raw(" <span class=\"u\">");
+        h.text(&some.unit);
+        h.raw("</span></th>");
+        for cell in cells {
+            h.raw("<td>");
+            match cell {
+                Some(s) => h.keyed("v", &s.key, &s.value),
+                None => h.text(values::NONE),
+            }
+            h.raw("</td>");
+        }
+        h.raw("</tr>\n");
+    }
+    h.raw("</tbody></table>\n");
+}
+
 /// Method, window and breaths.
 fn basis(outcome: &analysis::results::Outcome, m: &Model<'_>) -> String {
     let settings = &m.session.judgement().settings;
     let mut out = set_names(&outcome.method, settings);
     if let Some((from, to)) = outcome.basis.window_s {
-        out.push_str(&format!("; {}–{}", values::time(from), values::time(to)));
+        out.push_str(&format!(", {}–{}", values::time(from), values::time(to)));
     }
     if outcome.basis.breaths > 0 {
         out.push_str(&format!(", {}", outcome.basis.breaths));
@@ -199,7 +238,14 @@ fn methods(h: &mut Html, m: &Model<'_>) {
         seen.push(code);
         if let Some(how) = analysis::methods::describe(code) {
             h.element("dt", "", code);
-            h.element("dd", "", &how);
+            h.open("dd", "");
+            h.text(&how);
+            if let Some(method) = analysis::methods::find(code) {
+                h.raw(" <span class=\"quiet\">(");
+                h.text(method.source);
+                h.raw(")</span>");
+            }
+            h.close("dd");
         }
     }
     let settings = &m.session.judgement().settings;

@@ -11,10 +11,13 @@ use crate::session::findings::{FindingShown, Status};
 use crate::session::{ENGINE, Session, frozen};
 
 /// Lines that the conclusion may take on page 1; the rest stands on the next page.
-const CONCLUSION_LINES: usize = 13;
+const CONCLUSION_LINES: usize = 10;
 
 /// Letters in one line of the conclusion.
 const LINE: usize = 112;
+
+/// Drafts that give way to all others on page 1: they list what follows from the rest.
+const GIVE_WAY: &[&str] = &["circulation-explanations", "fick-forward-bound"];
 
 /// The page's content.
 pub(super) struct Model<'a> {
@@ -103,8 +106,14 @@ fn conclusion(findings: &[FindingShown]) -> (Vec<usize>, usize) {
     let candidates: Vec<usize> = (0..findings.len()).filter(|i| concerns(&findings[*i])).collect();
     let mut room = CONCLUSION_LINES;
     let mut taken = Vec::new();
-    for wanted in [Status::Accepted, Status::Draft] {
-        for i in candidates.iter().copied().filter(|i| findings[*i].status == wanted) {
+    let gives_way = |f: &FindingShown| GIVE_WAY.contains(&f.id.as_str());
+    let rank = |f: &FindingShown| match f.status {
+        Status::Accepted => 0,
+        _ if !gives_way(f) => 1,
+        _ => 2,
+    };
+    for wanted in 0..3 {
+        for i in candidates.iter().copied().filter(|i| rank(&findings[*i]) == wanted) {
             let lines = findings[i].text.chars().count().div_ceil(LINE).max(1);
             if lines <= room {
                 room -= lines;

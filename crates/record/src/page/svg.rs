@@ -152,7 +152,8 @@ fn line(out: &mut String, chart: &Chart, f: &Frame, series: &Series, stroke: Str
     let last = series.runs.iter().flatten().next_back();
     if let (Some(label), Some((x, y))) = (&series.label, last) {
         let y = f.y(&chart.y, *y).max(f.top + 12.0);
-        backed(out, f.x(&chart.x, *x) + 6.0, y + 4.0, "name", label);
+        let left = (f.x(&chart.x, *x) + 6.0).min(f.right() - 6.3 * label.chars().count() as f64);
+        backed(out, left, y + 4.0, "name", label);
     }
 }
 

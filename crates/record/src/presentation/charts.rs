@@ -68,7 +68,7 @@ const GAP_S: f64 = 20.0;
 pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
     let span = recording.span_s()?;
     let ramp = results.phases.ramp();
-    let (from, to) = ramp.map_or(span, |(a, b)| ((a - 60.0).max(span.0), (b + 90.0).min(span.1)));
+    let (from, to) = ramp.map_or(span, |(a, b)| ((a - 60.0).max(span.0), (b + 150.0).min(span.1)));
     let dots = breaths(recording, Quantity::O2Pulse, from, to);
     let line = averaged(results, Quantity::O2Pulse, from, to);
     if line.iter().all(Vec::is_empty) {
@@ -120,7 +120,10 @@ pub fn against_work(recording: &Recording, results: &Results, quantity: Quantity
             let (vo2, hr, _) = early.at(t);
             values::on_axis(quantity, if quantity == Quantity::Hr { hr } else { vo2 })
         };
-        let points = at_load(steps(early.from_s, to).map(|t| (t, of(t))).collect());
+        let points = at_load(
+            // At load end the load is off already.
+            steps(early.from_s, to).filter(|t| *t < to).map(|t| (t, of(t))).collect(),
+        );
         series.push(Series { stroke: Stroke::Dashed, runs: vec![points], label: None });
     }
     series.push(Series { stroke: Stroke::Line, runs: line, label: None });

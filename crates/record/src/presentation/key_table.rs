@@ -48,8 +48,12 @@ pub fn rows(results: &Results, settings: &Settings) -> Vec<Row> {
             if *indented && outcome.value.is_none() {
                 return None;
             }
+            let mut shown = values::shown(outcome);
+            if outcome.method == "reader-mark" {
+                shown.label = wording::with("page-readers", &[("label", shown.label)]);
+            }
             Some(Row {
-                shown: values::shown(outcome),
+                shown,
                 against: against(outcome, results, settings),
                 indented: *indented,
                 reason: outcome.reason.as_ref().map(|n| wording::text(n, results)),

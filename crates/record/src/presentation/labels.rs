@@ -1,6 +1,9 @@
 //! From stable ids to the words a reader knows.
 
+use analysis::quantity::Quantity;
 use analysis::results::At;
+
+use super::wording;
 
 /// Labels by id. The place is added unless the label names it already.
 const LABELS: &[(&str, &str)] = &[
@@ -96,15 +99,72 @@ const LABELS: &[(&str, &str)] = &[
     ("class-colorectal-vt1", "VT1 band (colorectal surgery)"),
     ("class-colorectal-vo2", "Peak V̇O₂ band (colorectal surgery)"),
     ("class-colorectal-ve-vco2", "V̇E/V̇CO₂ at VT1 band (colorectal surgery)"),
+    ("work-rate-peak", "Peak work rate"),
+    ("vco2-peak", "V̇CO₂, highest"),
+    ("ve-peak", "V̇E, highest"),
+    ("spo2-lowest", "SpO₂, lowest in exercise"),
+    ("mean-response-time", "V̇O₂ lag behind work rate"),
+    ("oscillatory-ventilation", "Oscillatory breathing"),
+    ("vt1-time", "VT1, time"),
+    ("vt1-state", "VT1, state"),
+    ("vt1-vo2-per-kg", "VT1 per kg"),
+    ("vt1-vo2-of-peak", "VT1, share of own peak V̇O₂"),
+    ("vt1-work-rate", "VT1, work rate"),
+    ("vt2-time", "VT2, time"),
+    ("vt2-state", "VT2, state"),
+    ("vt2-vo2-per-kg", "VT2 per kg"),
+    ("vt2-vo2-of-peak", "VT2, share of own peak V̇O₂"),
+    ("vt2-work-rate", "VT2, work rate"),
+    ("ve-vco2-intercept", "V̇E/V̇CO₂ line, intercept"),
+    ("ve-vco2-nadir", "V̇E/V̇CO₂, lowest"),
+    ("oues-75", "OUES, first 75 % of the ramp"),
+    ("oues-50", "OUES, first 50 % of the ramp"),
+    ("dvo2-dwr-to-vt1", "ΔV̇O₂/ΔWR to VT1"),
+    ("dvo2-dwr-after-vt1", "ΔV̇O₂/ΔWR after VT1"),
+    ("dhr-dwr", "ΔHR/ΔWR"),
+    ("dhr-dwr-change", "ΔHR/ΔWR, late ÷ early"),
+    ("dhr-dvo2", "ΔHR/ΔV̇O₂"),
+    ("vo2-half-time-recovery", "V̇O₂ half-time of recovery"),
+    ("vo2-recovery-delay", "V̇O₂ recovery delay"),
+    ("rer-overshoot", "RER overshoot in recovery"),
+    ("breathing-reserve-absolute", "Breathing reserve, volume"),
+    ("rate-pressure-product", "Rate–pressure product"),
+    ("circulatory-power", "Circulatory power"),
+    ("ventilatory-power", "Ventilatory power"),
+    ("effort-rer", "Effort criterion, RER"),
+    ("effort-hr", "Effort criterion, HR"),
+    ("effort-lactate", "Effort criterion, lactate"),
+    ("vo2-plateau", "V̇O₂ plateau"),
+    ("lactate-highest", "Lactate, highest"),
+];
+
+/// Labels to which the place is added.
+const PLACED: &[(&str, &str)] = &[
+    ("vd-vt", "VD/VT"),
+    ("vd-vt-estimated", "VD/VT, estimated"),
+    ("pa-a-o2", "P(A–a)O₂"),
+    ("pa-et-co2", "P(a–ET)CO₂"),
+    ("ic-change", "Change of inspiratory capacity"),
 ];
 
 /// The label of `id` at `at`.
 #[must_use]
 pub fn label(id: &str, at: At) -> String {
-    match LABELS.iter().find(|(known, _)| *known == id) {
-        Some((_, label)) => (*label).to_owned(),
-        None => format!("{} {}", id.replace('-', " "), at.code()),
+    if let Some((_, label)) = LABELS.iter().find(|(known, _)| *known == id) {
+        return (*label).to_owned();
     }
+    let name = match PLACED.iter().find(|(known, _)| *known == id) {
+        Some((_, label)) => (*label).to_owned(),
+        None => Quantity::from_code(id)
+            .map_or_else(|| id.replace('-', " "), |q| q.row().symbol.to_owned()),
+    };
+    format!("{name}, {}", wording::plain_text(&format!("at-{}", at.code())))
+}
+
+/// Whether `id` has a label of its own, or is a quantity of the engine's table.
+#[must_use]
+pub fn known(id: &str) -> bool {
+    LABELS.iter().chain(PLACED).any(|(known, _)| *known == id) || Quantity::from_code(id).is_some()
 }
 
 /// `text` without combining marks, for paper and for fonts without mark positioning: V̇ becomes V.

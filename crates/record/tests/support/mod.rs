@@ -5,6 +5,7 @@ use std::sync::Arc;
 use analysis::settings::Settings;
 use record::facts_file::FactsFile;
 use record::import::{Answers, import};
+use record::predicted_sets;
 use record::session::Session;
 
 /// The instant of every test.
@@ -34,7 +35,7 @@ pub fn demo(case: &str) -> Session {
     let facts = FactsFile::read(&facts).expect("facts");
     let read = import(&bytes, "table.csv", &Answers::none(), None).expect("imports");
     let recording = Arc::new(read.recording);
-    let settings = Settings::default();
+    let settings = Settings { sets: predicted_sets::bundled(), ..Settings::default() };
     Session::from_import(&bytes, "table.csv", read.recipe, recording, facts, settings, NOW)
         .expect("a session")
 }

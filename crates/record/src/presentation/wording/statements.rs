@@ -96,62 +96,53 @@ pub const TEXTS: &[Entry] = &[
         "O₂ pulse at peak {value}, low in {low} of {sets} sets in range, within limits in the others.",
     ),
     // Circulation: patterns; each rests on the row of the claim table named.
-    (
-        "pattern-usual",
-        "Stroke volume × extraction kept growing as it usually does (claim row {row}).",
-    ),
+    ("pattern-usual", "Stroke volume × extraction kept growing as it usually does."),
     (
         "pattern-low-normal-shape",
-        "The O₂ pulse is low with a normal shape: its size, not its course, is limited (claim row {row}).",
+        "The O₂ pulse is low with a normal shape: its size, not its course, is limited.",
     ),
-    ("pattern-level-early", "The O₂ pulse is low and level from early on (claim row {row})."),
+    ("pattern-level-early", "The O₂ pulse is low and level from early on."),
     (
         "pattern-both-slowed",
-        "From mid-test V̇O₂ slowed while HR accelerated: compatible with stroke volume or extraction that stopped growing (claim row {row}).",
+        "From mid-test V̇O₂ slowed while HR accelerated: compatible with stroke volume or extraction that stopped growing.",
     ),
     (
         "pattern-pulmonary-vascular",
-        "The loss of slope comes with high V̇E/V̇CO₂ and low PETCO₂: compatible with a limit in the lung's circulation (claim row {row}).",
+        "The loss of slope comes with high V̇E/V̇CO₂ and low PETCO₂: compatible with a limit in the lung's circulation.",
     ),
     (
         "pattern-shunt",
-        "The loss of slope comes with one abrupt step of PETCO₂, PETO₂ and RER and a fall of SpO₂: compatible with a right-to-left shunt opening (claim row {row}).",
+        "The loss of slope comes with one abrupt step of PETCO₂, PETO₂ and RER and a fall of SpO₂: compatible with a right-to-left shunt opening.",
     ),
     (
         "pattern-desaturation",
-        "The loss of slope comes with a gradual fall of SpO₂: part of it is arterial content (claim row {row}).",
+        "The loss of slope comes with a gradual fall of SpO₂: part of it is arterial content.",
     ),
     (
         "pattern-content-ceiling",
-        "The O₂ pulse is low with a normal shape and haemoglobin is low: a ceiling of arterial content (claim row {row}).",
+        "The O₂ pulse is low with a normal shape and haemoglobin is low: a ceiling of arterial content.",
     ),
     (
         "pattern-cohb",
-        "The O₂ pulse is low with a normal shape and carboxyhaemoglobin is raised: a ceiling of arterial content (claim row {row}).",
+        "The O₂ pulse is low with a normal shape and carboxyhaemoglobin is raised: a ceiling of arterial content.",
     ),
     (
         "pattern-rate-limited",
-        "Little of the heart-rate reserve was used: the O₂ pulse is carried by a low rate and is not reassuring (claim row {row}).",
+        "Little of the heart-rate reserve was used: the O₂ pulse is carried by a low rate and is not reassuring.",
     ),
     (
         "pattern-rate-limited-drug",
-        "Little of the heart-rate reserve was used under a rate-slowing drug: the O₂ pulse is carried by a low rate and is not reassuring (claim row {row}).",
+        "Little of the heart-rate reserve was used under a rate-slowing drug: the O₂ pulse is carried by a low rate and is not reassuring.",
     ),
     (
         "pattern-ventilatory",
-        "The loss of slope comes with little breathing reserve: common in airflow obstruction without ischaemia (claim row {row}).",
+        "The loss of slope comes with little breathing reserve: common in airflow obstruction without ischaemia.",
     ),
-    (
-        "pattern-hr-part",
-        "The loss of slope is mostly HR acceleration; V̇O₂ kept its slope (claim row {row}).",
-    ),
-    (
-        "pattern-vo2-part",
-        "The loss of slope is mostly V̇O₂ slowing; HR kept its slope (claim row {row}).",
-    ),
+    ("pattern-hr-part", "The loss of slope is mostly HR acceleration; V̇O₂ kept its slope."),
+    ("pattern-vo2-part", "The loss of slope is mostly V̇O₂ slowing; HR kept its slope."),
     (
         "pattern-terminal",
-        "Only the last minute lost slope: compatible with the plateau of a true maximum (claim row {row}).",
+        "Only the last minute lost slope: compatible with the plateau of a true maximum.",
     ),
     ("explanations-1", "Patterns of this kind occur with {a}."),
     (
