@@ -60,7 +60,11 @@ fn outcome(o: &Outcome, results: &Results) -> Value {
         ("primary", o.primary.into()),
         ("kind", kind(o.kind).into()),
         ("value", value),
-        ("unit", o.unit.map_or(Value::Null, |u| u.ucum().into())),
+        // A reading or class has no unit, even where it is drawn from a quantity.
+        (
+            "unit",
+            o.unit.filter(|_| o.kind == Kind::Quantity).map_or(Value::Null, |u| u.ucum().into()),
+        ),
         ("low", low),
         ("high", high),
         ("level", LEVEL.into()),

@@ -106,7 +106,7 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
     h.raw("<table class=\"all\"><thead><tr>");
     for (class, code) in [
         ("name", "page-col-result"),
-        ("number", "page-col-value"),
+        ("number value", "page-col-value"),
         ("number", "page-col-recording"),
         ("number", "page-col-repeat"),
         ("basis", "page-col-method"),
@@ -120,7 +120,16 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
         let shown = values::shown(outcome);
         h.raw("<tr><th scope=\"row\">");
         h.text(&shown.label);
-        h.raw("</th><td class=\"number\">");
+        h.raw("</th>");
+        if outcome.word().is_some() {
+            h.raw("<td colspan=\"3\" class=\"word\">");
+            h.keyed("v", &shown.key, &shown.value);
+            h.raw("</td><td class=\"basis\">");
+            h.text(&basis(outcome, m));
+            h.raw("</td></tr>\n");
+            continue;
+        }
+        h.raw("<td class=\"number\">");
         number(h, &shown);
         h.raw("</td>");
         if let Some(reason) = &outcome.reason {

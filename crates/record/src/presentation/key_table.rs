@@ -4,6 +4,7 @@
 use analysis::predicted::sets::Predicts;
 use analysis::results::{At, Outcome, Results};
 use analysis::settings::Settings;
+use analysis::unit::Unit;
 
 use super::values::{self, Shown};
 use super::wording;
@@ -94,26 +95,46 @@ fn shown_onset(results: &Results) -> Option<String> {
 
 /// "92 % of Hansen 1984, limit 83 %" where the quantity has a prediction.
 fn of_predicted(outcome: &Outcome, results: &Results, settings: &Settings) -> Option<String> {
-    let id = format!(
-        "predicted-{}",
-        if outcome.id == "o2-pulse-at-peak" { "o2-pulse" } else { &outcome.id }
-    );
-    Predicts::all().find(|p| p.predicted_id() == id)?;
-    let predicted = results.primary(&id, outcome.at)?;
+    let row = Predicts::all().find(|p| p.measured_id() == Some(outcome.id.as_ref()))?;
+    let predicted = results.primary(row.predicted_id(), outcome.at)?;
     let (value, of) = (outcome.number()?, predicted.number()?);
-    let set = set_names(&predicted.method, settings);
-    let mut args = vec![("percent", values::fixed(100.0 * value / of, 0)), ("set", set)];
+    let percent = values::in_unit(100.0 * value / of, Unit::Percent);
+    let mut args = vec![("percent", percent), ("set", short_names(&predicted.method, settings))];
     let limit = predicted.recording.map(|i| if i.low.is_finite() { i.low } else { i.high });
     let Some(limit) = limit else { return Some(wording::with("page-of-predicted", &args)) };
-    args.push(("limit", format!("{} %", values::fixed(100.0 * limit / of, 0))));
+    args.push(("limit", values::in_unit(100.0 * limit / of, Unit::Percent)));
     Some(wording::with("page-of-predicted-limit", &args))
 }
 
 /// Names of the sets behind a method such as `hansen-1984/hansen-hr`.
 #[must_use]
 pub fn set_names(method: &str, settings: &Settings) -> String {
+    names(method, settings, str::to_owned)
+}
+
+/// The same where room is short: first author and year, or the formula alone.
+#[must_use]
+pub fn short_names(method: &str, settings: &Settings) -> String {
+    names(method, settings, |name| {
+        let last = name.rsplit(' ').next().unwrap_or_default();
+        match (name.split_once(": "), name.split_once(", ")) {
+            (Some((_, formula)), _) => formula.to_owned(),
+            (None, Some((first, _))) if last.len() == 4 => format!("{first} {last}"),
+            _ => name.to_owned(),
+        }
+    })
+}
+
+fn names(method: &str, settings: &Settings, form: impl Fn(&str) -> String) -> String {
     let name = |id: &str| {
-        settings.sets.iter().find(|s| s.id == id).map_or_else(|| id.to_owned(), |s| s.name.clone())
+        settings.sets.iter().find(|s| s.id == id).map_or_else(|| id.to_owned(), |s| form(&s.name))
     };
-    method.split('/').map(name).collect::<Vec<_>>().join(" ÷ ")
+    let parts: Vec<String> = method.split('/').map(name).collect();
+    match parts.as_slice() {
+        // A formula with operators needs its brackets when it divides.
+        [one, other] if other.contains(' ') && other.contains('−') => {
+            format!("{one} ÷ ({other})")
+        }
+        _ => parts.join(" ÷ "),
+    }
 }

@@ -118,9 +118,12 @@ impl Form {
         let unit = outcome.unit.unwrap_or(Unit::One);
         let mut form = Form::of_unit(unit);
         match (outcome.id.as_ref(), unit) {
-            (id, Unit::LPerMin) if id.contains("oues") => form.decimals = 2,
+            ("ventilatory-power", _) | ("ve-vco2-intercept", _) => form.decimals = 1,
+            ("rate-pressure-product", _) => form.decimals = 0,
             (id, Unit::One)
-                if id.contains("rer") || id.contains("ratio") || id.contains("fraction") =>
+                if ["rer", "ratio", "fraction", "vd-vt", "index", "over-pulse"]
+                    .iter()
+                    .any(|part| id.contains(part)) =>
             {
                 form.decimals = 2;
             }
