@@ -251,10 +251,11 @@ mod tests {
                 let end = plan.schedule.end_at() as usize;
                 for (t, now) in response.seconds.iter().enumerate() {
                     let rer = now.vco2 / now.vo2;
-                    let limit = if t < end { 1.5 } else { 1.9 };
+                    // Recovery enters no calibrated gas figure; its overshoot is steep in fast people.
+                    let limit = if t < end { 1.5 } else { 2.1 };
                     // CO₂ stores fill while pedalling begins: seconds of low RER, deeper here than
                     // people show, and long over when the increments begin.
-                    let least = if t < plan.schedule.ramp_at() as usize { 0.45 } else { 0.7 };
+                    let least = if t < plan.schedule.ramp_at() as usize { 0.4 } else { 0.7 };
                     assert!((least..limit).contains(&rer), "{seed} {t}: RER {rer}");
                     assert!((24.0..54.0).contains(&now.paco2), "{seed} {t}: {}", now.paco2);
                     let rate = now.ve / now.vt;
