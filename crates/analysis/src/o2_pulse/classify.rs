@@ -56,12 +56,14 @@ struct Parts {
 /// Nothing is known here about rhythm, gas or devices: those who call withhold the word for these.
 ///
 /// # Errors
-/// The reason why not even the curves can be given: `ramp-too-short`, `too-few-breaths`,
+/// The reason why not even the curves can be given: `course-ramp-too-short`, `course-too-few-breaths`,
 /// `load-not-rising`, `course-not-fitted`.
 pub fn classify(input: &CourseInput<'_>) -> Result<CourseDetail, Note> {
     let ramp_s = input.load_end_s - input.ramp_start_s;
     if ramp_s.is_nan() || ramp_s < SHORTEST_RAMP_S {
-        return Err(Note::new("ramp-too-short").with("duration", Arg::Duration(ramp_s.max(0.0))));
+        return Err(
+            Note::new("course-ramp-too-short").with("duration", Arg::Duration(ramp_s.max(0.0)))
+        );
     }
     let parts = prepare(input)?;
     let late = Window::late(&parts, LATE_S);
@@ -86,11 +88,11 @@ pub fn classify(input: &CourseInput<'_>) -> Result<CourseDetail, Note> {
 
 fn prepare(input: &CourseInput<'_>) -> Result<Parts, Note> {
     let binned = bins::bin(input.t_s, input.vo2, input.hr, input.ramp_start_s, input.load_end_s)
-        .ok_or(Note::new("too-few-breaths"))?;
+        .ok_or(Note::new("course-too-few-breaths"))?;
     let late_from_s = input.load_end_s - TRIM_S - LATE_S;
     let late = binned.bins.iter().filter(|b| b.t_s >= late_from_s).count();
     if late < 6 || binned.bins.len() - late < 6 {
-        return Err(Note::new("too-few-breaths"));
+        return Err(Note::new("course-too-few-breaths"));
     }
     let design = design::design(input.load, input.ramp_start_s, input.load_end_s, &binned.bins)
         .ok_or(Note::new("load-not-rising"))?;

@@ -107,7 +107,7 @@ fn short_ramps_and_few_breaths_are_refused_with_their_reason() {
         ramp_start_s: 0.0,
         load_end_s: 355.0,
     };
-    assert_eq!(classify(&input).unwrap_err().code, "ramp-too-short");
+    assert_eq!(classify(&input).unwrap_err().code, "course-ramp-too-short");
     let sparse: Vec<usize> = (0..m.t.len()).step_by(3).collect();
     let pick = |x: &[f64]| sparse.iter().map(|&i| x[i]).collect::<Vec<_>>();
     let (t, vo2, hr) = (pick(&m.t), pick(&m.vo2), pick(&m.hr));

@@ -3,6 +3,7 @@
 
 mod circulation;
 mod compose;
+pub mod robustness;
 mod rules;
 mod sections;
 mod seen;

@@ -37,6 +37,11 @@ pub const TEXTS: &[Entry] = &[
         "few-late-breaths",
         "Only {count} breaths with V̇O₂ and HR in the last 3 minutes; 60 are needed.",
     ),
+    (
+        "course-ramp-too-short",
+        "The increments lasted {duration}; a course needs at least 6 minutes.",
+    ),
+    ("course-too-few-breaths", "Too few breaths with both V̇O₂ and HR to fit the course."),
     ("load-not-rising", "The load did not rise over the increments."),
     ("course-not-fitted", "The course could not be fitted to these breaths."),
     (
