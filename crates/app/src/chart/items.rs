@@ -2,6 +2,7 @@
 
 use std::ops::RangeInclusive;
 
+use egui::emath::GuiRounding as _;
 use egui::{Color32, Mesh, Pos2, Shape, Stroke, Ui, pos2, vec2};
 use egui_plot::{PlotBounds, PlotGeometry, PlotItem, PlotItemBase, PlotPoint, PlotTransform};
 
@@ -22,7 +23,7 @@ impl Drawn {
 }
 
 impl PlotItem for Drawn {
-    fn shapes(&self, _ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
+    fn shapes(&self, ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
         let place = |p: &Point| transform.position_from_point(&PlotPoint::new(p[0], p[1]));
         let frame = transform.frame();
         match &self.item {
@@ -33,15 +34,22 @@ impl PlotItem for Drawn {
                 }
             }
             Item::Points { points, mark, radius, color } => {
+                let mut squares = Mesh::default();
                 for p in points.iter().map(place) {
                     if p.x < frame.left() || p.x > frame.right() {
                         continue;
                     }
                     if p.y < frame.top() || p.y > frame.bottom() {
                         beyond(p, frame, *color, shapes);
+                    } else if let Some(rect) = square(p, *mark, *radius) {
+                        let rect = rect.round_to_pixels(ui.pixels_per_point());
+                        squares.add_colored_rect(rect, *color);
                     } else {
                         point(p, *mark, *radius, *color, shapes);
                     }
+                }
+                if !squares.is_empty() {
+                    shapes.push(Shape::mesh(squares));
                 }
             }
             Item::Band { rows, fill, edge } => band(rows, *fill, *edge, &place, shapes),
@@ -102,32 +110,91 @@ impl PlotItem for Drawn {
 
 /// Adds a line with its pattern.
 pub fn stroke(points: &[Pos2], stroke: Stroke, dash: Option<Dash>, shapes: &mut Vec<Shape>) {
+    let points = thinned(points);
     match dash {
         _ if points.len() < 2 => {}
-        None => shapes.push(Shape::line(points.to_vec(), stroke)),
-        Some(Dash(on, off)) => shapes.extend(Shape::dashed_line(points, stroke, on, off)),
+        None => shapes.push(Shape::line(points, stroke)),
+        Some(dash) => {
+            shapes.extend(dashes(&points, dash).into_iter().map(|d| Shape::line(d, stroke)));
+        }
     }
+}
+
+/// The line without points that no eye tells from their neighbour: nearer than a point of the
+/// screen, each of them costing as much to paint as a visible stretch.
+fn thinned(points: &[Pos2]) -> Vec<Pos2> {
+    let mut kept: Vec<Pos2> = Vec::with_capacity(points.len());
+    for (i, p) in points.iter().enumerate() {
+        let is_near = kept.last().is_some_and(|last| last.distance_sq(*p) < 1.0);
+        if !is_near {
+            kept.push(*p);
+        } else if i + 1 == points.len() && kept.len() > 1 {
+            kept.pop();
+            kept.push(*p);
+        }
+    }
+    kept
+}
+
+/// The drawn stretches of a dashed line, each as one line with the bends it passes.
+fn dashes(points: &[Pos2], Dash(on, off): Dash) -> Vec<Vec<Pos2>> {
+    let mut all = Vec::new();
+    if on <= 0.0 || off <= 0.0 {
+        return all;
+    }
+    let mut dash = vec![points[0]];
+    let (mut drawing, mut left) = (true, on);
+    for pair in points.windows(2) {
+        let (from, to) = (pair[0], pair[1]);
+        let length = from.distance(to);
+        let mut done = 0.0;
+        while length - done > left {
+            done += left;
+            let at = from + (to - from) * (done / length);
+            if drawing {
+                dash.push(at);
+                all.push(std::mem::take(&mut dash));
+            } else {
+                dash = vec![at];
+            }
+            drawing = !drawing;
+            left = if drawing { on } else { off };
+        }
+        left -= length - done;
+        if drawing {
+            dash.push(to);
+        }
+    }
+    if drawing && dash.len() > 1 {
+        all.push(dash);
+    }
+    all
+}
+
+/// Marks that are squares or bars of whole pixels: two triangles each, in one mesh.
+fn square(p: Pos2, mark: Mark, r: f32) -> Option<egui::Rect> {
+    let half = match mark {
+        // A square of this size is not told from a disc.
+        Mark::Dot if r <= 1.2 => vec2(r, r),
+        Mark::Square => vec2(r, r),
+        Mark::Level => vec2(r, 0.5),
+        _ => return None,
+    };
+    Some(egui::Rect::from_min_max(p - half, p + half))
 }
 
 /// Adds one mark.
 pub fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape>) {
-    let square = egui::Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
     let thin = Stroke::new(1.0, color);
+    if let Some(rect) = square(p, mark, r) {
+        shapes.push(Shape::rect_filled(rect, 0.0, color));
+        return;
+    }
     match mark {
-        // A square of this size is not told from a disc and costs two triangles.
-        Mark::Dot if r <= 1.2 => shapes.push(Shape::rect_filled(square, 0.0, color)),
-        Mark::Dot => shapes.push(Shape::circle_filled(p, r, color)),
-        Mark::Square => shapes.push(Shape::rect_filled(square, 0.0, color)),
+        Mark::Dot | Mark::Square | Mark::Level => shapes.push(Shape::circle_filled(p, r, color)),
         Mark::OpenSquare => {
-            shapes.push(Shape::rect_stroke(square, 0.0, thin, egui::StrokeKind::Middle))
-        }
-        Mark::Level => {
-            let half = vec2(r, 0.5);
-            shapes.push(Shape::rect_filled(
-                egui::Rect::from_min_max(p - half, p + half),
-                0.0,
-                color,
-            ));
+            let square = egui::Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
+            shapes.push(Shape::rect_stroke(square, 0.0, thin, egui::StrokeKind::Middle));
         }
         Mark::Triangle => shapes.push(Shape::convex_polygon(
             vec![p + vec2(0.0, -r), p + vec2(r, 0.8 * r), p + vec2(-r, 0.8 * r)],
@@ -211,5 +278,35 @@ fn hatch(rect: egui::Rect, every: f32, color: Color32, shapes: &mut Vec<Shape>) 
         let a = pos2(x0, rect.top() + start);
         shapes.push(Shape::line_segment([a, a + vec2(rise, -rise)], stroke));
         offset += every;
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn dashes_follow_the_line_round_its_bends() {
+        // 10 along, 10 down; 6 on, 3 off: drawn 0–6, 9–15 (round the bend at 10), 18–20.
+        let line = [pos2(0.0, 0.0), pos2(10.0, 0.0), pos2(10.0, 10.0)];
+        let drawn = dashes(&line, Dash(6.0, 3.0));
+        assert_eq!(
+            drawn,
+            [
+                vec![pos2(0.0, 0.0), pos2(6.0, 0.0)],
+                vec![pos2(9.0, 0.0), pos2(10.0, 0.0), pos2(10.0, 5.0)],
+                vec![pos2(10.0, 8.0), pos2(10.0, 10.0)],
+            ]
+        );
+    }
+
+    #[test]
+    fn thinning_keeps_both_ends_and_every_visible_step() {
+        let fine: Vec<Pos2> = (0..=100).map(|i| pos2(i as f32 * 0.1, 0.0)).collect();
+        let kept = thinned(&fine);
+        assert_eq!((kept[0], kept[kept.len() - 1]), (fine[0], fine[100]));
+        assert!(kept.len() <= 11, "{}", kept.len());
+        let spike = [pos2(0.0, 0.0), pos2(0.2, 30.0), pos2(0.4, 0.0)];
+        assert_eq!(thinned(&spike), spike);
     }
 }
