@@ -18,7 +18,7 @@ use crate::document::Document;
 use crate::opening::{self, Reading};
 use crate::preferences::Preferences;
 use crate::theme::{self, Tokens};
-use crate::view_state::ViewState;
+use crate::view_state::{Dialog, View, ViewState};
 use crate::{panels, views};
 
 static NO_FACTS: LazyLock<FactsFile> = LazyLock::new(FactsFile::default);
@@ -117,6 +117,10 @@ impl App {
     /// Files that were dropped or picked.
     fn arrivals(&mut self, ui: &Ui) -> Outbox {
         let mut out = Outbox::new();
+        if ui.input(|i| i.viewport().close_requested()) && self.document.unsaved_work() {
+            ui.ctx().send_viewport_cmd(egui::ViewportCommand::CancelClose);
+            out.push(Command::Show(Dialog::Unsaved(Box::new(Command::Quit))));
+        }
         if let Some(file) = ui.input(|i| i.raw.dropped_files.first().cloned()) {
             out.push(Command::OpenPath(file.path().to_owned()));
         }
@@ -241,6 +245,11 @@ fn paint(
     }
     panels::view_row::show(ui, cx, out, parts.view_row);
     panels::value_strip::show(ui, cx, parts.strip);
+    if cx.view.view == View::Findings {
+        // The sheet would say the same a second time.
+        let all = Rect::from_min_max(parts.view.min, parts.sheet.max);
+        return views::show(ui, cx, out, all);
+    }
     let geometry = views::show(ui, cx, out, parts.view);
     panels::findings::show(ui, cx, out, parts.sheet);
     if cx.view.wide_findings {

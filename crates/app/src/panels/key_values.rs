@@ -37,7 +37,12 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, rect: Rect) -> f32 {
         if i > 0 {
             ui.painter().hline(rect.x_range(), y, Stroke::new(1.0, cx.tokens.grid));
         }
-        let shown = one(cx, id, at);
+        let mut shown = one(cx, id, at);
+        if id == "o2-pulse-course" {
+            // The word has no interval; that of the late slope stands for it.
+            let slope = shown::primary(cx.results, "o2-pulse-late-slope", At::Ramp);
+            shown.recording = slope.and_then(|s| s.recording);
+        }
         y = if cx.grid.narrow {
             large_narrow(ui, cx, rect, y, name, &shown)
         } else {

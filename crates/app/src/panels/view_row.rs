@@ -94,6 +94,12 @@ fn more(
     let words = egui::RichText::new(label).size(size::STATEMENT).color(cx.tokens.ink2);
     let button = egui::Button::new(words).frame(false).wrap_mode(egui::TextWrapMode::Extend);
     egui::containers::menu::MenuButton::from_button(button).ui(ui, |ui| {
+        if cx.grid.narrow {
+            averaging(ui, cx, out);
+            check(ui, out, Command::ToggleOverlay, cx.settings.overlay_shown);
+            check(ui, out, Command::ToggleRaw, cx.view.raw);
+            ui.separator();
+        }
         for view in rest {
             if ui.button(view.name()).on_hover_text(view.question()).clicked() {
                 out.push(Command::Go(*view));

@@ -11,7 +11,7 @@ use crate::widgets::text::{self, Key, Run};
 
 /// Draws the view.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
-    let half = (rect.width() * 0.55).floor();
+    let half = (rect.width() * 0.5).floor();
     let left = Rect::from_min_size(rect.min, egui::vec2(half, rect.height()));
     let right = Rect::from_min_max(pos2(rect.left() + half + 16.0, rect.top()), rect.max);
     let table = &mut ui.new_child(UiBuilder::new().max_rect(left).id_salt("key table"));

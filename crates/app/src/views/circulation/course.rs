@@ -30,7 +30,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Geom
     let box_height = if cx.grid.narrow { 52.0 } else { 78.0 };
     let box_top = rect.top() + 24.0;
     let head = Rect::from_min_max(pos2(left, box_top), pos2(rect.right(), box_top + box_height));
-    super::course_box::show(ui, cx, head);
+    super::course_box::show(ui, cx, out, head);
     let frame = Rect::from_min_max(
         pos2(left, head.bottom() + 24.0),
         pos2(rect.right() - if cx.grid.narrow { 8.0 } else { 16.0 }, rect.bottom() - 20.0),

@@ -3,9 +3,12 @@
 use analysis::results::At;
 use egui::{Align, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
 
+use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::shown;
 use crate::theme::size;
+use crate::view_state::Dialog;
+use crate::widgets::button;
 use crate::widgets::text::{self, Key, Run};
 
 /// The course in a line.
@@ -22,9 +25,9 @@ pub fn headline(cx: &Context<'_>) -> String {
 }
 
 /// Draws the box and the lines beside it.
-pub fn show(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
+pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let t = cx.tokens;
-    let wide = if cx.grid.narrow { 330.0 } else { 388.0 };
+    let wide = if cx.grid.narrow { 352.0 } else { 388.0 };
     let frame = Rect::from_min_size(rect.min, vec2(wide, rect.height()));
     let edge = Stroke::new(1.5, t.ink);
     ui.painter().rect(frame, 2.0, t.panel, edge, StrokeKind::Inside);
@@ -52,8 +55,11 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
             number_line(ui, cx, second, "late slope ", "o2-pulse-late-slope", "  this recording")
         }
     }
-    if !cx.grid.narrow {
-        beside(ui, cx, pos2(frame.right() + 18.0, rect.top()));
+    let at = pos2(frame.right() + 18.0, rect.top());
+    match why_withheld(cx) {
+        Some(why) => withheld(ui, cx, out, at, rect.right() - at.x, &why),
+        None if !cx.grid.narrow => beside(ui, cx, at),
+        None => {}
     }
 }
 
@@ -95,6 +101,25 @@ fn number_line(ui: &mut Ui, cx: &Context<'_>, at: egui::Pos2, lead: &str, id: &s
     let value = format!("{} {}{interval}", s.value, s.unit);
     let key = Key { id: &s.key, name: lead.trim(), value: &value };
     text::number(ui, at, Align::Min, &runs, &key);
+}
+
+/// Why there is no course, what follows, and what to do.
+fn withheld(
+    ui: &mut Ui,
+    cx: &Context<'_>,
+    out: &mut Outbox,
+    at: egui::Pos2,
+    width: f32,
+    why: &str,
+) {
+    let t = cx.tokens;
+    let block = text::block(ui, at, width, why, size::BODY, t.ink);
+    let then = "Magnitude is shown; a course needs sinus rhythm and a ramp of six minutes or more.";
+    let below = pos2(at.x, block.rect.bottom() + 2.0);
+    let block = text::block(ui, below, width, then, size::BODY, t.ink2);
+    let command = Command::Show(Dialog::Facts);
+    let place = Rect::from_min_size(pos2(at.x, block.rect.bottom() + 4.0), vec2(110.0, 22.0));
+    button::at(ui, cx, out, place, &command, "State facts…  P");
 }
 
 /// The difference from the own early line and its parts, and what could have been seen.

@@ -252,7 +252,13 @@ fn bound(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) {
     let ends = [pos2(frame.left(), at.y), at];
     ui.painter().extend(egui::Shape::dashed_line(&ends, ink, 1.5, 3.0));
     ui.painter().circle(at, 4.5, cx.tokens.plot, egui::Stroke::new(1.5, cx.tokens.ink));
-    let words = format!("forward SV at peak probably not below {:.0}\u{a0}mL", bound.stroke_volume);
+    let long = format!("forward SV at peak probably not below {:.0}\u{a0}mL", bound.stroke_volume);
+    let run = [Run::new(long.clone(), size::BODY, cx.tokens.ink)];
+    let words = if text::width(ui, &run) + 12.0 < at.x - frame.left() {
+        long
+    } else {
+        format!("SV not below {:.0}\u{a0}mL", bound.stroke_volume)
+    };
     let place = pos2(frame.left() + 8.0, at.y - 6.0);
     text::plain(ui, place, Align::Min, words, size::BODY, cx.tokens.ink);
 }

@@ -90,7 +90,8 @@ pub fn on_hr(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
         Run::new("V̇O₂ on HR", size::SECTION, t.ink),
         Run::new("   L/min against /min", size::BODY, t.ink2),
     ];
-    text::line(ui, pos2(frame.left(), rect.top() + 14.0), Align::Min, &title);
+    let shown = if cx.grid.narrow { &title[..1] } else { &title[..] };
+    text::line(ui, pos2(frame.left(), rect.top() + 14.0), Align::Min, shown);
     let hr = |time: f64| values::raw_at(cx, Q::Hr, time);
     let line = path(cx, hr, Q::Vo2);
     let (x, y) = (extent(&line, 0), extent(&line, 1));
@@ -152,8 +153,10 @@ fn slopes_table(ui: &mut Ui, cx: &Context<'_>, frame: Rect) {
     };
     let late = cx.results.course.as_ref().and_then(|c| c.late).map(|l| l.slope());
     let number = |v: f64, d: usize| format!("{v:.d$}").replace('-', "−");
+    let short = frame.width() < 320.0;
+    let first = if short { "slope ÷ pulse" } else { "local slope ÷ O₂ pulse (1 = level)" };
     let rows = [
-        ("local slope ÷ O₂ pulse (1 = level)", number(n.rho_early, 2), number(n.rho_late, 2)),
+        (first, number(n.rho_early, 2), number(n.rho_late, 2)),
         ("slope, mL/beat", number(n.asymptote.value, 1), late.map_or("–".into(), |s| number(s, 1))),
         ("late ÷ early slope", String::new(), number(n.slope_ratio.value, 2)),
     ];
@@ -249,6 +252,9 @@ fn rates(ui: &mut Ui, cx: &Context<'_>, frame: Rect, q: Q) {
         let minutes = (l.to_s - l.from_s) / 60.0;
         (b > a).then(|| per_min * minutes / (b - a))
     };
+    if course.early.is_none() && course.late.is_none() {
+        return;
+    }
     let unit: &[&str] = if q == Q::Hr { &["/min", "per 10 W"] } else { &["mL/min", "per W"] };
     let x = frame.right() + 10.0;
     let mut y = frame.top() + 16.0;

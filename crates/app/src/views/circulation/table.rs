@@ -60,6 +60,9 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
 
 fn columns(frame: Rect) -> [f32; 3] {
     let w = frame.width();
+    if w < 400.0 {
+        return [frame.left() + w * 0.44, frame.left() + w * 0.71, frame.right() - 8.0];
+    }
     [frame.left() + w * 0.55, frame.left() + w * 0.785, frame.right() - 10.0]
 }
 
@@ -163,8 +166,16 @@ fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f
         (None, Some(why)) => crate::words::note(why, cx.results),
         (None, None) => String::new(),
     };
-    if !why.is_empty() && y + 30.0 < rect.bottom() {
-        text::block(ui, pos2(rect.left(), y), rect.width(), &why, size::BODY, t.ink2);
+    let room = rect.bottom() - 30.0 - y;
+    let fits =
+        |ui: &Ui, words: &str| text::block_height(ui, rect.width(), words, size::BODY) <= room;
+    let short = why.split_inclusive(". ").next().unwrap_or_default().trim().to_owned();
+    // Without room the sentence stands alone; its inputs are a press away.
+    if let Some(words) = [&why, &short].into_iter().find(|w| !w.is_empty() && fits(ui, w)) {
+        let at = pos2(rect.left(), y);
+        let block = text::block(ui, at, rect.width(), words, size::BODY, t.ink2);
+        y = block.rect.bottom();
+        block.on_hover_text(why.clone());
     }
     let command = Command::Show(Dialog::Inputs);
     let wide = button::width(ui, &command);
