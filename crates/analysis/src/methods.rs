@@ -74,6 +74,20 @@ methods! {
     "jones-#" "Dead space over tidal volume with an arterial tension estimated from end-tidal carbon dioxide and tidal volume; shown, never graded." "Jones, Robertson and Kane, J Appl Physiol 1979";
     "highest-sample" "Highest sample noted." PRACTICE;
     "last-under-load-less-rest" "Last manoeuvre under load less the last at rest." PRACTICE;
+    "every-set-in-range" "Against the limits of every set in whose range the person lies; low only if low by all of them." PRACTICE;
+    "chosen-set" "By the predicted set chosen for this page." PRACTICE;
+    "#-and-#-percent" "Share of predicted peak oxygen uptake: from 40 % within limits, below 33 % low, between them borderline." "40 %: Hansen et al. 1984; 33 %: CanCOLD study";
+    "percent-of-predicted-#-#-#" "Mild below 85 %, moderate below 70 %, severe below 50 % of predicted, only where the value is low by every set in range." PRACTICE;
+    "hansen-predicted-mass" "Divided by the mass predicted from height (men 0.79 H − 60.7, women 0.65 H − 42.8 kg)." "Hansen, Sue and Wasserman 1984";
+    "weber-janicki-#" "Class of peak oxygen uptake per kg: A above 20, B 16 to 20, C 10 to below 16, D below 10 mL/kg/min." "Weber, Janicki et al., Circulation 1982";
+    "arena-#" "Class of the ventilatory slope over all increments: I below 30, II below 36, III below 45, IV from 45." "Arena et al., Circulation 2007";
+    "cole-#" "Fall of heart rate in the first minute: at most 12, or above." "Cole et al., N Engl J Med 1999";
+    "esc-ers-#" "Stratum of peak oxygen uptake (15 and 11 mL/kg/min, 65 and 35 % of predicted) or of the ventilatory slope (36 and 45)." "ESC/ERS guidelines 2015";
+    "lung-resection" "Band of peak oxygen uptake: 20 and 10 mL/kg/min, 75 and 35 % of predicted." "ERS/ESTS guidelines, as in PMC4283874";
+    "older-three-tier" "Band at the first threshold: oxygen uptake 11 and 8 mL/kg/min, ventilatory equivalent for carbon dioxide 34." "after Older 1999; POETTS, Levett et al., Br J Anaesth 2018";
+    "west-#" "Cut-offs of a multi-centre colorectal cohort: threshold 11.1 and peak 18.2 mL/kg/min, ventilatory equivalent at the threshold 30.9." "West et al., Br J Surg 2016";
+    "ishlt-#" "Peak oxygen uptake of at most 14 mL/kg/min, without a beta-blocker." "ISHLT criteria 2016";
+    "ishlt-#-beta-blocker" "Peak oxygen uptake of at most 12 mL/kg/min, on a beta-blocker." "ISHLT criteria 2016";
 }
 
 /// The method with this code, numbers in it standing for themselves.

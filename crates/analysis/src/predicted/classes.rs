@@ -40,8 +40,7 @@ fn outcome(stage: &Stage<'_>, class: &Class) -> Outcome {
     let band = bands::band(class.bands, value);
     let mut outcome = Outcome::reading(class.id, class.at, class.method, band.word);
     outcome.kind = Kind::Class;
-    // Both intervals of the deciding value, in its unit.
-    outcome.unit = deciding.unit;
+    // Both intervals of the deciding value; its unit stands with it in the doubt below.
     outcome.recording = deciding.recording;
     outcome.repeat = deciding.repeat;
     outcome.basis = deciding.basis.clone();
