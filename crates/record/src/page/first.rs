@@ -258,8 +258,8 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     h.close("figcaption");
     match charts::o2_pulse(recording, &m.results) {
         Some(chart) => {
-            let frame = Frame { left: 26.0, top: 4.0, width: 388.0, height: 128.0, x_labels: true };
-            h.raw(&svg::drawing(420.0, 150.0, &t("page-fig-pulse"), &[(&chart, frame)]));
+            let frame = Frame { left: 26.0, top: 4.0, width: 388.0, height: 116.0, x_labels: true };
+            h.raw(&svg::drawing(420.0, 138.0, &t("page-fig-pulse"), &[(&chart, frame)]));
         }
         None => h.element("p", "quiet", &t("page-no-pulse")),
     }
@@ -271,17 +271,17 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     let mut list = Vec::new();
     let both = hr.is_some() && vo2.is_some();
     if let Some(hr) = &hr {
-        let height = if both { 58.0 } else { 128.0 };
+        let height = if both { 52.0 } else { 116.0 };
         list.push((hr, Frame { left: 28.0, top: 4.0, width: 236.0, height, x_labels: !both }));
     }
     if let Some(vo2) = &vo2 {
-        let (top, height) = if both { (74.0, 58.0) } else { (4.0, 128.0) };
+        let (top, height) = if both { (68.0, 52.0) } else { (4.0, 116.0) };
         list.push((vo2, Frame { left: 28.0, top, width: 236.0, height, x_labels: true }));
     }
     if list.is_empty() {
         h.element("p", "quiet", &t("page-no-work"));
     } else {
-        h.raw(&svg::drawing(270.0, 150.0, &t("page-fig-work"), &list));
+        h.raw(&svg::drawing(270.0, 138.0, &t("page-fig-work"), &list));
     }
     h.close("figure");
     h.element("p", "quiet key", &t("page-fig-key-plain"));

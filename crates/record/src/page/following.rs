@@ -2,7 +2,7 @@
 
 use analysis::decisions::{Mark, Phase};
 use analysis::quantity::{Quantity, TABLE};
-use analysis::results::At;
+use analysis::results::{At, Outcome};
 
 use super::first::{heading, number, square};
 use super::html::Html;
@@ -116,7 +116,8 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
         h.raw("</th>");
     }
     h.raw("</tr></thead><tbody>\n");
-    for outcome in m.primaries().filter(|o| Quantity::from_code(&o.id).is_none()) {
+    let given = |o: &&Outcome| o.value.is_some() && Quantity::from_code(&o.id).is_none();
+    for outcome in m.primaries().filter(given) {
         let shown = values::shown(outcome);
         h.raw("<tr><th scope=\"row\">");
         h.text(&shown.label);
@@ -132,12 +133,6 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
         h.raw("<td class=\"number\">");
         number(h, &shown);
         h.raw("</td>");
-        if let Some(reason) = &outcome.reason {
-            h.raw("<td colspan=\"3\" class=\"reason\">");
-            h.text(&text(reason, &m.results));
-            h.raw("</td></tr>\n");
-            continue;
-        }
         for interval in [&shown.recording, &shown.repeat] {
             h.raw("<td class=\"number\">");
             if let Some(i) = interval {
@@ -150,6 +145,7 @@ fn all_results(h: &mut Html, m: &Model<'_>) {
         h.raw("</td></tr>\n");
     }
     h.raw("</tbody></table>\n");
+    withheld(h, m);
     doubts(h, m);
     h.close("section");
 }
@@ -190,7 +186,7 @@ fn phases(h: &mut Html, m: &Model<'_>) {
 }
 
 /// Method, window and breaths.
-fn basis(outcome: &analysis::results::Outcome, m: &Model<'_>) -> String {
+fn basis(outcome: &Outcome, m: &Model<'_>) -> String {
     let settings = &m.session.judgement().settings;
     let mut out = set_names(&outcome.method, settings);
     if let Some((from, to)) = outcome.basis.window_s {
@@ -202,42 +198,58 @@ fn basis(outcome: &analysis::results::Outcome, m: &Model<'_>) -> String {
     out
 }
 
-fn doubts(h: &mut Html, m: &Model<'_>) {
-    let mut lines: Vec<(String, Vec<String>)> = Vec::new();
-    for outcome in m.primaries() {
-        for note in outcome.doubts.iter().filter(|n| n.code != "no-published-repeatability") {
-            let words = text(note, &m.results);
-            let label = values::shown(outcome).label;
-            match lines.iter_mut().find(|(w, _)| *w == words) {
-                Some((_, labels)) => labels.push(label),
-                None => lines.push((words, vec![label])),
-            }
-        }
+/// Labels gathered under the sentence that holds for all of them.
+type Gathered = Vec<(String, Vec<String>)>;
+
+fn gather(list: &mut Gathered, words: String, label: String) {
+    match list.iter_mut().find(|(w, _)| *w == words) {
+        Some((_, labels)) => labels.push(label),
+        None => list.push((words, vec![label])),
     }
-    let whole: Vec<String> = m.results.doubts.iter().map(|n| text(n, &m.results)).collect();
-    if lines.is_empty() && whole.is_empty() {
+}
+
+fn gathered(h: &mut Html, title: &str, list: &Gathered) {
+    if list.is_empty() {
         return;
     }
-    h.element("h3", "", &t("page-doubts"));
+    h.element("h3", "", &t(title));
     h.open("ul", "doubts");
-    for words in whole {
-        h.element("li", "", &words);
-    }
-    for (words, labels) in lines {
+    for (words, labels) in list {
         h.open("li", "");
-        h.text(&words);
+        h.text(words);
         h.raw(" <span class=\"quiet\">");
-        h.text(&labels.join(", "));
+        h.text(&labels.join(" · "));
         h.raw("</span>");
         h.close("li");
     }
     h.close("ul");
 }
 
+fn withheld(h: &mut Html, m: &Model<'_>) {
+    let mut list = Gathered::new();
+    for outcome in m.primaries() {
+        if let Some(reason) = &outcome.reason {
+            gather(&mut list, text(reason, &m.results), values::shown(outcome).label);
+        }
+    }
+    gathered(h, "page-withheld", &list);
+}
+
+fn doubts(h: &mut Html, m: &Model<'_>) {
+    let mut list: Gathered =
+        m.results.doubts.iter().map(|n| (text(n, &m.results), Vec::new())).collect();
+    for outcome in m.primaries() {
+        for note in outcome.doubts.iter().filter(|n| n.code != "no-published-repeatability") {
+            gather(&mut list, text(note, &m.results), values::shown(outcome).label);
+        }
+    }
+    gathered(h, "page-doubts", &list);
+}
+
 fn methods(h: &mut Html, m: &Model<'_>) {
     h.open("section", "");
     heading(h, "page-methods", "");
-    h.open("dl", "methods");
+    h.open("ul", "runin");
     let mut seen: Vec<&str> = Vec::new();
     for outcome in m.primaries().filter(|o| o.value.is_some()) {
         let code = outcome.method.as_ref();
@@ -245,27 +257,31 @@ fn methods(h: &mut Html, m: &Model<'_>) {
             continue;
         }
         seen.push(code);
-        if let Some(how) = analysis::methods::describe(code) {
-            h.element("dt", "", code);
-            h.open("dd", "");
-            h.text(&how);
-            if let Some(method) = analysis::methods::find(code) {
-                h.raw(" <span class=\"quiet\">(");
-                h.text(method.source);
-                h.raw(")</span>");
-            }
-            h.close("dd");
-        }
+        let Some(how) = analysis::methods::describe(code) else { continue };
+        let source = analysis::methods::find(code).map_or("", |method| method.source);
+        entry(h, code, &how, source);
     }
-    let settings = &m.session.judgement().settings;
-    for set in settings.sets.iter().filter(|s| {
-        m.primaries().any(|o| o.value.is_some() && o.method.split('/').any(|id| id == s.id))
-    }) {
-        h.element("dt", "", &set.name);
-        h.element("dd", "", &format!("{} {}", set.population, set.citation));
+    let used = |id: &str| {
+        m.primaries().any(|o| o.value.is_some() && o.method.split('/').any(|part| part == id))
+    };
+    for set in m.session.judgement().settings.sets.iter().filter(|s| used(&s.id)) {
+        entry(h, &set.name, &set.population, &set.citation);
     }
-    h.close("dl");
+    h.close("ul");
     h.close("section");
+}
+
+/// A method: its code, how, and its source.
+fn entry(h: &mut Html, name: &str, how: &str, source: &str) {
+    h.open("li", "");
+    h.element("strong", "", &format!("{name}:"));
+    h.text(how);
+    if !source.is_empty() {
+        h.raw(" <span class=\"quiet\">");
+        h.text(source);
+        h.raw("</span>");
+    }
+    h.close("li");
 }
 
 fn source(h: &mut Html, m: &Model<'_>) {

@@ -10,11 +10,21 @@ use crate::presentation::{values, wording};
 use crate::session::findings::{FindingShown, Status};
 use crate::session::{ENGINE, Session, frozen};
 
-/// Lines that the conclusion may take on page 1; the rest stands on the next page.
-const CONCLUSION_LINES: usize = 10;
+/// Lines that question, person, test, safety and conclusion may take together on page 1; what does
+/// not fit stands on the next page.
+const LINES: usize = 17;
 
 /// Letters in one line of the conclusion.
-const LINE: usize = 112;
+const LINE: usize = 116;
+
+/// Letters in one line beside a label.
+const BESIDE: usize = 104;
+
+/// Letters of a comparison that fit in its column.
+const AGAINST: usize = 34;
+
+/// Letters of a reason that fit in one line of the key table.
+const REASON: usize = 62;
 
 /// Drafts that give way to all others on page 1: they list what follows from the rest.
 const GIVE_WAY: &[&str] = &["circulation-explanations", "fick-forward-bound"];
@@ -52,16 +62,26 @@ impl<'a> Model<'a> {
             .into_iter()
             .filter(|f| f.status != Status::Declined)
             .collect();
-        let (conclusion, further) = conclusion(&findings);
+        let question = facts_lines::stated(facts.test.question.as_deref());
+        let person = facts_lines::person(facts);
+        let test = facts_lines::test(facts, &results, session.recording());
+        let safety = facts_lines::safety(facts);
+        let rows = key_table::rows(&results, &session.judgement().settings);
+        let above = lines(&question, BESIDE)
+            + lines(&person.join("  ·  "), BESIDE)
+            + lines(&test.join("  ·  "), BESIDE)
+            + lines(&safety.join(" "), BESIDE)
+            + rows.iter().map(wrapped).sum::<usize>();
+        let (conclusion, further) = conclusion(&findings, LINES.saturating_sub(above));
         Self {
             session,
             now,
             identity: facts_lines::identity(facts),
-            question: facts_lines::stated(facts.test.question.as_deref()),
-            person: facts_lines::person(facts),
-            test: facts_lines::test(facts, &results, session.recording()),
-            safety: facts_lines::safety(facts),
-            rows: key_table::rows(&results, &session.judgement().settings),
+            question,
+            person,
+            test,
+            safety,
+            rows,
             findings,
             conclusion,
             further,
@@ -97,14 +117,28 @@ impl<'a> Model<'a> {
     }
 }
 
+/// Further lines that a row of the key table takes.
+fn wrapped(row: &Row) -> usize {
+    match &row.reason {
+        Some(reason) => lines(reason, REASON) - 1,
+        None if row.is_word => 0,
+        None => lines(&row.against, AGAINST) - 1,
+    }
+}
+
+/// Lines that `text` takes.
+fn lines(text: &str, letters: usize) -> usize {
+    text.chars().count().div_ceil(letters).max(1)
+}
+
 /// Statements of page 1: accepted ones first come in, then drafts, in the order of the sheet.
 /// Safety has its box, and what would separate the explanations its own line.
-fn conclusion(findings: &[FindingShown]) -> (Vec<usize>, usize) {
+fn conclusion(findings: &[FindingShown], room: usize) -> (Vec<usize>, usize) {
     let concerns = |f: &FindingShown| {
         !matches!(f.section, Section::Safety | Section::Separate) && f.id != "circulation-caveat"
     };
     let candidates: Vec<usize> = (0..findings.len()).filter(|i| concerns(&findings[*i])).collect();
-    let mut room = CONCLUSION_LINES;
+    let mut room = room;
     let mut taken = Vec::new();
     let gives_way = |f: &FindingShown| GIVE_WAY.contains(&f.id.as_str());
     let rank = |f: &FindingShown| match f.status {
@@ -114,7 +148,7 @@ fn conclusion(findings: &[FindingShown]) -> (Vec<usize>, usize) {
     };
     for wanted in 0..3 {
         for i in candidates.iter().copied().filter(|i| rank(&findings[*i]) == wanted) {
-            let lines = findings[i].text.chars().count().div_ceil(LINE).max(1);
+            let lines = lines(&findings[i].text, LINE);
             if lines <= room {
                 room -= lines;
                 taken.push(i);

@@ -90,7 +90,7 @@ pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
         described: wording::plain_text("page-fig-pulse"),
         name: String::new(),
         x: time_axis(from, to),
-        y: value_axis(&series, None),
+        y: with_headroom(value_axis(&series, None)),
         series,
         upright: ramp.map(|(_, end)| (end, wording::plain_text("page-load-end"))),
         stretch,
@@ -199,19 +199,22 @@ fn value_axis(series: &[Series], pad: Option<f64>) -> Axis {
     Axis { from, to, ticks: ticks(from, to, 4) }
 }
 
-/// Ticks at 1, 2, 2.5 or 5 times a power of ten, about `wanted` of them.
+/// The axis with room on top for the late window's bar.
+fn with_headroom(axis: Axis) -> Axis {
+    let to = axis.to + 0.12 * (axis.to - axis.from);
+    Axis { ticks: ticks(axis.from, to, 4), to, ..axis }
+}
+
+/// Ticks at 1, 2 or 5 times a power of ten, about `wanted` of them.
 fn ticks(from: f64, to: f64, wanted: usize) -> Vec<(f64, String)> {
     let raw = (to - from) / wanted as f64;
     if !(raw.is_finite() && raw > 0.0) {
         return Vec::new();
     }
     let power = 10_f64.powf(raw.log10().floor());
-    let step = [1.0, 2.0, 2.5, 5.0, 10.0]
-        .into_iter()
-        .map(|m| m * power)
-        .find(|s| *s >= raw)
-        .unwrap_or(raw);
-    let decimals = if step >= 1.0 && step.fract() == 0.0 { 0 } else { usize::from(step < 0.1) + 1 };
+    let step =
+        [1.0, 2.0, 5.0, 10.0].into_iter().map(|m| m * power).find(|s| *s >= raw).unwrap_or(raw);
+    let decimals = if step >= 1.0 { 0 } else { (-step.log10()).ceil() as usize };
     let first = (from / step).ceil() as i64;
     let last = (to / step + 1e-9).floor() as i64;
     (first..=last).map(|i| i as f64 * step).map(|v| (v, values::fixed(v, decimals))).collect()
@@ -239,6 +242,8 @@ mod tests {
         assert_eq!(labels(0.4, 2.6), ["1", "2"]);
         assert_eq!(labels(0.4, 1.6), ["0.5", "1.0", "1.5"]);
         assert_eq!(labels(0.0, 193.0), ["0", "50", "100", "150"]);
+        assert_eq!(labels(0.4, 0.62), ["0.4", "0.5", "0.6"]);
+        assert_eq!(labels(0.40, 0.55), ["0.40", "0.45", "0.50", "0.55"]);
         let axis = time_axis(302.0, 1032.0);
         let labels: Vec<&str> = axis.ticks.iter().map(|t| t.1.as_str()).collect();
         assert_eq!(labels, ["6:00", "8:00", "10:00", "12:00", "14:00", "16:00"]);

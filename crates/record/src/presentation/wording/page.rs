@@ -98,6 +98,7 @@ pub const TEXTS: &[Entry] = &[
     ("page-not-given", "not given"),
     ("page-col-method", "method, window, breaths"),
     ("page-doubts", "Doubts"),
+    ("page-withheld", "Withheld, and why"),
     ("page-methods", "Methods"),
     ("page-predicted", "Predicted sets"),
     ("page-source", "Source and history"),
