@@ -239,7 +239,7 @@ fn doubts(h: &mut Html, m: &Model<'_>) {
     let mut list: Gathered =
         m.results.doubts.iter().map(|n| (text(n, &m.results), Vec::new())).collect();
     for outcome in m.primaries() {
-        for note in outcome.doubts.iter().filter(|n| n.code != "no-published-repeatability") {
+        for note in outcome.doubts.iter().filter(|n| shown_here(n.code)) {
             gather(&mut list, text(note, &m.results), values::shown(outcome).label);
         }
     }
@@ -364,4 +364,10 @@ fn history(h: &mut Html, m: &Model<'_>) {
     }
     h.raw("</ol>\n");
     h.close("section");
+}
+
+/// Whether a doubt stands in the list: "not published" stands in the tables, and the inputs of the
+/// stroke-volume bound stand under its statement.
+fn shown_here(code: &str) -> bool {
+    code != "no-published-repeatability" && !code.starts_with("bound-")
 }
