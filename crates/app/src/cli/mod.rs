@@ -84,7 +84,7 @@ fn carry_out(args: &Args) -> Result<Exit, Failure> {
         }
         Verb::Derive => sessions::derive(args),
         Verb::Edit => sessions::edit(args),
-        Verb::Page => Err(Failure::not_yet("page")),
+        Verb::Page => sessions::page(args),
         Verb::Import => sessions::import(args),
         Verb::Sign => Err(Failure::not_yet("sign")),
         Verb::Verify => Err(Failure::not_yet("verify")),

@@ -65,6 +65,20 @@ pub fn edit(args: &Args) -> Result<Exit, Failure> {
     save(&session, out, args)
 }
 
+/// `rampcrest page`.
+pub fn page(args: &Args) -> Result<Exit, Failure> {
+    let out = out(args)?;
+    let session = open::session(&args.files[0], args)?;
+    files::write(out, rendered(&session, args).as_bytes())?;
+    Ok(open::exit(Some(&session)))
+}
+
+/// The findings page.
+#[must_use]
+pub fn rendered(session: &Session, args: &Args) -> String {
+    record::page::render(session, session.results(), &now(args))
+}
+
 /// `rampcrest import`.
 pub fn import(args: &Args) -> Result<Exit, Failure> {
     let out = out(args)?;

@@ -41,6 +41,7 @@ fn instead(args: &Args, error: &StartError) -> Result<Exit, Failure> {
     if let Some(session) = app.document.session() {
         files::write(&folder.join("results.json"), sessions::results(session).as_bytes())?;
         files::write(&folder.join("session.json"), &session.write())?;
+        files::write(&folder.join("page.html"), sessions::rendered(session, args).as_bytes())?;
     }
     files::print(&format!(
         "{error} The demonstration test was derived into {} instead.",

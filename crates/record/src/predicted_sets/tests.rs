@@ -1,3 +1,5 @@
+//! What the bundled sets and a lab's own set must and must not do.
+
 use super::bundled::FILES;
 use super::{bundled, parse};
 
