@@ -92,7 +92,7 @@ impl<'a> Context<'a> {
     /// The time cursor, s: where the reader set it, else three quarters up the ramp.
     #[must_use]
     pub fn cursor(&self) -> f64 {
-        self.view.cursor_s.unwrap_or_else(|| match self.results.phases.ramp() {
+        self.view.cursor_s.unwrap_or_else(|| match self.committed.phases.ramp() {
             Some((from, to)) => from + 0.75 * (to - from),
             None => {
                 let (from, to) = self.whole();
