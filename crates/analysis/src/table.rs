@@ -151,6 +151,13 @@ fn cell(
 /// A single reading nearest to the window, never interpolated.
 fn reading(stage: &Stage<'_>, quantity: Quantity, at: At, window: (f64, f64)) -> Outcome {
     let (id, unit) = (quantity.code(), quantity.unit());
+    // A cuff reading of a quiet phase stands for the whole of it, not for its last minute only.
+    let phase = match at {
+        At::Rest => Some(Phase::Rest),
+        At::WarmUp => Some(Phase::WarmUp),
+        _ => None,
+    };
+    let window = phase.and_then(|p| stage.results.phases.window(p)).unwrap_or(window);
     let away = |t: f64| (window.0 - t).max(t - window.1).max(0.0);
     let events = stage.facts.events.iter().filter_map(|e| Some((e.t_s, noted(e.kind, quantity)?)));
     let breaths = &stage.breaths;

@@ -49,8 +49,11 @@ pub const TEXTS: &[Entry] = &[
         "capacity-without-prediction",
         "Peak V̇O₂ {vo2}; no predicted set is in range for this person.",
     ),
-    ("capacity-within-limits", "Peak V̇O₂ {vo2}, within limits in all {sets} sets in range."),
-    ("capacity-below-limits", "Peak V̇O₂ {vo2}, below the lower limit in all {sets} sets in range."),
+    ("capacity-within-limits", "Peak V̇O₂ {vo2}, within limits in every set in range ({sets})."),
+    (
+        "capacity-below-limits",
+        "Peak V̇O₂ {vo2}, below the lower limit in every set in range ({sets}).",
+    ),
     (
         "capacity-below-in-some",
         "Peak V̇O₂ {vo2}, below the lower limit in {low} of {sets} sets in range, within limits in the others.",
@@ -89,8 +92,11 @@ pub const TEXTS: &[Entry] = &[
         "pulse-not-compared",
         "O₂ pulse at peak {value}; no predicted set is in range for this person.",
     ),
-    ("pulse-within-limits", "O₂ pulse at peak {value}, within limits in all {sets} sets in range."),
-    ("pulse-low-in-all", "O₂ pulse at peak {value}, low in all {sets} sets in range."),
+    (
+        "pulse-within-limits",
+        "O₂ pulse at peak {value}, within limits in every set in range ({sets}).",
+    ),
+    ("pulse-low-in-all", "O₂ pulse at peak {value}, low in every set in range ({sets})."),
     (
         "pulse-low-in-some",
         "O₂ pulse at peak {value}, low in {low} of {sets} sets in range, within limits in the others.",
