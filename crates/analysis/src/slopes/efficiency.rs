@@ -10,7 +10,7 @@ use crate::stage::Stage;
 use crate::unit::Unit;
 
 /// Calibrated factor.
-const F: f64 = 1.20;
+const F: f64 = 1.28;
 
 /// Derives OUES over all, the first three quarters and the first half of the increments.
 pub(super) fn derive(stage: &mut Stage<'_>) {

@@ -12,7 +12,7 @@ const NEEDED: [Quantity; 2] = [Quantity::Ve, Quantity::Vco2];
 /// Calibrated factors: raised from 1.33 and 1.20 on simulated tests of seeds below 10,000, where the
 /// noise of V̇E shared less with V̇CO₂ than in the first calibration (`assets/references/coverage.md`).
 const F_TO_VT2: f64 = 1.50;
-const F_FULL: f64 = 1.38;
+const F_FULL: f64 = 1.47;
 /// Window of the nadir, s.
 const NADIR_S: f64 = 60.0;
 /// Explained variance below which a slope carries a doubt (common practice).
