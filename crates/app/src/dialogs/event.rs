@@ -9,8 +9,11 @@ use crate::chart::ticks::clock;
 use crate::command::{Command, Outbox};
 use crate::context::Context;
 
-/// Kinds offered, with the numbers each may hold: code, name, fields with label and unit.
-const KINDS: &[(&str, &str, &[(&str, &str)])] = &[
+/// A kind: its code, its name, the numbers it may hold (field, label with unit).
+type Kind = (&'static str, &'static str, &'static [(&'static str, &'static str)]);
+
+/// Kinds offered.
+const KINDS: &[Kind] = &[
     ("bp", "Blood pressure", &[("sys_mmhg", "Systolic, mmHg"), ("dia_mmhg", "Diastolic, mmHg")]),
     ("spo2", "SpO₂", &[("spo2_pct", "SpO₂, %")]),
     ("borg", "Perceived exertion", &[("breathlessness", "Breathlessness"), ("legs", "Legs")]),
