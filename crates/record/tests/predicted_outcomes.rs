@@ -14,6 +14,7 @@ use analysis::quantity::Quantity;
 use analysis::recording::Recording;
 use analysis::results::{At, Kind, Outcome, Results};
 use analysis::settings::Settings;
+use proptest::prelude::*;
 use record::predicted_sets::default_settings;
 
 fn recording() -> Recording {
@@ -334,4 +335,60 @@ fn without_sets_nothing_is_predicted_and_nothing_breaks() {
     let settings = Settings { sets: Arc::new(Vec::new()), ..Settings::default() };
     let results = with(&man_45(), &settings);
     assert!(results.outcomes.iter().all(|o| !o.id.starts_with("predicted-")));
+}
+
+#[test]
+fn a_drug_or_rhythm_that_alters_the_rate_withholds_its_grading() {
+    let mut facts = man_45();
+    let index = |facts: &Facts| {
+        let results = with(facts, &default_settings());
+        let reading = results.primary("chronotropic-index-against-predicted", At::Peak);
+        reading.map(reason).unwrap_or("none derived")
+    };
+    assert_eq!(index(&facts), "none");
+    facts.test.rhythm = Some(Rhythm::AtrialFibrillation);
+    assert_eq!(index(&facts), "rate-prediction-does-not-hold");
+    facts.test.rhythm = Some(Rhythm::Sinus);
+    facts.test.rate_slowing_drug.taken = Some(true);
+    assert_eq!(index(&facts), "rate-prediction-does-not-hold");
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig::with_cases(48))]
+
+    /// No subject, however odd, breaks a derivation; nothing that is not a number gets out.
+    #[test]
+    fn any_subject_derives(
+        age in proptest::option::of(any::<f64>()),
+        height in proptest::option::of(any::<f64>()),
+        mass in proptest::option::of(any::<f64>()),
+        fev1 in proptest::option::of(any::<f64>()),
+        near in any::<bool>(),
+        mode in proptest::option::of(prop_oneof![Just(Mode::Cycle), Just(Mode::Treadmill)]),
+    ) {
+        let mut facts = man_45();
+        // Half of the subjects are odd, half only a little.
+        let fold = |x: Option<f64>, top: f64| match near {
+            true => x.map(|x| (x % top).abs()),
+            false => x,
+        };
+        facts.subject.age_years = fold(age, 110.0);
+        facts.subject.height_cm = fold(height, 230.0);
+        facts.subject.mass_kg = fold(mass, 250.0);
+        facts.subject.fev1_l = fold(fev1, 7.0);
+        facts.test.mode = mode;
+        facts.test.indication = Some(Indication::Preoperative);
+        let mut settings = default_settings();
+        settings.predicted.unconfirmed = true;
+        settings.predicted.overridden = settings.sets.iter().map(|s| s.id.clone()).collect();
+        let results = with(&facts, &settings);
+        for o in &results.outcomes {
+            prop_assert!(o.number().is_none_or(f64::is_finite), "{}", o.id);
+        }
+        if let Some(model) = &results.overlay.model {
+            for curves in [Some(&model.over_vo2), model.over_time.as_ref()].into_iter().flatten() {
+                prop_assert!(curves.x.iter().all(|x| x.is_finite()) && curves.x.len() < 5000);
+            }
+        }
+    }
 }

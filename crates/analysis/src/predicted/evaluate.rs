@@ -1,8 +1,8 @@
 //! One equation for one person: the value with its limits and doubts, or the reason why not.
 
 use super::sets::{
-    Beyond, CM_PER_IN, Code, Equation, Formula, Input, KG_PER_LB, Limits, Person, PredictedSet,
-    Predicts, Term, Z95,
+    Beyond, CM_PER_IN, Code, Direction, Equation, Formula, Input, KG_PER_LB, Limits, Person,
+    PredictedSet, Predicts, Term, Z95,
 };
 use super::validity::{self, InputFit};
 use crate::facts::{Mode, Sex};
@@ -79,14 +79,16 @@ pub fn evaluate(
     }
     let (low, high, see) = limits(arm.limits, printed);
     doubts.extend(equation.caveats.iter().map(|c| named(Note::new(c.code()))));
-    if low.is_none() && high.is_none() {
+    if low.is_none() && high.is_none() && predicts.measured_id().is_some() {
         doubts.push(named(Note::new("no-limit-published")));
     } else if arm.limits_by_convention {
         doubts.push(named(Note::new("limit-by-convention")));
     }
     let per_kg = person.mass_kg.filter(|_| predicts == Predicts::Vo2Peak).map(|m| value / m);
     let low_limit = low.and_then(to);
-    if low_limit.is_some_and(|low| low < UNRELIABLE * value) || per_kg.is_some_and(|v| v < 12.0) {
+    let graded_low = predicts.direction() == Direction::Low;
+    let wide = graded_low && low_limit.is_some_and(|low| low < UNRELIABLE * value);
+    if wide || per_kg.is_some_and(|v| v < 12.0) {
         doubts.push(named(Note::new("limit-unreliable")));
     }
     Ok(Prediction {

@@ -9,7 +9,7 @@ use super::sets::{Direction, Person, Predicts};
 use super::size;
 use crate::facts::Rhythm;
 use crate::note::Note;
-use crate::results::{At, Interval, Outcome, Text};
+use crate::results::{At, Interval, Kind, Outcome, Text};
 use crate::stage::Stage;
 use crate::unit::Unit;
 
@@ -60,6 +60,11 @@ pub(super) fn derive(stage: &mut Stage<'_>) {
     }
 }
 
+/// Whether rhythm or a drug alters the rate, so that its prediction does not hold.
+fn rate_altered(stage: &Stage<'_>) -> bool {
+    stage.facts.test.rhythm.is_some_and(|r| r != Rhythm::Sinus) || beta_blocked(stage)
+}
+
 /// Whether effort forbids to grade values at peak.
 pub(super) fn submaximal(stage: &Stage<'_>) -> bool {
     let effort = stage.results.primary("effort", At::Test).and_then(Outcome::word);
@@ -103,7 +108,15 @@ fn compare(stage: &Stage<'_>, ids: &Ids, person: &Person, out: &mut Vec<Outcome>
         let limits = limits_of(&list, quotient.as_ref(), predicts);
         let effort = ids.needs_effort && submaximal(stage);
         let mut reading = reading::of(id, at, value, predicts.direction(), &limits, effort);
+        let rate_holds = !rate_altered(stage);
+        if predicts == Predicts::ChronotropicIndex && !rate_holds {
+            let why = Note::new("rate-prediction-does-not-hold");
+            reading = Outcome::absent(id, at, reading.method, why).of_kind(Kind::Reading);
+        }
         if reading.word().is_some() {
+            if predicts == Predicts::O2Pulse && !rate_holds {
+                reading.doubts.push(Note::new("rate-altered-pulse"));
+            }
             reading.doubts.extend(size::doubts(person, predicts));
         }
         if reading.word() == Some("below-limit") && predicts == Predicts::Vo2Peak {
@@ -204,11 +217,13 @@ fn primary_once(out: &mut Vec<Outcome>, id: Option<&'static str>, at: At) {
 }
 
 fn doubted(stage: &Stage<'_>, predicts: Predicts, mut outcome: Outcome) -> Outcome {
-    if matches!(predicts, Predicts::HrPeak | Predicts::O2Pulse) {
-        let not_sinus = stage.facts.test.rhythm.is_some_and(|r| r != Rhythm::Sinus);
-        if not_sinus || beta_blocked(stage) {
-            outcome.doubts.push(Note::new("rate-prediction-does-not-hold"));
-        }
+    if rate_altered(stage) {
+        let code = match predicts {
+            Predicts::HrPeak => Some("rate-prediction-does-not-hold"),
+            Predicts::O2Pulse => Some("rate-altered-pulse"),
+            _ => None,
+        };
+        outcome.doubts.extend(code.map(Note::new));
     }
     if predicts == Predicts::Vo2Peak && outcome.number().is_some_and(|p| p > 120.0) {
         outcome.doubts.push(Note::new("consider-athletic-norms"));

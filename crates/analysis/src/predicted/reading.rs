@@ -104,7 +104,8 @@ pub(super) fn of(
         let count = Arg::Count(limits.len());
         outcome.doubts.push(Note::new("compared-with-sets").with("sets", count));
     }
-    for limit in limits.iter().filter(|l| unreliable(l.prediction, l.low)) {
+    let wide = |l: &&Limit| direction == Direction::Low && unreliable(l.prediction, l.low);
+    for limit in limits.iter().filter(wide) {
         let name = Arg::Name(limit.name.clone().into());
         outcome.doubts.push(Note::new("limit-unreliable").with("set", name));
     }

@@ -76,8 +76,13 @@ pub const TEXTS: &[Entry] = &[
     ),
     ("prediction-not-in-range", "The person lies outside the range of this set."),
     ("beyond-by-some-sets", "Beyond the limit by {beyond}; within limits by {within}."),
-    ("compared-with-sets", "Compared with the limits of {sets} sets."),
+    ("compared-with-sets", "Sets with a limit compared: {sets}."),
     ("rate-prediction-does-not-hold", "Not graded: rhythm or drug changes the rate."),
+    (
+        "rate-altered-pulse",
+        "Rhythm or drug alters the rate: the predicted O₂ pulse does not hold, and a normal value is \
+         not reassuring.",
+    ),
     ("consider-athletic-norms", "Above 120 % of predicted: consider athletic norms."),
     ("interval-crosses-limit", "The interval of a repeated test crosses a limit."),
     (
