@@ -11,6 +11,7 @@ use crate::tools::{rampcrest, run};
 struct Display {
     server: Child,
     name: String,
+    size: String,
 }
 
 impl Display {
@@ -25,7 +26,7 @@ impl Display {
         BufReader::new(server.stdout.take().expect("its output"))
             .read_line(&mut line)
             .expect("a display number");
-        Self { server, name: format!(":{}", line.trim()) }
+        Self { server, name: format!(":{}", line.trim()), size: size.to_owned() }
     }
 
     fn tool(&self, program: &str) -> Command {
@@ -83,6 +84,8 @@ impl Window {
             std::thread::sleep(Duration::from_millis(100));
         };
         run(display.tool("xdotool").args(["windowmove", &id, "0", "0", "windowfocus", &id]));
+        let (width, height) = display.size.split_once('x').expect("a size");
+        run(display.tool("xdotool").args(["windowsize", &id, width, height]));
         std::thread::sleep(Duration::from_secs(2));
         Self { program, id, _home: home }
     }
