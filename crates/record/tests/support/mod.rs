@@ -12,6 +12,7 @@ use record::session::Session;
 pub const NOW: &str = "2026-11-24T10:51:00+01:00";
 
 /// Every demo test.
+#[allow(dead_code, reason = "each test program uses a part of this module")]
 pub const CASES: [&str; 12] = [
     "avocet",
     "bittern",
