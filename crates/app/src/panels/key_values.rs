@@ -2,6 +2,8 @@
 
 use analysis::results::At;
 use egui::{Align, Rect, Stroke, Ui, pos2};
+use record::presentation::key_table::short_names;
+use record::presentation::wording;
 
 use crate::context::Context;
 use crate::shown::{self, Shown};
@@ -72,31 +74,41 @@ fn interval_columns(rect: Rect) -> (f32, f32) {
 
 /// What a key value is held against.
 fn against(cx: &Context<'_>, id: &str) -> String {
-    let number = |id: &str, at: At| cx.results.primary(id, at).and_then(|o| o.number());
-    match id {
+    let said = |id: &str, at: At| {
+        let shown = shown::primary(cx.results, id, at).filter(|s| s.reason.is_none())?;
+        Some(record::presentation::values::joined(&shown.value, &shown.unit))
+    };
+    let parts = match id {
         "vo2-peak" => {
-            let per_kg = shown::primary(cx.results, "vo2-peak-per-kg", At::Peak);
-            let per_kg = per_kg.filter(|s| s.reason.is_none());
-            per_kg.map_or(String::new(), |s| format!("{} {}", s.value, s.unit))
+            vec![said("vo2-peak-per-kg", At::Peak), of_predicted(cx, "vo2-peak-percent", At::Peak)]
         }
+        "o2-pulse-at-peak" => vec![of_predicted(cx, "o2-pulse-percent", At::Peak)],
+        "hr-peak" => vec![of_predicted(cx, "hr-peak-percent", At::Peak)],
         "o2-pulse-course" => {
-            let slope = shown::primary(cx.results, "o2-pulse-late-slope", At::Ramp);
-            slope
-                .filter(|s| s.reason.is_none())
-                .map_or(String::new(), |s| format!("late slope {} {}", s.value, s.unit))
+            let slope = said("o2-pulse-late-slope", At::Ramp);
+            vec![slope.map(|slope| wording::with("sheet-late-slope", &[("slope", slope)]))]
         }
         "vt1-vo2" => {
-            let share = match (number("vt1-vo2", At::Vt1), number("vo2-peak", At::Peak)) {
-                (Some(a), Some(b)) if b > 0.0 => {
-                    format!("{:.0}\u{a0}% of own peak V̇O₂  ·  ", 100.0 * a / b)
-                }
-                _ => String::new(),
-            };
-            let whose = if cx.decisions.vt1_s.is_some() { "reader’s mark" } else { "proposal" };
-            format!("{share}{whose}")
+            let of_peak = said("vt1-vo2-of-peak", At::Vt1);
+            let mark =
+                if cx.decisions.vt1_s.is_some() { "sheet-readers-mark" } else { "sheet-proposal" };
+            vec![
+                of_peak.map(|percent| wording::with("page-of-peak", &[("percent", percent)])),
+                of_predicted(cx, "vt1-vo2-percent-predicted", At::Vt1),
+                Some(wording::plain_text(mark)),
+            ]
         }
-        _ => String::new(),
-    }
+        _ => Vec::new(),
+    };
+    parts.into_iter().flatten().collect::<Vec<_>>().join("  ·  ")
+}
+
+/// "92 % of Hansen 1984": the outcome that gives the per cent, and the set behind it.
+fn of_predicted(cx: &Context<'_>, id: &str, at: At) -> Option<String> {
+    let outcome = cx.results.primary(id, at).filter(|o| o.reason.is_none())?;
+    let percent = record::presentation::values::shown(outcome).with_unit();
+    let set = short_names(&outcome.method, cx.settings);
+    Some(wording::with("page-of-predicted", &[("percent", percent), ("set", set)]))
 }
 
 fn accessible(shown: &Shown) -> String {

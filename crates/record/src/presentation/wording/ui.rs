@@ -26,4 +26,7 @@ pub const TEXTS: &[Entry] = &[
     ("edit-finding-status", "Decide on statement"),
     ("edit-finding-add", "Add statement"),
     ("edit-sign", "Sign"),
+    ("sheet-late-slope", "late slope {slope}"),
+    ("sheet-readers-mark", "reader’s mark"),
+    ("sheet-proposal", "proposal"),
 ];
