@@ -284,7 +284,8 @@ fn figures(h: &mut Html, m: &Model<'_>) {
         h.raw(&svg::drawing(270.0, 138.0, &t("page-fig-work"), &list));
     }
     h.close("figure");
-    h.element("p", "quiet key", &t("page-fig-key-plain"));
+    let drawn = m.results.overlay.model.is_some() && m.results.phases.ramp().is_some();
+    h.element("p", "quiet key", &t(if drawn { "page-fig-key" } else { "page-fig-key-plain" }));
     h.close("section");
 }
 

@@ -12,7 +12,7 @@ use crate::session::{ENGINE, Session, frozen};
 
 /// Lines that question, person, test, safety and conclusion may take together on page 1; what does
 /// not fit stands on the next page.
-const LINES: usize = 17;
+const LINES: usize = 18;
 
 /// Letters in one line of the conclusion.
 const LINE: usize = 116;

@@ -63,6 +63,7 @@ fn described(chart: &Chart) -> String {
 
 fn paint(out: &mut String, chart: &Chart, f: &Frame) {
     grid(out, chart, f);
+    comb(out, chart, f);
     for series in &chart.series {
         let mut clipped = series.clone();
         for run in &mut clipped.runs {
@@ -101,6 +102,33 @@ fn grid(out: &mut String, chart: &Chart, f: &Frame) {
     }
     rule(out, "frame", f.left, f.top, f.left, bottom);
     rule(out, "frame", f.left, bottom, right, bottom);
+}
+
+/// Least distance between the teeth of a comb.
+const TOOTH: f64 = 5.0;
+
+/// The predicted range as a comb of upright strokes with thin edges: it survives a copier and is
+/// never taken for data.
+fn comb(out: &mut String, chart: &Chart, f: &Frame) {
+    let mut last = f64::NEG_INFINITY;
+    let mut edges = (Vec::new(), Vec::new());
+    for (x, low, high) in &chart.range {
+        if !inside(*x, &chart.x) || *high < chart.y.from || *low > chart.y.to {
+            continue;
+        }
+        let x = f.x(&chart.x, *x);
+        let low = f.y(&chart.y, low.max(chart.y.from));
+        let top = f.y(&chart.y, high.min(chart.y.to));
+        edges.0.push(format!("{x:.1},{low:.1}"));
+        edges.1.push(format!("{x:.1},{top:.1}"));
+        if x - last >= TOOTH {
+            last = x;
+            rule(out, "comb", x, low, x, top);
+        }
+    }
+    for edge in [edges.0, edges.1].into_iter().filter(|e| e.len() > 1) {
+        out.push_str(&format!("<polyline class=\"edge\" points=\"{}\"/>\n", edge.join(" ")));
+    }
 }
 
 fn rule(out: &mut String, class: &str, x1: f64, y1: f64, x2: f64, y2: f64) {

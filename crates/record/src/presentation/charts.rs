@@ -19,6 +19,9 @@ pub enum Stroke {
     Thin,
 }
 
+/// The predicted range: x, low, high.
+pub type Range = Vec<(f64, f64, f64)>;
+
 /// One series. A gap is a break between two runs.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Series {
@@ -54,6 +57,8 @@ pub struct Chart {
     pub y: Axis,
     /// Series, back to front.
     pub series: Vec<Series>,
+    /// The predicted range, empty where there is none.
+    pub range: Range,
     /// An upright line with its name.
     pub upright: Option<(f64, String)>,
     /// A stretch marked at the top, with its name.
@@ -76,6 +81,8 @@ pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
     }
     let mut series = Vec::new();
     let course = results.course.as_ref();
+    let (range, middle) = predicted(results, Quantity::O2Pulse, Some);
+    series.extend(middle);
     series.push(Series { stroke: Stroke::Dots, runs: vec![dots], label: None });
     if let (Some(early), Some((_, end))) = (course.and_then(|c| c.early), ramp) {
         let points = steps(early.from_s, end).map(|t| (t, early.at(t).2)).collect();
@@ -92,6 +99,7 @@ pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
         x: time_axis(from, to),
         y: with_headroom(value_axis(&series, None)),
         series,
+        range,
         upright: ramp.map(|(_, end)| (end, wording::plain_text("page-load-end"))),
         stretch,
     })
@@ -110,20 +118,21 @@ pub fn against_work(recording: &Recording, results: &Results, quantity: Quantity
     if line.iter().all(Vec::is_empty) {
         return None;
     }
-    let mut series = vec![Series {
+    // At load end the load is off already.
+    let (range, middle) = predicted(results, quantity, |t| load(t).filter(|_| t < to));
+    let mut series: Vec<Series> = middle.into_iter().collect();
+    series.push(Series {
         stroke: Stroke::Dots,
         runs: vec![at_load(breaths(recording, quantity, from, to))],
         label: None,
-    }];
+    });
     if let Some(early) = results.course.as_ref().and_then(|c| c.early) {
         let of = |t: f64| {
             let (vo2, hr, _) = early.at(t);
             values::on_axis(quantity, if quantity == Quantity::Hr { hr } else { vo2 })
         };
-        let points = at_load(
-            // At load end the load is off already.
-            steps(early.from_s, to).filter(|t| *t < to).map(|t| (t, of(t))).collect(),
-        );
+        let points =
+            at_load(steps(early.from_s, to).filter(|t| *t < to).map(|t| (t, of(t))).collect());
         series.push(Series { stroke: Stroke::Dashed, runs: vec![points], label: None });
     }
     series.push(Series { stroke: Stroke::Line, runs: line, label: None });
@@ -136,9 +145,41 @@ pub fn against_work(recording: &Recording, results: &Results, quantity: Quantity
         x: Axis { from: 0.0, to: top * 1.03, ticks: ticks(0.0, top, 4) },
         y: value_axis(&series, Some(0.05)),
         series,
+        range,
         upright: None,
         stretch: None,
     })
+}
+
+/// The model of a normal response over the increments: its range and its middle. `at` gives the
+/// horizontal place of an instant.
+fn predicted(
+    results: &Results,
+    quantity: Quantity,
+    at: impl Fn(f64) -> Option<f64>,
+) -> (Range, Option<Series>) {
+    let curves = results.overlay.model.as_ref().and_then(|m| m.over_time.as_ref());
+    let Some((curves, curve)) = curves.and_then(|c| Some((c, c.of(quantity)?))) else {
+        return (Vec::new(), None);
+    };
+    let (from, to) = results.phases.ramp().unwrap_or((f64::NEG_INFINITY, f64::INFINITY));
+    let place = |i: usize| {
+        let t = *curves.x.get(i)?;
+        at(t).filter(|_| (from..=to).contains(&t))
+    };
+    let shown = |v: f64| values::on_axis(quantity, v);
+    let middle: Vec<(f64, f64)> = (0..curves.normal)
+        .filter_map(|i| Some((place(i)?, shown(*curve.middle.get(i)?))))
+        .collect();
+    let range = (0..curves.normal)
+        .filter_map(|i| {
+            let low = *curve.low.get(i)?;
+            // A lower limit alone is drawn as its edge.
+            let high = curve.high.get(i).copied().unwrap_or(low);
+            Some((place(i)?, shown(low), shown(high)))
+        })
+        .collect();
+    (range, Some(Series { stroke: Stroke::Thin, runs: vec![middle], label: None }))
 }
 
 /// Every 10 s, both ends included.

@@ -30,6 +30,7 @@ pub const CASES: [&str; 12] = [
 
 /// The demo `case` as a session just opened.
 pub fn demo(case: &str) -> Session {
+    assert!(CASES.contains(&case), "{case} is no demo");
     let folder = format!("{}/../../demo-sessions/{case}", env!("CARGO_MANIFEST_DIR"));
     let bytes = std::fs::read(format!("{folder}/table.csv")).expect("the table");
     let facts = std::fs::read_to_string(format!("{folder}/facts.json")).expect("the facts");
