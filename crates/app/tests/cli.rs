@@ -48,9 +48,10 @@ fn bare_without_a_display_says_one_sentence_and_derives_the_demonstration_test()
     let session: Value = serde_json::from_slice(&read("session.json")).expect("JSON");
     assert_eq!(session["schema"], "rampcrest-session/1");
     assert_eq!(&read("window.png")[1..4], b"PNG");
+    assert!(String::from_utf8_lossy(&read("page.html")).starts_with("<!DOCTYPE html>"));
     let again = run(folder.path(), &["--now", NOW, "--out", "again"]);
     assert_eq!(code(&again), Some(0));
-    for name in ["results.json", "session.json", "window.png"] {
+    for name in ["results.json", "session.json", "page.html", "window.png"] {
         let twin = std::fs::read(folder.path().join("again").join(name)).expect(name);
         assert!(read(name) == twin, "{name} differs between two runs");
     }

@@ -34,6 +34,8 @@ struct Report {
     tessellate_ms: Cost,
     raster_ms: Cost,
     total_ms: Cost,
+    /// Processor time of all threads per frame, which other programs do not lengthen.
+    cpu_ms: Option<f64>,
 }
 
 #[derive(Default)]
@@ -60,7 +62,9 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
     let mut output = headless.settle(|ui| app.ui(ui));
     let _ = headless.paint(&mut output, threads);
     let first = start.elapsed();
+    let before = cpu_ms();
     let times = drag(&mut app, &mut headless, screen, frames, threads);
+    let spent = before.zip(cpu_ms()).map(|(before, after)| (after - before) / frames as f64);
     let total: Vec<Duration> =
         (0..frames).map(|i| times.ui[i] + times.tessellate[i] + times.raster[i]).collect();
     let report = Report {
@@ -76,6 +80,7 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
         tessellate_ms: cost(times.tessellate),
         raster_ms: cost(times.raster),
         total_ms: cost(total),
+        cpu_ms: spent,
     };
     if args.json {
         files::print(&serde_json::to_string(&report).unwrap_or_default());
@@ -86,6 +91,9 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
         line("tessellate", &report.tessellate_ms);
         line("raster", &report.raster_ms);
         line("total", &report.total_ms);
+        if let Some(spent) = spent {
+            files::print(&format!("processor   {spent:8.2} per frame, all threads"));
+        }
     }
     Ok(Exit::Ok)
 }
@@ -148,6 +156,16 @@ fn grip(app: &App) -> Pos2 {
     };
     let start = app.derived.committed().phases.ramp().map_or(0.0, |(from, _)| from);
     Pos2::new(place.scale.place(start), place.span.center().y)
+}
+
+/// Processor time of this process so far, all threads; Linux only, in steps of 10 ms.
+fn cpu_ms() -> Option<f64> {
+    let stat = std::fs::read_to_string("/proc/self/stat").ok()?;
+    // Fields 14 and 15 (proc(5)); the second field, the name, may itself hold spaces.
+    let mut fields = stat.rsplit_once(')')?.1.split_whitespace().skip(11);
+    let user: f64 = fields.next()?.parse().ok()?;
+    let system: f64 = fields.next()?.parse().ok()?;
+    Some((user + system) * 10.0)
 }
 
 fn ms(duration: Duration) -> f64 {

@@ -6,7 +6,7 @@ use super::args::Args;
 use super::failure::{Exit, Failure};
 use super::{files, open, sessions, views};
 use crate::App;
-use crate::shell::{self, Content, Paint, StartError};
+use crate::shell::{self, Content, Paint, StartError, words};
 
 /// Shows the window on the files, or on the demonstration test.
 pub fn show(args: &Args) -> Result<Exit, Failure> {
@@ -43,9 +43,7 @@ fn instead(args: &Args, error: &StartError) -> Result<Exit, Failure> {
         files::write(&folder.join("session.json"), &session.write())?;
         files::write(&folder.join("page.html"), sessions::rendered(session, args).as_bytes())?;
     }
-    files::print(&format!(
-        "{error} The demonstration test was derived into {} instead.",
-        folder.display()
-    ));
+    let folder = folder.display().to_string();
+    files::print(&words::derived_instead(&error.to_string(), &folder));
     Ok(Exit::Ok)
 }

@@ -55,7 +55,7 @@ impl std::fmt::Display for StartError {
 /// card: the reason is printed and the program starts itself again without it.
 pub fn run(renderer: Renderer, content: Content) -> Result<(), StartError> {
     if !display_is_named() {
-        return Err(StartError::NoDisplay(words::NO_DISPLAY.to_owned()));
+        return Err(StartError::NoDisplay(words::no_display()));
     }
     let gpu = match renderer {
         Renderer::Cpu => false,
@@ -104,7 +104,7 @@ fn start_error(error: &impl std::fmt::Debug) -> StartError {
         return StartError::MissingLibrary(sentence);
     }
     if text.contains("neither WAYLAND_DISPLAY") {
-        return StartError::NoDisplay(words::NO_DISPLAY.to_owned());
+        return StartError::NoDisplay(words::no_display());
     }
     if text.contains("XOpenDisplayFailed") || text.contains("Connect") {
         return StartError::NoDisplay(words::display_does_not_answer(&text));

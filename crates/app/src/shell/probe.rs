@@ -30,7 +30,7 @@ pub fn drivers() -> Vec<String> {
 #[must_use]
 pub fn answer() -> String {
     if !super::display_is_named() {
-        return format!("gpu: no ({})", words::NO_DISPLAY);
+        return format!("gpu: no ({})", words::no_display());
     }
     if cfg!(target_os = "linux") {
         if is_remote() {

@@ -9,6 +9,7 @@ mod import;
 mod page;
 mod predicted;
 mod signs;
+mod start;
 mod statements;
 mod ui;
 
@@ -30,6 +31,7 @@ pub const FILES: &[&[Entry]] = &[
     import::TEXTS,
     ui::TEXTS,
     page::TEXTS,
+    start::TEXTS,
 ];
 
 /// The template of `code`.
