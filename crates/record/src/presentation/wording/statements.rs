@@ -47,7 +47,7 @@ pub const TEXTS: &[Entry] = &[
     ("capacity-not-graded", "Peak V̇O₂ {vo2}; not graded, as no limit was demonstrated."),
     (
         "capacity-without-prediction",
-        "Peak V̇O₂ {vo2}; no predicted set is in range for this person.",
+        "Peak V̇O₂ {vo2}; no predicted set applies: the person is not stated in full, or out of range.",
     ),
     ("capacity-within-limits", "Peak V̇O₂ {vo2}, within limits in every set in range ({sets})."),
     (
@@ -90,7 +90,7 @@ pub const TEXTS: &[Entry] = &[
     ),
     (
         "pulse-not-compared",
-        "O₂ pulse at peak {value}; no predicted set is in range for this person.",
+        "O₂ pulse at peak {value}; no predicted set applies: the person is not stated in full, or out of range.",
     ),
     (
         "pulse-within-limits",
