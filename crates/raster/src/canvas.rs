@@ -133,6 +133,15 @@ impl Canvas {
         Some([r, g, b, a])
     }
 
+    /// Replaces one pixel; outside nothing happens.
+    pub fn set(&mut self, x: usize, y: usize, colour: egui::Color32) {
+        if x < self.width
+            && let Some(pixel) = self.pixels.get_mut(y * self.width + x)
+        {
+            *pixel = crate::blend::pack(colour);
+        }
+    }
+
     /// Bytes in the order red, green, blue, alpha, as image files want them.
     #[must_use]
     pub fn to_rgba(&self) -> Vec<u8> {

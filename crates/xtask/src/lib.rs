@@ -4,6 +4,7 @@ pub mod ci;
 pub mod demo;
 pub mod references;
 pub mod tidy;
+pub mod window;
 
 use std::path::PathBuf;
 

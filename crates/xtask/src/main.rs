@@ -4,15 +4,20 @@ use std::process::ExitCode;
 
 const USAGE: &str = "cargo xtask VERB
 
+  bench [--json]
+          what a frame costs while a boundary is dragged
   ci      everything the repository checks without a display or outside data
   demo    writes the demo tests below demo-sessions
   references noise|coverage|errors [--seeds A..B]
           simulations and data behind the calibrated figures
+  sheet   contact sheets of all views below target/sheet
   tidy    rules of the tree: file sizes, banned words, stubs";
 
 fn main() -> ExitCode {
     let args: Vec<String> = std::env::args().skip(1).collect();
     match args.first().map(String::as_str) {
+        Some("bench") => xtask::window::bench(&args[1..]),
+        Some("sheet") => xtask::window::sheet(),
         Some("demo") => xtask::demo::run(),
         Some("references") => xtask::references::run(&args[1..]),
         Some("ci") => xtask::ci::run(),

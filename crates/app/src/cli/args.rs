@@ -37,6 +37,8 @@ pub enum Verb {
     Probe,
     /// What a frame costs.
     BenchFrame,
+    /// All views on one picture.
+    Sheet,
     /// Usage.
     Help,
     /// Version.
@@ -44,7 +46,7 @@ pub enum Verb {
 }
 
 impl Verb {
-    const NAMES: [(&'static str, Verb); 11] = [
+    const NAMES: [(&'static str, Verb); 12] = [
         ("derive", Verb::Derive),
         ("edit", Verb::Edit),
         ("describe", Verb::Describe),
@@ -56,6 +58,7 @@ impl Verb {
         ("batch", Verb::Batch),
         ("probe", Verb::Probe),
         ("bench-frame", Verb::BenchFrame),
+        ("sheet", Verb::Sheet),
     ];
 
     /// Options beside `--facts` and `--now`, which go with every verb, and the number of files.
@@ -72,6 +75,7 @@ impl Verb {
             Verb::Verify => (&["trust", "json"], 1..=1),
             Verb::Batch => (&["out", "jobs", "json"], 1..=usize::MAX),
             Verb::BenchFrame => (&["json", "view", "size", "scale", "frames", "threads"], 0..=1),
+            Verb::Sheet => (&["size", "scale", "out"], 0..=1),
             Verb::Probe | Verb::Help | Verb::Version => (&[], 0..=0),
         }
     }

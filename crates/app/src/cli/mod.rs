@@ -7,6 +7,7 @@ mod files;
 mod hook;
 mod open;
 mod sessions;
+mod sheet;
 mod views;
 mod window;
 
@@ -70,6 +71,7 @@ fn carry_out(args: &Args) -> Result<Exit, Failure> {
         Verb::Describe => views::describe(args),
         Verb::Picture => views::picture(args),
         Verb::BenchFrame => bench::frame(args),
+        Verb::Sheet => sheet::sheet(args),
         Verb::Probe => {
             files::print(&probe::answer());
             Ok(Exit::Ok)
