@@ -5,6 +5,7 @@ use analysis::quantity::Quantity as Q;
 use analysis::results::At;
 use analysis::thresholds::Proposal;
 use egui::{Align, Rect, Ui, pos2};
+use record::presentation::wording;
 
 use super::{time_charts as charts, xy};
 use crate::chart::column::{self, Side};
@@ -115,7 +116,7 @@ fn summary(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
         for outcome in cx.results.outcomes.iter().filter(|o| o.id == id && o.at == at) {
             y += 18.0;
             let shown = crate::shown::outcome(outcome, cx.results);
-            let label = format!("{name}  ·  {}", outcome.method.replace('-', " "));
+            let label = format!("{name}  ·  {}", wording::method(&outcome.method));
             let ink = if outcome.primary { t.ink } else { t.ink2 };
             text::plain(ui, pos2(rect.left(), y), Align::Min, label, size::BODY, ink);
             if let Some(reason) = &shown.reason {

@@ -10,7 +10,7 @@ use super::model::Model;
 use crate::clock;
 use crate::presentation::key_table::set_names;
 use crate::presentation::values;
-use crate::presentation::wording::{plain_text as t, text, with};
+use crate::presentation::wording::{method, plain_text as t, text, with};
 use crate::session::findings::{EvidenceShown, FindingShown, SECTIONS};
 use crate::session::history::Action;
 
@@ -259,7 +259,7 @@ fn methods(h: &mut Html, m: &Model<'_>) {
         seen.push(code);
         let Some(how) = analysis::methods::describe(code) else { continue };
         let source = analysis::methods::find(code).map_or("", |method| method.source);
-        entry(h, code, &how, source);
+        entry(h, &method(code), &how, source);
     }
     let used = |id: &str| {
         m.primaries().any(|o| o.value.is_some() && o.method.split('/').any(|part| part == id))

@@ -106,7 +106,7 @@ fn of_predicted(outcome: &Outcome, results: &Results, settings: &Settings) -> Op
     Some(wording::with("page-of-predicted-limit", &args))
 }
 
-/// Names of the sets behind a method such as `hansen-1984/hansen-hr`.
+/// The name of a method: of the sets behind one such as `hansen-1984/hansen-hr`, else its own.
 #[must_use]
 pub fn set_names(method: &str, settings: &Settings) -> String {
     names(method, settings, str::to_owned)
@@ -126,8 +126,12 @@ pub fn short_names(method: &str, settings: &Settings) -> String {
 }
 
 fn names(method: &str, settings: &Settings, form: impl Fn(&str) -> String) -> String {
+    let set = |id: &str| settings.sets.iter().find(|s| s.id == id).map(|s| form(&s.name));
     let name = |id: &str| {
-        settings.sets.iter().find(|s| s.id == id).map_or_else(|| id.to_owned(), |s| form(&s.name))
+        let on_ramp = || set(id.strip_suffix("-on-this-ramp")?);
+        set(id)
+            .or_else(|| Some(wording::with("method-on-this-ramp", &[("set", on_ramp()?)])))
+            .unwrap_or_else(|| wording::method(id))
     };
     let parts: Vec<String> = method.split('/').map(name).collect();
     match parts.as_slice() {

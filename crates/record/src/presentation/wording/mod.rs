@@ -6,6 +6,7 @@
 mod course;
 mod engine;
 mod import;
+mod methods;
 mod page;
 mod predicted;
 mod signs;
@@ -29,6 +30,7 @@ pub const FILES: &[&[Entry]] = &[
     statements::TEXTS,
     signs::TEXTS,
     import::TEXTS,
+    methods::TEXTS,
     ui::TEXTS,
     page::TEXTS,
     start::TEXTS,
@@ -83,6 +85,27 @@ pub fn reading(word: &str) -> String {
 #[must_use]
 pub fn word(word: &str) -> String {
     template(&format!("word-{word}")).map_or_else(|| word.replace('-', " "), str::to_owned)
+}
+
+/// The name of the method with this code; the code's words where the catalogue has no name.
+#[must_use]
+pub fn method(code: &str) -> String {
+    let mut key = String::with_capacity(code.len());
+    let mut numbers: Vec<String> = Vec::new();
+    for c in code.chars() {
+        match (c.is_ascii_digit(), numbers.last_mut().filter(|_| key.ends_with('#'))) {
+            (true, Some(number)) => number.push(c),
+            (true, None) => {
+                numbers.push(c.to_string());
+                key.push('#');
+            }
+            (false, _) => key.push(c),
+        }
+    }
+    let Some(name) = template(&format!("method-{key}")) else {
+        return code.replace('-', " ");
+    };
+    numbers.iter().fold(name.to_owned(), |name, number| name.replacen('#', number, 1))
 }
 
 fn shown(arg: &Arg, results: &Results) -> String {
