@@ -5,6 +5,7 @@ use egui::{Key, KeyboardShortcut, Modifiers};
 
 use crate::context::Context;
 use crate::view_state::{Dialog, View};
+use record::presentation::wording;
 use record::session::Edit;
 
 /// Something to be done, sent by a panel and carried out by `dispatch`.
@@ -58,6 +59,8 @@ pub enum Command {
     Edit(Edit),
     /// Several edits as one step.
     Edits(Vec<Edit>),
+    /// Read a column of the file so: its name in the question, and the reading chosen.
+    Answer(String, String),
     /// Close the window, work saved or not.
     Quit,
     /// Carry this out although work is not saved.
@@ -77,6 +80,7 @@ impl Command {
             Command::Redo,
             Command::Show(Dialog::Facts),
             Command::Show(Dialog::Event),
+            Command::Show(Dialog::Exclude(None)),
             Command::ToggleOverlay,
             Command::ToggleRaw,
             Command::WidenFindings,
@@ -106,6 +110,7 @@ impl Command {
                 Dialog::Sign => "Sign…".into(),
                 Dialog::Keys => "Keys".into(),
                 Dialog::Event => "Enter reading…".into(),
+                Dialog::Exclude(_) => wording::plain_text("exclude-title"),
                 Dialog::Inputs => "Inputs…".into(),
                 Dialog::Statement(_) => "Edit…".into(),
                 Dialog::Unsaved(_) => "Unsaved work".into(),
@@ -133,6 +138,10 @@ impl Command {
             Command::Evidence(_) => "Evidence".into(),
             Command::Edit(edit) => edit.label(),
             Command::Edits(edits) => edits.first().map_or_else(String::new, Edit::label),
+            Command::Answer(column, reading) => wording::with(
+                "import-answer",
+                &[("column", column.clone()), ("reading", crate::views::import::reading(reading))],
+            ),
             Command::Quit => "Close".into(),
             Command::Discard(_) => "Discard changes".into(),
         }
@@ -149,6 +158,7 @@ impl Command {
             Command::Show(Dialog::Facts) => "State what is known of person and test.".into(),
             Command::Show(Dialog::Sign) => "Sign the findings; the session locks.".into(),
             Command::Show(Dialog::Event) => "Enter a reading or note at the cursor.".into(),
+            Command::Show(Dialog::Exclude(_)) => wording::plain_text("exclude-tooltip"),
             Command::Show(Dialog::Keys) => "List all keys.".into(),
             Command::Save => "Save the session.".into(),
             Command::ToggleOverlay => "Show or hide the predicted normal response.".into(),
@@ -175,6 +185,7 @@ impl Command {
             Command::Show(Dialog::Sign) => command(Key::I),
             Command::Show(Dialog::Facts) => plain(Key::P),
             Command::Show(Dialog::Event) => plain(Key::E),
+            Command::Show(Dialog::Exclude(None)) => plain(Key::X),
             Command::Show(Dialog::Keys) => plain(Key::Questionmark),
             Command::ToggleOverlay => plain(Key::O),
             Command::ToggleRaw => plain(Key::B),
@@ -238,9 +249,11 @@ impl Command {
             Command::Undo => cx.can_undo,
             Command::Redo => cx.can_redo,
             Command::Show(Dialog::Sign) => cx.open && !cx.signed,
-            Command::Show(Dialog::Facts | Dialog::Event) => cx.open && !cx.signed,
+            Command::Show(Dialog::Facts | Dialog::Event | Dialog::Exclude(_)) => {
+                cx.open && !cx.signed
+            }
             Command::Show(Dialog::Export) | Command::Save => cx.open,
-            Command::Edit(_) | Command::Edits(_) => cx.open && !cx.signed,
+            Command::Edit(_) | Command::Edits(_) | Command::Answer(..) => cx.open && !cx.signed,
             _ => true,
         }
     }

@@ -7,6 +7,7 @@ use crate::chart::column::zoomed;
 use crate::chart::handles::HandleKind;
 use crate::chart::interact::step;
 use crate::command::{Command, Outbox};
+use record::presentation::wording;
 use record::session::Edit;
 
 use crate::view_state::Dialog;
@@ -74,6 +75,7 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::Evidence(id) => app.view.evidence_of = id,
         Command::Edit(one) => edit(app, &[one]),
         Command::Edits(edits) => edit(app, &edits),
+        Command::Answer(column, reading) => answer(app, &column, &reading),
         Command::Quit => ui.ctx().send_viewport_cmd(egui::ViewportCommand::Close),
         Command::OpenDemo => {
             app.open_table(crate::demo::TABLE, crate::demo::NAME, crate::demo::facts());
@@ -121,6 +123,25 @@ fn export(app: &mut App, path: &std::path::Path) {
         Ok(()) => {
             app.view.dialog = None;
             app.view.status = Some("Page written.".into());
+        }
+        Err(problem) => app.view.status = Some(problem.to_string()),
+    }
+}
+
+/// Reads the file anew with an answer about a column.
+fn answer(app: &mut App, column: &str, reading: &str) {
+    let Some(session) = app.document.session().filter(|s| s.signed().is_none()) else {
+        return;
+    };
+    match crate::reimport::answered(session, column, reading, &app.document.now()) {
+        Ok(anew) => {
+            let document = app.document.read_anew(anew.session);
+            app.show(document);
+            let lost: Vec<String> = anew.lost.iter().map(Edit::label).collect();
+            if !lost.is_empty() {
+                let args = [("edits", lost.join(", "))];
+                app.view.status = Some(wording::with("import-lost", &args));
+            }
         }
         Err(problem) => app.view.status = Some(problem.to_string()),
     }

@@ -41,6 +41,14 @@ impl Document {
         self
     }
 
+    /// The same test with its file read anew; nothing of it is saved yet.
+    #[must_use]
+    pub fn read_anew(&self, session: Session) -> Self {
+        let (path, clock) = (self.path.clone(), self.clock.clone());
+        let anew = Self::of(session, None);
+        Self { path, clock, revision: self.revision + 1, ..anew }
+    }
+
     /// The time that edits bear, RFC 3339 with offset.
     #[must_use]
     pub fn now(&self) -> String {

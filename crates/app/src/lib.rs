@@ -17,6 +17,7 @@ pub mod opening;
 pub mod panels;
 pub mod picture;
 pub mod preferences;
+pub mod reimport;
 pub mod ribbon;
 pub mod shell;
 pub mod shown;

@@ -24,6 +24,19 @@ pub struct Shown {
     pub doubts: Vec<String>,
 }
 
+impl Shown {
+    /// Value, unit, both intervals and the reason in one line, as assistive technology reads it.
+    #[must_use]
+    pub fn spoken(&self) -> String {
+        let mut parts = vec![format!("{} {}", self.value, self.unit).trim().to_owned()];
+        let said = |code, interval: &String| wording::with(code, &[("interval", interval.clone())]);
+        parts.extend(self.recording.iter().map(|i| said("spoken-recording", i)));
+        parts.extend(self.repeat.iter().map(|i| said("spoken-repeat", i)));
+        parts.extend(self.reason.clone());
+        parts.join(", ")
+    }
+}
+
 /// The primary outcome (id, at) as shown; `None` where the engine gives none.
 #[must_use]
 pub fn primary(results: &Results, id: &str, at: At) -> Option<Shown> {

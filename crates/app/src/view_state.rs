@@ -128,6 +128,8 @@ pub enum Dialog {
     Keys,
     /// Enter a timed event at the cursor.
     Event,
+    /// Leave out breaths: of this stretch, s, or of the breath at the cursor.
+    Exclude(Option<(f64, f64)>),
     /// Inputs of the stroke-volume sentence.
     Inputs,
     /// Edit a statement.

@@ -1,6 +1,7 @@
 //! Dialogs, one file each; what is typed lives in [`Form`] until it becomes a command.
 
 pub mod event;
+pub mod exclude;
 pub mod facts;
 pub mod files;
 pub mod inputs;
@@ -76,6 +77,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
                 Dialog::Sign => sign::show(ui, cx, form, out),
                 Dialog::Keys => keys::show(ui),
                 Dialog::Event => event::show(ui, cx, form, out),
+                Dialog::Exclude(stretch) => exclude::show(ui, cx, form, out, *stretch),
                 Dialog::Inputs => inputs::show(ui, cx, form, out),
                 Dialog::Statement(id) => statement::show(ui, cx, form, out, id),
                 Dialog::Unsaved(next) => files::unsaved(ui, out, next),

@@ -94,7 +94,9 @@ fn against(cx: &Context<'_>, id: &str) -> String {
                 if cx.decisions.vt1_s.is_some() { "sheet-readers-mark" } else { "sheet-proposal" };
             vec![
                 of_peak.map(|percent| wording::with("page-of-peak", &[("percent", percent)])),
-                of_predicted(cx, "vt1-vo2-percent-predicted", At::Vt1),
+                said("vt1-vo2-percent-predicted", At::Vt1).map(|percent| {
+                    wording::with("sheet-of-predicted-peak", &[("percent", percent)])
+                }),
                 Some(wording::plain_text(mark)),
             ]
         }
@@ -111,20 +113,6 @@ fn of_predicted(cx: &Context<'_>, id: &str, at: At) -> Option<String> {
     Some(wording::with("page-of-predicted", &[("percent", percent), ("set", set)]))
 }
 
-fn accessible(shown: &Shown) -> String {
-    let mut words = format!("{} {}", shown.value, shown.unit).trim().to_owned();
-    if let Some(i) = &shown.recording {
-        words.push_str(&format!(", this recording {i}"));
-    }
-    if let Some(i) = &shown.repeat {
-        words.push_str(&format!(", if repeated {i}"));
-    }
-    if let Some(reason) = &shown.reason {
-        words.push_str(&format!(", {reason}"));
-    }
-    words
-}
-
 fn value_text(cx: &Context<'_>, shown: &Shown) -> String {
     // A reading that changes under a moving handle is provisional until release.
     let word = shown.unit.is_empty() && shown.value.chars().next().is_some_and(char::is_alphabetic);
@@ -132,7 +120,7 @@ fn value_text(cx: &Context<'_>, shown: &Shown) -> String {
 }
 
 fn hover(response: egui::Response, shown: &Shown) {
-    let mut lines = vec![accessible(shown)];
+    let mut lines = vec![shown.spoken()];
     lines.extend(shown.doubts.iter().cloned());
     response.on_hover_text(lines.join("\n"));
 }
@@ -152,7 +140,7 @@ fn large(
     text::plain(ui, at, Align::Max, against, size::BODY, t.ink2);
     let base = top + 42.0;
     let value = value_text(cx, shown);
-    let key = Key { id: &shown.key, name, value: &accessible(shown) };
+    let key = Key { id: &shown.key, name, value: &shown.spoken() };
     let runs = [
         Run::new(value, size::KEY, t.ink),
         Run::new(format!("  {}", shown.unit), size::BODY, t.ink2),
@@ -192,7 +180,7 @@ fn large_narrow(
     let t = cx.tokens;
     let left = rect.left();
     text::plain(ui, pos2(left, top + 16.0), Align::Min, name, size::BODY, t.ink2);
-    let key = Key { id: &shown.key, name, value: &accessible(shown) };
+    let key = Key { id: &shown.key, name, value: &shown.spoken() };
     let runs = [
         Run::new(value_text(cx, shown), size::KEY, t.ink),
         Run::new(format!("  {}", shown.unit), size::BODY, t.ink2),
@@ -227,7 +215,7 @@ fn lesser(
     let t = cx.tokens;
     let base = top + 16.0;
     text::plain(ui, pos2(rect.left(), base), Align::Min, name, size::BODY, t.ink2);
-    let key = Key { id: &shown.key, name, value: &accessible(shown) };
+    let key = Key { id: &shown.key, name, value: &shown.spoken() };
     let unit = if shown.unit.is_empty() { String::new() } else { format!(" {}", shown.unit) };
     let runs =
         [Run::new(shown.value.clone(), size::SECTION, t.ink), Run::new(unit, size::BODY, t.ink2)];

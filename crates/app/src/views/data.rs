@@ -3,12 +3,16 @@
 use analysis::quantity::Quantity;
 use analysis::results::FlagKind;
 use egui::{Align, Rect, ScrollArea, Sense, Stroke, Ui, UiBuilder, pos2, vec2};
+use record::presentation::wording;
+use record::session::Edit;
 
 use crate::chart::ticks::clock;
 use crate::command::{Command, Outbox};
 use crate::context::Context;
+use crate::dialogs::exclude;
 use crate::theme::{Family, size};
 use crate::values;
+use crate::view_state::Dialog;
 use crate::widgets::text::{self, Run};
 
 const ROW: f32 = 19.0;
@@ -17,7 +21,7 @@ const ROW: f32 = 19.0;
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let t = cx.tokens;
     let columns: Vec<Quantity> = cx.recording.breaths.columns().map(|(q, _)| q).collect();
-    let wide = ((rect.width() - 90.0 - 160.0) / columns.len().max(1) as f32).min(96.0);
+    let wide = ((rect.width() - 90.0 - 250.0) / columns.len().max(1) as f32).min(96.0);
     let x = |i: usize| rect.left() + 90.0 + wide * (i as f32 + 1.0) - 8.0;
     let base = rect.top() + 15.0;
     text::plain(ui, pos2(rect.left() + 74.0, base), Align::Max, "breath end", size::BODY, t.ink2);
@@ -30,6 +34,14 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let copy = Rect::from_min_size(pos2(rect.right() - 110.0, rect.top() + 2.0), vec2(100.0, 24.0));
     if ui.put(copy, egui::Button::new("Copy table")).clicked() {
         ui.ctx().copy_text(table(cx, &columns));
+    }
+    let leave = Rect::from_min_size(copy.left_top() - vec2(136.0, 0.0), vec2(130.0, 24.0));
+    let command = Command::Show(Dialog::Exclude(None));
+    let button = egui::Button::new(command.label());
+    let enabled = command.available(cx);
+    let place = &mut ui.new_child(UiBuilder::new().max_rect(leave).id_salt("leave out"));
+    if place.add_enabled(enabled, button).on_hover_text(command.hover()).clicked() {
+        out.push(command);
     }
     let body = Rect::from_min_max(pos2(rect.left(), rect.top() + 36.0), rect.max);
     ui.painter().hline(rect.x_range(), body.top(), Stroke::new(1.0, t.frame));
@@ -67,6 +79,7 @@ fn row(
     if response.clicked() {
         out.push(Command::Cursor(at));
     }
+    menu(&response, cx, out, i);
     let base = top + 14.0;
     let run = |s: String, ink| [Run::new(s, size::BODY, ink)];
     text::paint(ui, pos2(rect.left() + 74.0, base), Align::Max, &run(clock(at), t.ink2));
@@ -87,6 +100,30 @@ fn row(
         text::paint(ui, pos2(left, base), Align::Min, &run(word.to_owned(), t.ink));
         response.on_hover_text(crate::words::note(&flag.note, cx.results));
     }
+}
+
+/// What can be done with breath `i`.
+fn menu(response: &egui::Response, cx: &Context<'_>, out: &mut Outbox, i: usize) {
+    response.context_menu(|ui| {
+        let middle = cx.recording.breaths.mid_s(i);
+        let left_out =
+            cx.decisions.excluded.iter().find(|e| e.from_s <= middle && middle <= e.to_s);
+        let (label, command) = match left_out {
+            Some(e) => {
+                let edit = Edit::IncludeBreaths { from_s: e.from_s, to_s: e.to_s };
+                ("exclude-undo", Command::Edit(edit))
+            }
+            None => {
+                let stretch = exclude::around(&cx.recording.breaths, i);
+                ("exclude-breath", Command::Show(Dialog::Exclude(Some(stretch))))
+            }
+        };
+        let button = egui::Button::new(wording::plain_text(label));
+        if ui.add_enabled(command.available(cx), button).clicked() {
+            out.push(command);
+            ui.close();
+        }
+    });
 }
 
 fn shown(q: Quantity, value: f64) -> String {

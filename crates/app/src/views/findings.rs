@@ -51,11 +51,8 @@ fn row(ui: &mut Ui, cx: &Context<'_>, left: f32, width: f32, x: [f32; 4], top: f
     text::plain(ui, pos2(left, base), Align::Min, &shown.label, size::BODY, t.ink);
     let runs = [Run::new(shown.value.clone(), size::STATEMENT, t.ink)];
     let intervals = [&shown.recording, &shown.repeat].map(|i| i.clone());
-    let value = format!("{} {}", shown.value, shown.unit);
-    let key = format!("{}:table", shown.key);
-    let _ = key;
     let rect = text::paint(ui, pos2(x[0], base), Align::Max, &runs);
-    let named = Key { id: &shown.key, name: &shown.label, value: value.trim() };
+    let named = Key { id: &shown.key, name: &shown.label, value: &shown.spoken() };
     text::table_number(ui, rect, &named);
     let unit = pos2(x[0] + 6.0, base);
     if let Some(reason) = &shown.reason {

@@ -1,14 +1,15 @@
 //! Import: what did the file mean? Every column as it was understood.
 
 use egui::{Rect, RichText, ScrollArea, Ui, UiBuilder, pos2};
-use record::provenance::{Decided, LeftOut};
+use record::presentation::wording;
+use record::provenance::{Decided, LeftOut, Question, Reading, Target};
 
-use crate::command::Outbox;
+use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::theme::size;
 
 /// Draws the view.
-pub fn show(ui: &mut Ui, cx: &Context<'_>, _out: &mut Outbox, rect: Rect) {
+pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let Some(session) = cx.session else {
         return;
     };
@@ -31,7 +32,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, _out: &mut Outbox, rect: Rect) {
             for c in &recipe.columns {
                 ui.label(&c.header);
                 ui.label(&c.unit_text);
-                ui.label(RichText::new(c.reading.target.code()).size(size::STATEMENT));
+                ui.label(RichText::new(target(c.reading.target)).size(size::STATEMENT));
                 ui.label(c.reading.unit.shown());
                 ui.label(decided(&c.decided));
                 ui.label(c.samples.join("  "));
@@ -40,7 +41,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, _out: &mut Outbox, rect: Rect) {
         });
         ui.add_space(10.0);
         for q in &recipe.questions {
-            ui.label(format!("Open question: {}: {}?", q.column, q.readings.join(" or ")));
+            question(ui, cx, out, q);
         }
         if recipe.left_out.is_empty() {
             ui.label("Nothing was left out.");
@@ -49,6 +50,42 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, _out: &mut Outbox, rect: Rect) {
             ui.label(left_out(left));
         }
     });
+}
+
+/// An open question with a button per reading.
+fn question(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, q: &Question) {
+    ui.horizontal(|ui| {
+        ui.label(wording::with("import-question", &[("column", q.column.clone())]));
+        for r in &q.readings {
+            let command = Command::Answer(q.column.clone(), r.clone());
+            let enabled = command.available(cx);
+            let button = ui.add_enabled(enabled, egui::Button::new(reading(r)));
+            if button.accessible_name(command.label()).clicked() {
+                out.push(command);
+            }
+        }
+    });
+}
+
+/// A possible answer in words, such as "V̇O₂ in mL/min".
+#[must_use]
+pub fn reading(text: &str) -> String {
+    match text.parse::<Reading>() {
+        Ok(Reading { target: Target::LeaveOut, .. }) => target(Target::LeaveOut),
+        Ok(r) => wording::with(
+            "import-reading",
+            &[("what", target(r.target)), ("unit", r.unit.shown().to_owned())],
+        ),
+        Err(_) => text.to_owned(),
+    }
+}
+
+/// What a column is read as, in words.
+fn target(target: Target) -> String {
+    match target {
+        Target::Quantity(quantity) => quantity.row().symbol.to_owned(),
+        other => wording::plain_text(&format!("import-target-{}", other.code())),
+    }
 }
 
 fn decided(by: &Decided) -> String {
