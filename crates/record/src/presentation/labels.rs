@@ -140,6 +140,7 @@ const LABELS: &[(&str, &str)] = &[
 
 /// Labels to which the place is added.
 const PLACED: &[(&str, &str)] = &[
+    ("work-rate", "Work rate"),
     ("vd-vt", "VD/VT"),
     ("vd-vt-estimated", "VD/VT, estimated"),
     ("pa-a-o2", "P(A–a)O₂"),
