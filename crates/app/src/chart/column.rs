@@ -12,6 +12,7 @@ use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::ribbon;
 use crate::theme::size;
+use crate::views::overlay;
 use crate::widgets::text::{self, Run};
 
 /// Which notes stand under a column.
@@ -37,6 +38,7 @@ pub fn show(
     let column = Column::of(rect, &cx.grid, &weights);
     let scale = Scale::over(column.ribbon, cx.time());
     let mut charts: Vec<Chart> = rows.into_iter().map(|(_, chart)| chart).collect();
+    overlay::name(cx, &mut charts);
     for (frame, chart) in column.frames.iter().zip(&mut charts) {
         let response = paint::chart(ui, cx.tokens, *frame, chart);
         crate::widgets::missing::show(ui, cx, out, *frame, chart);

@@ -188,6 +188,8 @@ pub struct Chart {
     pub missing: Option<Missing>,
     /// What the chart shows, in words.
     pub description: String,
+    /// Whether the model of a normal response is drawn in it.
+    pub modelled: bool,
 }
 
 impl Chart {
@@ -208,6 +210,7 @@ impl Chart {
             rings: Vec::new(),
             missing: None,
             description: String::new(),
+            modelled: false,
         }
     }
 

@@ -48,6 +48,7 @@ pub fn gas(cx: &Context<'_>) -> Chart {
         chart.missing = absent(Q::Vo2);
     }
     super::overlay::time(cx, &mut chart, Q::Vo2, same);
+    super::overlay::time_line(cx, &mut chart, Q::Vco2, same);
     if !cx.recording.load.t_s.is_empty() {
         let long = "work rate, W  (10 mL/min per W)";
         let words = if cx.grid.narrow { "W (10 mL/min per W)" } else { long };
@@ -126,9 +127,6 @@ pub fn heart_rate(cx: &Context<'_>) -> Chart {
     super::overlay::time(cx, &mut chart, Q::Hr, same);
     raw(cx, &mut chart, Q::Hr, same);
     average(cx, &mut chart, Q::Hr, same);
-    if let (Some(why), Some((from, _))) = (super::overlay::withheld(cx), cx.results.phases.ramp()) {
-        chart.remarks.push(([from, chart.y.high], format!("no predicted overlay: {why}")));
-    }
     chart.description = describe(cx, &[Q::Hr]);
     chart
 }
@@ -174,6 +172,10 @@ fn blood_pressure(cx: &Context<'_>, chart: Chart, floor: f64, readings: &[[f64; 
     let axis = Axis::fixed(50.0, 260.0, 100.0);
     let mut chart = chart.tied(10.0, 50.0 - 10.0 * floor, axis);
     chart.right_title = vec![Title::grey("BP, mmHg")];
+    // Pressure is a model only where it was read at rest.
+    for q in [Q::DiaBp, Q::SysBp] {
+        super::overlay::time(cx, &mut chart, q, place);
+    }
     let bars = readings.iter().map(|r| [r[0], place(r[1]), place(r[2])]).collect();
     chart.items.push(Item::Bars { bars, color: cx.tokens.line(Family::Circulation) });
     if let Some(last) = readings.last() {
@@ -203,7 +205,7 @@ fn gap_remark(cx: &Context<'_>, chart: &mut Chart, low: f64) {
 pub fn ventilation(cx: &Context<'_>) -> Chart {
     let scaled = [(Q::Ve, 1.0), (Q::Fr, 2.5), (Q::Vt, 25.0)];
     let top = scaled.iter().filter_map(|(q, k)| range(cx, *q).map(|r| r.1 * k));
-    let top = top.fold(50.0, f64::max);
+    let top = top.fold(50.0, f64::max).max(super::overlay::top(cx, Q::Ve));
     let high = (top * 1.12 / 12.5).ceil() * 12.5;
     let step = if high > 200.0 { 50.0 } else { 25.0 };
     let mut chart = Chart::new("ve", cx.time(), Axis::fixed(0.0, high, step));
@@ -218,6 +220,7 @@ pub fn ventilation(cx: &Context<'_>) -> Chart {
     if range(cx, Q::Ve).is_none() {
         chart.missing = absent(Q::Ve);
     }
+    super::overlay::time(cx, &mut chart, Q::Ve, same);
     mvv(cx, &mut chart);
     raw(cx, &mut chart, Q::Ve, same);
     average(cx, &mut chart, Q::Fr, |v| v * 2.5);
@@ -264,6 +267,8 @@ pub fn equivalents(cx: &Context<'_>) -> Chart {
     if ranges.is_empty() {
         chart.missing = absent(Q::Ve);
     }
+    super::overlay::time(cx, &mut chart, Q::EqCo2, same);
+    super::overlay::time_line(cx, &mut chart, Q::EqO2, same);
     for q in [Q::EqCo2, Q::EqO2] {
         raw(cx, &mut chart, q, same);
     }
@@ -315,6 +320,7 @@ pub fn end_tidal(cx: &Context<'_>) -> Chart {
         chart = chart.tied(1.0, -50.0, Axis::fixed(0.0, 100.0, step));
         chart.right_title = vec![Title::grey("PETCO₂, mmHg")];
     }
+    super::overlay::time(cx, &mut chart, Q::Petco2, |v| v + 50.0);
     for (q, shift) in [(Q::Petco2, 50.0), (Q::Peto2, 0.0)] {
         raw(cx, &mut chart, q, |v| v + shift);
     }
@@ -345,6 +351,7 @@ pub fn exchange_ratio(cx: &Context<'_>) -> Chart {
         color: cx.tokens.frame,
         dash: None,
     });
+    super::overlay::time(cx, &mut chart, Q::Rer, same);
     raw(cx, &mut chart, Q::Rer, same);
     average(cx, &mut chart, Q::Rer, same);
     chart.labels.clear();

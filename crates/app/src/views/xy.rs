@@ -93,6 +93,7 @@ pub fn chart(
         let color = cx.tokens.raw(family);
         chart.items.push(Item::Points { points, mark: Mark::Dot, radius: 1.6, color });
     }
+    super::overlay::against(cx, &mut chart, x, y);
     let (width, dash, ..) = series::style(y);
     let color = cx.tokens.line(family);
     chart.items.push(Item::Line { pieces: vec![line], width, color, dash });

@@ -87,6 +87,7 @@ fn chart(cx: &Context<'_>, x: (f64, f64)) -> Chart {
         lines(cx, &mut chart, course);
     }
     chart.description = describe(cx);
+    crate::views::overlay::name(cx, [&mut chart]);
     chart
 }
 
