@@ -134,7 +134,11 @@ pub fn name<'c>(cx: &Context<'_>, charts: impl IntoIterator<Item = &'c mut Chart
     let words = withheld(cx).map(|why| format!("No model of a normal response: {why}"));
     let is_withheld = words.is_some();
     let words = words.unwrap_or_else(|| wording::plain_text("overlay-label"));
-    let chart = charts.into_iter().find(|c| c.missing.is_none() && (is_withheld || c.modelled));
+    // A chart that says nothing else yet has room for it.
+    let chart = charts
+        .into_iter()
+        .filter(|c| c.missing.is_none() && (is_withheld || c.modelled))
+        .min_by_key(|c| !c.remarks.is_empty());
     if let Some(chart) = chart {
         chart.remarks.push(([chart.x.0, chart.y.high], words.clone()));
         chart.description = format!("{}. {words}", chart.description);
