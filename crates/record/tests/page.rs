@@ -112,3 +112,19 @@ fn a_signed_page_keeps_its_values_when_the_engine_gives_others() {
     assert!(html.contains("gives other values for: HR at peak"), "the difference is named");
     assert!(!page::render(&session, &signed, NOW).contains("gives other values"));
 }
+
+#[test]
+fn the_model_is_printed_with_its_sets_only_when_it_is_shown() {
+    let mut session = demo("dunlin");
+    let comb = |html: &str| html.matches("class=\"comb\"").count();
+    session.apply(&Edit::SetOverlayShown { shown: true }, NOW).expect("shown");
+    let on = page::render(&session, &session.derive(), NOW);
+    // Three figures with at least ten teeth each, and three thin lines.
+    assert!(comb(&on) >= 30, "{}", comb(&on));
+    assert_eq!(on.matches("<polyline class=\"thin\"").count(), 3);
+    assert!(on.contains("model of a normal response, for orientation (Hansen 1984"));
+    session.apply(&Edit::SetOverlayShown { shown: false }, NOW).expect("hidden");
+    let off = page::render(&session, &session.derive(), NOW);
+    assert_eq!(comb(&off), 0);
+    assert!(!off.contains("<polyline class=\"thin\"") && !off.contains("for orientation ("));
+}

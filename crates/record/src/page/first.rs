@@ -8,7 +8,7 @@ use super::model::Model;
 use super::svg::{self, Frame};
 use crate::clock;
 use crate::presentation::charts;
-use crate::presentation::key_table::Row;
+use crate::presentation::key_table::{Row, short_names};
 use crate::presentation::values::{self, Shown};
 use crate::presentation::wording::{plain_text as t, with};
 use crate::session::findings::{FindingShown, Status};
@@ -248,6 +248,7 @@ fn phase_table(h: &mut Html, m: &Model<'_>) {
 fn figures(h: &mut Html, m: &Model<'_>) {
     let recording = m.session.recording();
     let settings = &m.session.judgement().settings;
+    let overlay = settings.overlay_shown;
     h.open("section", "figures");
     h.open("figure", "pulse");
     h.open("figcaption", "");
@@ -256,7 +257,7 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     h.text(&with("page-fig-pulse-note", &[("averaging", averaging(settings.averaging))]));
     h.raw("</span>");
     h.close("figcaption");
-    match charts::o2_pulse(recording, &m.results) {
+    match charts::o2_pulse(recording, &m.results, overlay) {
         Some(chart) => {
             let frame = Frame { left: 26.0, top: 4.0, width: 388.0, height: 116.0, x_labels: true };
             h.raw(&svg::drawing(420.0, 138.0, &t("page-fig-pulse"), &[(&chart, frame)]));
@@ -266,8 +267,8 @@ fn figures(h: &mut Html, m: &Model<'_>) {
     h.close("figure");
     h.open("figure", "work");
     h.element("figcaption", "", &t("page-fig-work"));
-    let hr = charts::against_work(recording, &m.results, Quantity::Hr);
-    let vo2 = charts::against_work(recording, &m.results, Quantity::Vo2);
+    let hr = charts::against_work(recording, &m.results, Quantity::Hr, overlay);
+    let vo2 = charts::against_work(recording, &m.results, Quantity::Vo2, overlay);
     let mut list = Vec::new();
     let both = hr.is_some() && vo2.is_some();
     if let Some(hr) = &hr {
@@ -284,9 +285,21 @@ fn figures(h: &mut Html, m: &Model<'_>) {
         h.raw(&svg::drawing(270.0, 138.0, &t("page-fig-work"), &list));
     }
     h.close("figure");
-    let drawn = m.results.overlay.model.is_some() && m.results.phases.ramp().is_some();
-    h.element("p", "quiet key", &t(if drawn { "page-fig-key" } else { "page-fig-key-plain" }));
+    h.element("p", "quiet key", &figure_key(m));
     h.close("section");
+}
+
+/// What the strokes of the figures are, with the sets behind the model where it is drawn.
+fn figure_key(m: &Model<'_>) -> String {
+    let settings = &m.session.judgement().settings;
+    let model = m.results.overlay.model.as_ref().filter(|_| settings.overlay_shown);
+    if !model.is_some_and(|x| x.over_time.is_some()) || m.results.phases.ramp().is_none() {
+        return t("page-fig-key-plain");
+    }
+    let set = |id| m.results.primary(id, At::Peak).map(|o| short_names(&o.method, settings));
+    let sets: Vec<String> =
+        ["predicted-vo2-peak", "predicted-hr-peak"].into_iter().filter_map(set).collect();
+    with("page-fig-key", &[("sets", sets.join(", "))])
 }
 
 /// The averaging in words.

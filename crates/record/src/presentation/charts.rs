@@ -68,9 +68,10 @@ pub struct Chart {
 /// Longest step without a value over which a line is drawn, s.
 const GAP_S: f64 = 20.0;
 
-/// The O₂ pulse over time, from the end of the warm-up into recovery; `None` without values.
+/// The O₂ pulse over time, from the end of the warm-up into recovery, with the model of a normal
+/// response where `overlay` asks for it; `None` without values.
 #[must_use]
-pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
+pub fn o2_pulse(recording: &Recording, results: &Results, overlay: bool) -> Option<Chart> {
     let span = recording.span_s()?;
     let ramp = results.phases.ramp();
     let (from, to) = ramp.map_or(span, |(a, b)| ((a - 60.0).max(span.0), (b + 150.0).min(span.1)));
@@ -81,7 +82,7 @@ pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
     }
     let mut series = Vec::new();
     let course = results.course.as_ref();
-    let (range, middle) = predicted(results, Quantity::O2Pulse, Some);
+    let (range, middle) = predicted(results, Quantity::O2Pulse, |t| Some(t).filter(|_| overlay));
     series.extend(middle);
     series.push(Series { stroke: Stroke::Dots, runs: vec![dots], label: None });
     if let (Some(early), Some((_, end))) = (course.and_then(|c| c.early), ramp) {
@@ -105,9 +106,15 @@ pub fn o2_pulse(recording: &Recording, results: &Results) -> Option<Chart> {
     })
 }
 
-/// `quantity` against work rate over the increments; `None` without values.
+/// `quantity` against work rate over the increments, with the model of a normal response where
+/// `overlay` asks for it; `None` without values.
 #[must_use]
-pub fn against_work(recording: &Recording, results: &Results, quantity: Quantity) -> Option<Chart> {
+pub fn against_work(
+    recording: &Recording,
+    results: &Results,
+    quantity: Quantity,
+    overlay: bool,
+) -> Option<Chart> {
     let (from, to) = results.phases.ramp()?;
     let load = |t: f64| recording.load.at(t);
     let at_load = |points: Vec<(f64, f64)>| -> Vec<(f64, f64)> {
@@ -119,7 +126,7 @@ pub fn against_work(recording: &Recording, results: &Results, quantity: Quantity
         return None;
     }
     // At load end the load is off already.
-    let (range, middle) = predicted(results, quantity, |t| load(t).filter(|_| t < to));
+    let (range, middle) = predicted(results, quantity, |t| load(t).filter(|_| overlay && t < to));
     let mut series: Vec<Series> = middle.into_iter().collect();
     series.push(Series {
         stroke: Stroke::Dots,
@@ -173,9 +180,10 @@ fn predicted(
         .collect();
     let range = (0..curves.normal)
         .filter_map(|i| {
-            let low = *curve.low.get(i)?;
-            // A lower limit alone is drawn as its edge.
-            let high = curve.high.get(i).copied().unwrap_or(low);
+            // The line closes a range that has one limit only.
+            let middle = curve.middle.get(i);
+            let low = *curve.low.get(i).or(middle)?;
+            let high = *curve.high.get(i).or(middle)?;
             Some((place(i)?, shown(low), shown(high)))
         })
         .collect();

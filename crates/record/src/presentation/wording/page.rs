@@ -38,7 +38,7 @@ pub const TEXTS: &[Entry] = &[
     ("page-fig-work", "HR and V̇O₂ against work rate"),
     (
         "page-fig-key",
-        "Dashed: own early line carried on. Comb and thin line: predicted range and value. Times are those of the file; work in W.",
+        "Comb, thin line: range and value of a model of a normal response, for orientation ({sets}). Dashed: own early line carried on. Work in W.",
     ),
     (
         "page-fig-key-plain",
