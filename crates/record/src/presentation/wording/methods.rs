@@ -9,6 +9,7 @@ pub const TEXTS: &[Entry] = &[
     ("method-highest-#s-corrected", "Highest # s, noise-corrected"),
     ("method-same-window-as-vo#-peak", "Window of peak V̇O₂"),
     ("method-highest-load", "Highest load"),
+    ("method-#-less-age", "# − age"),
     ("method-lowest-#s", "Lowest # s"),
     ("method-lowest-noted", "Lowest reading noted"),
     ("method-window-mean", "Mean of the window"),
