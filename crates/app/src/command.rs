@@ -106,6 +106,7 @@ impl Command {
                 Dialog::Open => "Open file…".into(),
                 Dialog::Save => "Save session as…".into(),
                 Dialog::Export => "Export page…".into(),
+                Dialog::Sets => "Predicted sets and their fit…".into(),
                 Dialog::Facts => "Facts…".into(),
                 Dialog::Sign => "Sign…".into(),
                 Dialog::Keys => "Keys".into(),

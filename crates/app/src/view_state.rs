@@ -130,6 +130,8 @@ pub enum Dialog {
     Event,
     /// Leave out breaths: of this stretch, s, or of the breath at the cursor.
     Exclude(Option<(f64, f64)>),
+    /// Choose predicted sets.
+    Sets,
     /// Inputs of the stroke-volume sentence.
     Inputs,
     /// Edit a statement.

@@ -6,6 +6,7 @@ pub mod facts;
 pub mod files;
 pub mod inputs;
 pub mod keys;
+pub mod sets;
 pub mod sign;
 pub mod statement;
 
@@ -78,6 +79,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
                 Dialog::Keys => keys::show(ui),
                 Dialog::Event => event::show(ui, cx, form, out),
                 Dialog::Exclude(stretch) => exclude::show(ui, cx, form, out, *stretch),
+                Dialog::Sets => sets::show(ui, cx, out),
                 Dialog::Inputs => inputs::show(ui, cx, form, out),
                 Dialog::Statement(id) => statement::show(ui, cx, form, out, id),
                 Dialog::Unsaved(next) => files::unsaved(ui, out, next),

@@ -6,7 +6,7 @@ use egui::{Align, Rect, Role, Sense, Ui, WidgetInfo, pos2, vec2};
 use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::theme::size;
-use crate::view_state::View;
+use crate::view_state::{Dialog, View};
 use crate::widgets::text::{self, Run};
 use record::session::Edit;
 
@@ -167,6 +167,11 @@ fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
         .width(210.0)
         .truncate()
         .show_ui(ui, |ui| {
+            let choose = Command::Show(Dialog::Sets);
+            if ui.button(choose.label()).clicked() {
+                out.push(choose);
+            }
+            ui.separator();
             for (target, now) in [(Predicts::Vo2Peak, &choice.vo2), (Predicts::HrPeak, &choice.hr)]
             {
                 let of = |s: &&analysis::predicted::sets::PredictedSet| {
