@@ -293,7 +293,7 @@ fn figures(h: &mut Html, m: &Model<'_>) {
 fn figure_key(m: &Model<'_>) -> String {
     let settings = &m.session.judgement().settings;
     let model = m.results.overlay.model.as_ref().filter(|_| settings.overlay_shown);
-    if !model.is_some_and(|x| x.over_time.is_some()) || m.results.phases.ramp().is_none() {
+    if model.is_none_or(|x| x.over_time.is_none()) || m.results.phases.ramp().is_none() {
         return t("page-fig-key-plain");
     }
     let set = |id| m.results.primary(id, At::Peak).map(|o| short_names(&o.method, settings));
