@@ -1,7 +1,7 @@
 //! Effort in three states: maximal metabolic effort, stopped at a demonstrated limit, or
 //! submaximal without a demonstrated limit. RER alone never decides.
 
-use crate::facts::{EventKind, StopKind};
+use crate::facts::{EventKind, Rhythm, StopKind};
 use crate::note::{Arg, Note};
 use crate::quantity::Quantity;
 use crate::regression;
@@ -90,12 +90,24 @@ fn rer(stage: &Stage<'_>) -> Criterion {
     Ok(value >= limit)
 }
 
-/// Peak HR by age, per cent of 210 − age (Wagner et al. 2020).
+/// Peak HR against age, from the stage.
 fn heart_rate(stage: &Stage<'_>) -> Criterion {
     let value = known(stage, "hr-peak", At::Peak)?;
     let age = stage.facts.subject.age_years.ok_or_else(|| Note::missing_fact("age"))?;
+    let test = &stage.facts.test;
+    let altered = test.rate_slowing_drug.taken == Some(true)
+        || test.rhythm.is_some_and(|rhythm| rhythm != Rhythm::Sinus);
+    rate_criterion(value, age, altered)
+}
+
+/// Peak HR by age, per cent of 210 − age (Wagner et al. 2020). Below it nothing is judged where a
+/// drug or the rhythm sets the rate.
+fn rate_criterion(peak: f64, age: f64, altered: bool) -> Criterion {
     let share = if age < 40.0 { 0.96 } else { 0.99 };
-    Ok(value >= share * (210.0 - age))
+    match peak >= share * (210.0 - age) {
+        false if altered => Err(Note::new("rate-prediction-does-not-hold")),
+        met => Ok(met),
+    }
 }
 
 fn lactate(stage: &Stage<'_>) -> Criterion {
@@ -170,6 +182,18 @@ fn plateau(stage: &Stage<'_>) -> Result<&'static str, Note> {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    /// 99 % of 210 − 56 is 152.46, 96 % of 210 − 30 is 172.8.
+    #[test]
+    fn a_slowed_rate_cannot_fail_the_rate_criterion() {
+        assert_eq!(rate_criterion(152.0, 56.0, false), Ok(false));
+        assert_eq!(rate_criterion(153.0, 56.0, false), Ok(true));
+        assert_eq!(rate_criterion(172.0, 30.0, false), Ok(false));
+        assert_eq!(rate_criterion(173.0, 30.0, false), Ok(true));
+        assert_eq!(rate_criterion(153.0, 56.0, true), Ok(true));
+        let why = rate_criterion(109.0, 56.0, true).unwrap_err();
+        assert_eq!(why.code, "rate-prediction-does-not-hold");
+    }
 
     #[test]
     fn rer_alone_never_decides() {

@@ -1,6 +1,8 @@
 //! Answers about columns and breaths left out, in the window.
 
 mod support;
+#[path = "support/window.rs"]
+mod window_harness;
 
 use analysis::quantity::Quantity;
 use analysis::results::FlagKind;
@@ -13,13 +15,7 @@ use egui_kittest::kittest::Queryable;
 use record::facts_file::FactsFile;
 
 fn window(app: App) -> Harness<'static, App> {
-    let mut harness = Harness::<App>::builder()
-        .with_size([1920.0, 1080.0])
-        .with_context_setup(app::theme::install)
-        .renderer(support::CpuRenderer::default())
-        .build_ui_state(|ui, app: &mut App| app.ui(ui), app);
-    harness.run();
-    harness
+    window_harness::open(app, [1920.0, 1080.0])
 }
 
 fn type_into(h: &mut Harness<'_, App>, label: &str, text: &str) {

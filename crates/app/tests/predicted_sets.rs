@@ -1,19 +1,15 @@
 //! Choosing predicted sets in the window.
 
 mod support;
+#[path = "support/window.rs"]
+mod window_harness;
 
 use app::App;
-use egui_kittest::Harness;
 use egui_kittest::kittest::Queryable;
 
 #[test]
 fn the_chooser_tells_the_fit_and_unlocking_is_an_edit_that_can_be_undone() {
-    let mut h = Harness::<App>::builder()
-        .with_size([1920.0, 1080.0])
-        .with_context_setup(app::theme::install)
-        .renderer(support::CpuRenderer::default())
-        .build_ui_state(|ui, app: &mut App| app.ui(ui), App::on_demo());
-    h.run();
+    let mut h = window_harness::open(App::on_demo(), [1920.0, 1080.0]);
     h.get_by_label("Predicted sets").click();
     h.run();
     h.get_by_label("Predicted sets and their fit…").click();

@@ -1,6 +1,8 @@
 //! The time course as a reader uses it, found by role and label.
 
 mod support;
+#[path = "support/window.rs"]
+mod window_harness;
 
 use app::App;
 use egui::{Key, Modifiers, vec2};
@@ -8,14 +10,7 @@ use egui_kittest::Harness;
 use egui_kittest::kittest::Queryable;
 
 fn window(size: [f32; 2]) -> Harness<'static, App> {
-    let app = App::on_demo();
-    let mut harness = Harness::<App>::builder()
-        .with_size(size)
-        .with_context_setup(app::theme::install)
-        .renderer(support::CpuRenderer::default())
-        .build_ui_state(|ui, app: &mut App| app.ui(ui), app);
-    harness.run();
-    harness
+    window_harness::open(App::on_demo(), size)
 }
 
 fn ramp_start(h: &Harness<'_, App>) -> f64 {

@@ -1,6 +1,8 @@
 //! The whole job once: open, decide on a statement, take back, save, reopen, sign, export.
 
 mod support;
+#[path = "support/window.rs"]
+mod window_harness;
 
 use app::App;
 use app::command::Command;
@@ -11,13 +13,7 @@ use egui_kittest::kittest::Queryable;
 use record::session::findings::Status;
 
 fn window(app: App) -> Harness<'static, App> {
-    let mut harness = Harness::<App>::builder()
-        .with_size([1920.0, 1080.0])
-        .with_context_setup(app::theme::install)
-        .renderer(support::CpuRenderer::default())
-        .build_ui_state(|ui, app: &mut App| app.ui(ui), app);
-    harness.run();
-    harness
+    window_harness::open(app, [1920.0, 1080.0])
 }
 
 fn first_status(h: &Harness<'_, App>) -> Status {

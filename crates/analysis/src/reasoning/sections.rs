@@ -111,7 +111,11 @@ pub(crate) fn effort(stage: &Stage<'_>) -> Option<Statement> {
             Some("met" | "present") => draft.supported_by(piece(met)),
             Some(_) => draft.contradicted_by(piece(not_met)),
             None => {
-                let note = Note::new("not-measured").with("sign", Arg::Word(met));
+                let why = criterion.reason.as_ref().map(|why| why.code);
+                let note = match why {
+                    Some("rate-prediction-does-not-hold") => Note::new("criterion-hr-not-judged"),
+                    _ => Note::new("not-measured").with("sign", Arg::Word(met)),
+                };
                 draft.open(Evidence { note, rests_on: Vec::new() })
             }
         };

@@ -101,20 +101,16 @@ pub fn number(ui: &mut Ui, at: Pos2, align: Align, runs: &[Run], key: &Key<'_>) 
 
 /// Gives `rect` the node of a shown number.
 pub fn mark_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
-    let id = ui.make_persistent_id(("number", key.id));
-    let response = ui.interact(rect, id, Sense::hover());
-    response.widget_info(|| WidgetInfo::labeled(Role::Label, true, key.value));
-    let (author, name) = (key.id.to_owned(), key.name.to_owned());
-    ui.ctx().accesskit_node_builder(response.id, |node| {
-        node.set_author_id(author);
-        node.set_label(name);
-    });
-    response
+    node(ui, rect, "number", key)
 }
 
 /// The same in the key table, where a number may stand a second time in the window.
 pub fn table_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
-    let id = ui.make_persistent_id(("table number", key.id));
+    node(ui, rect, "table number", key)
+}
+
+fn node(ui: &mut Ui, rect: Rect, place: &str, key: &Key<'_>) -> Response {
+    let id = ui.make_persistent_id((place, key.id));
     let response = ui.interact(rect, id, Sense::hover());
     response.widget_info(|| WidgetInfo::labeled(Role::Label, true, key.value));
     let (author, name) = (key.id.to_owned(), key.name.to_owned());

@@ -34,6 +34,7 @@ pub const TEXTS: &[Entry] = &[
     ("criterion-rer-not-met", "RER criterion for age not met"),
     ("criterion-hr", "HR criterion for age met"),
     ("criterion-hr-not-met", "HR criterion for age not met"),
+    ("criterion-hr-not-judged", "HR criterion for age not judged: rhythm or drug changes the rate"),
     ("criterion-lactate", "Lactate criterion met"),
     ("criterion-lactate-not-met", "Lactate criterion not met"),
     ("criterion-plateau", "V̇O₂ levelled in the last minute"),
