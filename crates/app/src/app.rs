@@ -3,13 +3,13 @@
 use std::sync::{Arc, LazyLock};
 
 use analysis::recording::Recording;
-use egui::{Rect, Theme, Ui};
+use egui::{Rect, Theme, Ui, pos2};
 use record::facts_file::FactsFile;
 
 use crate::background::{Background, Picked};
 use crate::chart::handles::{self, HandleKind};
 use crate::chart::interact;
-use crate::chart::layout::{Grid, Parts};
+use crate::chart::layout::{Grid, LEAST, Parts};
 use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::derived::Derived;
@@ -76,8 +76,29 @@ impl App {
         ctx.set_theme(self.preferences.theme);
     }
 
-    /// Draws one frame into `ui`, which covers the window.
+    /// Draws one frame into `ui`, which covers the window. A window smaller than the layout is made
+    /// for shows a part of it, with bars to reach the rest.
     pub fn ui(&mut self, ui: &mut Ui) {
+        let window = ui.ctx().content_rect();
+        let size = window.size().max(LEAST);
+        if size == window.size() {
+            return self.frame(ui, window);
+        }
+        let outer = ui.spacing().scroll;
+        ui.spacing_mut().scroll = egui::style::ScrollStyle::solid();
+        egui::ScrollArea::both()
+            .id_salt("window")
+            .auto_shrink(false)
+            // The wheel is the zoom of the charts.
+            .scroll_source(egui::scroll_area::ScrollSource::SCROLL_BAR)
+            .show(ui, |ui| {
+                ui.spacing_mut().scroll = outer;
+                let (_, window) = ui.allocate_space(size);
+                self.frame(ui, window);
+            });
+    }
+
+    fn frame(&mut self, ui: &mut Ui, window: Rect) {
         if ui.ctx().theme() != self.preferences.theme {
             ui.ctx().set_theme(self.preferences.theme);
         }
@@ -85,7 +106,7 @@ impl App {
         commands.extend(self.arrivals(ui));
         self.carry_out(ui, commands);
         self.derive();
-        let commands = self.draw(ui);
+        let commands = self.draw(ui, window);
         self.carry_out(ui, commands);
     }
 
@@ -169,8 +190,7 @@ impl App {
         dispatch::carry_out(self, ui, command);
     }
 
-    fn draw(&mut self, ui: &mut Ui) -> Outbox {
-        let window = ui.ctx().content_rect();
+    fn draw(&mut self, ui: &mut Ui, window: Rect) -> Outbox {
         let grid = Grid::of(window.width());
         let parts = Parts::of(window, &grid);
         let tokens = Tokens::of(self.preferences.theme);
@@ -253,7 +273,8 @@ fn paint(
     let geometry = views::show(ui, cx, out, parts.view);
     panels::findings::show(ui, cx, out, parts.sheet);
     if cx.view.wide_findings {
-        let over = Rect::from_min_max(parts.strip.left_top(), parts.sheet.right_bottom());
+        let left = pos2(window.left(), parts.strip.top());
+        let over = Rect::from_min_max(left, parts.sheet.right_bottom());
         panels::findings::wide(ui, cx, out, over);
     }
     geometry

@@ -1,6 +1,10 @@
 //! Where everything stands: the grid of the window by its logical width, and columns of frames.
 
-use egui::{Rect, pos2, vec2};
+use egui::{Rect, Vec2, pos2, vec2};
+
+/// The smallest window for which the layout is made, px at 1×: a laptop of 1280 × 720 less a task
+/// bar.
+pub const LEAST: Vec2 = vec2(1240.0, 660.0);
 
 /// Measures of the window, px at 1×.
 #[derive(Clone, Copy, Debug, PartialEq)]

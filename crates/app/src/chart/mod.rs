@@ -9,3 +9,4 @@ pub mod layout;
 pub mod paint;
 pub mod spec;
 pub mod ticks;
+pub mod words;

@@ -6,7 +6,7 @@ use egui::{
 use egui_plot::{Plot, PlotBounds};
 
 use super::items::Drawn;
-use super::layout::{Scale, spread};
+use super::layout::Scale;
 use super::spec::{Chart, Title};
 use super::ticks::{clock, ticks, time_step};
 use crate::theme::{Family, Tokens, size};
@@ -23,8 +23,7 @@ pub fn chart(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &mut Chart) -> Re
     ground(ui, tokens, frame, chart, &x);
     if chart.missing.is_none() {
         plot(ui, tokens, frame, chart, true);
-        end_labels(ui, tokens, frame, chart, &x);
-        remarks(ui, tokens, frame, chart, &x);
+        super::words::show(ui, tokens, frame, chart, &x);
     }
     let id = ui.make_persistent_id(("frame", chart.id));
     let response = ui.interact(frame, id, Sense::CLICK | Sense::DRAG);
@@ -93,7 +92,9 @@ fn titles(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart) {
     let y = frame.top() - 6.0;
     let right = runs(tokens, &chart.right_title);
     let mut left = runs(tokens, &chart.title);
-    let room = frame.width() - text::width(ui, &right) - 8.0;
+    // Without a title at the right the left one may stand over the right ticks.
+    let room = frame.width() + if right.is_empty() { 40.0 } else { -8.0 };
+    let room = room - text::width(ui, &right);
     while left.len() > 1 && text::width(ui, &left) > room {
         left.pop();
     }
@@ -109,15 +110,16 @@ fn ground(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
     let half = Stroke::new(1.0, tokens.grid.gamma_multiply(0.5));
     match &chart.x_axis {
         Some(axis) => {
+            let base = frame.bottom() + 15.0;
+            let grey = |words: String| [Run::new(words, size::BODY, tokens.ink2)];
+            let unit = grey(chart.x_unit.clone());
+            let unit = text::paint(ui, pos2(frame.right() + 46.0, base), Align::Max, &unit);
             for t in axis.ticks() {
                 painter.vline(x.place(t), frame.y_range(), full);
-                let at = pos2(x.place(t), frame.bottom() + 15.0);
-                text::paint(
-                    ui,
-                    at,
-                    Align::Center,
-                    &[Run::new(axis.label(t), size::BODY, tokens.ink2)],
-                );
+                let label = grey(axis.label(t));
+                if x.place(t) + 0.5 * text::width(ui, &label) < unit.left() {
+                    text::paint(ui, pos2(x.place(t), base), Align::Center, &label);
+                }
             }
         }
         None => {
@@ -143,53 +145,6 @@ fn ground(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
     let edge = Stroke::new(1.0, tokens.frame);
     painter.vline(frame.left(), frame.y_range(), edge);
     painter.hline(frame.x_range(), frame.bottom(), edge);
-}
-
-fn end_labels(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
-    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
-    let shown: Vec<_> = chart.labels.iter().filter(|l| x.holds(l.at[0])).collect();
-    let wanted: Vec<f32> =
-        shown.iter().map(|l| y.place(l.at[1]).clamp(frame.top(), frame.bottom())).collect();
-    let placed = spread(&wanted, 14.0, (frame.top() + 8.0, frame.bottom() - 8.0));
-    for ((label, want), at_y) in shown.iter().zip(&wanted).zip(&placed) {
-        let run = [Run::new(label.text.clone(), size::BODY, label.color)];
-        let wide = text::width(ui, &run);
-        let line_x = x.place(label.at[0]);
-        let mut left = line_x + 26.0;
-        let mut at_y = *at_y;
-        let mut leader = (want - at_y).abs() > 3.0 || shown.len() > 1;
-        if left + wide > frame.right() - 2.0 {
-            // No room after the line: under it, or over it near the bottom.
-            left = frame.right() - 6.0 - wide;
-            leader = false;
-            let under = at_y + 13.0;
-            at_y = if under + 8.0 < frame.bottom() { under } else { at_y - 13.0 };
-        } else if !leader {
-            left = line_x + 10.0;
-        }
-        if leader {
-            let stroke = Stroke::new(1.0, label.color.gamma_multiply(0.7));
-            ui.painter().line_segment([pos2(line_x + 2.0, *want), pos2(left - 3.0, at_y)], stroke);
-        }
-        let backing = Rect::from_min_size(pos2(left - 1.0, at_y - 7.0), vec2(wide + 2.0, 14.0));
-        ui.painter().rect_filled(backing, 0.0, tokens.plot.gamma_multiply(0.85));
-        text::line(ui, pos2(left, at_y + 4.5), Align::Min, &run);
-    }
-}
-
-fn remarks(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
-    let y = Scale { px: (frame.bottom(), frame.top()), value: (chart.y.low, chart.y.high) };
-    for (at, remark) in &chart.remarks {
-        let run = [Run::new(remark.clone(), size::BODY, tokens.ink2)];
-        let wide = text::width(ui, &run);
-        let left = x
-            .place(at[0])
-            .clamp(frame.left() + 4.0, (frame.right() - wide - 4.0).max(frame.left()));
-        let base = (y.place(at[1]) + 4.5).clamp(frame.top() + 13.0, frame.bottom() - 4.0);
-        let backing = Rect::from_min_size(pos2(left - 2.0, base - 11.5), vec2(wide + 4.0, 15.0));
-        ui.painter().rect_filled(backing, 0.0, tokens.plot.gamma_multiply(0.85));
-        text::line(ui, pos2(left, base), Align::Min, &run);
-    }
 }
 
 /// Time labels under a column; those that `covered` hides are left out whole.

@@ -172,6 +172,8 @@ pub struct Chart {
     pub x: (f64, f64),
     /// Ground lines and labels along x; `None` for a time chart, whose labels stand under the column.
     pub x_axis: Option<Axis>,
+    /// Unit at the end of that axis.
+    pub x_unit: String,
     /// y axis.
     pub y: Axis,
     /// Labels at the right edge: y, text.
@@ -202,6 +204,7 @@ impl Chart {
             right_title: Vec::new(),
             x,
             x_axis: None,
+            x_unit: String::new(),
             y,
             right: Vec::new(),
             items: Vec::new(),

@@ -69,8 +69,9 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
         .open(&mut open)
         .anchor(Align2::CENTER_CENTER, vec2(0.0, 0.0))
         .show(ui.ctx(), |ui| {
-            ui.set_width(620.0_f32.min(ui.ctx().content_rect().width() - 60.0));
-            match dialog {
+            let room = ui.ctx().content_rect().size();
+            ui.set_width(620.0_f32.min(room.x - 60.0));
+            egui::ScrollArea::vertical().max_height(room.y - 90.0).show(ui, |ui| match dialog {
                 Dialog::Open => files::open(ui, cx, form, out),
                 Dialog::Save => files::save(ui, cx, form, out),
                 Dialog::Export => files::export(ui, cx, form, out),
@@ -83,7 +84,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
                 Dialog::Inputs => inputs::show(ui, cx, form, out),
                 Dialog::Statement(id) => statement::show(ui, cx, form, out, id),
                 Dialog::Unsaved(next) => files::unsaved(ui, out, next),
-            }
+            });
         });
     let escaped = ui.input_mut(|i| i.consume_key(egui::Modifiers::NONE, egui::Key::Escape));
     if response.is_some() && (!open || escaped) {

@@ -52,6 +52,8 @@ fn apply(style: &mut egui::Style, tokens: &Tokens) {
     style.spacing.icon_width_inner = 9.0;
     let v = &mut style.visuals;
     v.dark_mode = tokens.dark;
+    // What cannot be used now is still read.
+    v.disabled_alpha = 0.75;
     v.override_text_color = None;
     v.weak_text_color = Some(tokens.ink2);
     v.panel_fill = tokens.window;

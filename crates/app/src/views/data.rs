@@ -35,7 +35,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     if ui.put(copy, egui::Button::new("Copy table")).clicked() {
         ui.ctx().copy_text(table(cx, &columns));
     }
-    let leave = Rect::from_min_size(copy.left_top() - vec2(136.0, 0.0), vec2(130.0, 24.0));
+    let leave = Rect::from_min_size(copy.left_top() - vec2(146.0, 0.0), vec2(140.0, 24.0));
     let command = Command::Show(Dialog::Exclude(None));
     let button = egui::Button::new(command.label());
     let enabled = command.available(cx);

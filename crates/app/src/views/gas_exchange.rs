@@ -22,22 +22,10 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
         places[1].min + egui::vec2(16.0, 0.0),
         places[1].max - egui::vec2(40.0, 0.0),
     );
-    let ids: Vec<&str> = cx
-        .results
-        .outcomes
-        .iter()
-        .map(|o| o.id.as_ref())
-        .filter(|id| {
-            ["pet", "spo2", "vd-vt", "pa-", "p-a", "paco2", "eq-co2", "a-a"]
-                .iter()
-                .any(|lead| id.starts_with(lead))
-        })
-        .fold(Vec::new(), |mut all, id| {
-            if !all.contains(&id) {
-                all.push(id);
-            }
-            all
-        });
-    outcome_list::show(ui, cx, list, "Gas exchange", &ids);
+    outcome_list::show(ui, cx, list, "Gas exchange", |id| {
+        ["pet", "spo2", "vd-vt", "pa-", "p-a", "paco2", "eq-co2", "a-a"]
+            .iter()
+            .any(|lead| id.starts_with(lead))
+    });
     vec![geometry]
 }

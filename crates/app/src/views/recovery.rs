@@ -33,20 +33,8 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
         places[1].min + egui::vec2(16.0, 0.0),
         places[1].max - egui::vec2(40.0, 0.0),
     );
-    let ids: Vec<&str> = cx
-        .results
-        .outcomes
-        .iter()
-        .map(|o| o.id.as_ref())
-        .filter(|id| {
-            id.contains("recovery") || id.contains("half-time") || id.contains("overshoot")
-        })
-        .fold(Vec::new(), |mut all, id| {
-            if !all.contains(&id) {
-                all.push(id);
-            }
-            all
-        });
-    outcome_list::show(ui, cx, list, "Recovery", &ids);
+    outcome_list::show(ui, cx, list, "Recovery", |id| {
+        ["recovery", "half-time", "overshoot"].iter().any(|part| id.contains(part))
+    });
     vec![geometry]
 }

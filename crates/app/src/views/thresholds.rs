@@ -4,7 +4,7 @@ use analysis::decisions::Mark as Threshold;
 use analysis::quantity::Quantity as Q;
 use analysis::results::At;
 use analysis::thresholds::Proposal;
-use egui::{Align, Rect, Ui, pos2};
+use egui::{Align, Rect, ScrollArea, Sense, Ui, UiBuilder, pos2, vec2};
 use record::presentation::wording;
 
 use super::{time_charts as charts, xy};
@@ -12,7 +12,7 @@ use crate::chart::column::{self, Side};
 use crate::chart::interact::Geometry;
 use crate::chart::layout::columns;
 use crate::chart::spec::{CARRIED, Chart, Item, Mark, Title};
-use crate::chart::ticks::{Axis, clock};
+use crate::chart::ticks::clock;
 use crate::command::Outbox;
 use crate::context::Context;
 use crate::theme::{Family, size};
@@ -33,7 +33,11 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
     let upper = Rect::from_min_max(right.min, pos2(right.right(), split));
     v_slope(ui, cx, xy::frame(upper));
     let lower = Rect::from_min_max(pos2(right.left() + 38.0, split + 14.0), right.max);
-    summary(ui, cx, lower);
+    let child = &mut ui.new_child(UiBuilder::new().max_rect(lower).id_salt("thresholds"));
+    ScrollArea::vertical().auto_shrink(false).show(child, |ui| {
+        ui.spacing_mut().item_spacing.y = 0.0;
+        summary(ui, cx, lower.width());
+    });
     vec![geometry]
 }
 
@@ -99,13 +103,15 @@ fn mark(cx: &Context<'_>, chart: &mut Chart) {
 }
 
 /// Both thresholds with every method, and why where there is none.
-fn summary(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
+fn summary(ui: &mut Ui, cx: &Context<'_>, width: f32) {
     let t = cx.tokens;
+    let rect = Rect::from_min_size(ui.cursor().min, vec2(width, 0.0));
     let head = [Run::new("Thresholds", size::SECTION, t.ink)];
     text::line(ui, pos2(rect.left(), rect.top() + 14.0), Align::Min, &head);
-    let x = [0.42, 0.62, 0.82, 0.98].map(|s| rect.left() + rect.width() * s);
+    let x = [0.50, 0.70, 0.875, 0.98].map(|s| rect.left() + rect.width() * s);
     let mut y = rect.top() + 36.0;
-    for (x, words) in x.into_iter().zip(["V̇O₂", "this recording", "if repeated", "time"]) {
+    for (x, words) in x.into_iter().zip(["V̇O₂, L/min", "this recording", "if repeated", "time"])
+    {
         text::plain(ui, pos2(x, y), Align::Max, words, size::BODY, t.ink2);
     }
     for (name, mark, id, at) in
@@ -120,12 +126,14 @@ fn summary(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
             let ink = if outcome.primary { t.ink } else { t.ink2 };
             text::plain(ui, pos2(rect.left(), y), Align::Min, label, size::BODY, ink);
             if let Some(reason) = &shown.reason {
-                let words = reason.clone();
-                text::plain(ui, pos2(x[3], y), Align::Max, words, size::BODY, t.ink2);
+                let at = pos2(rect.left() + 12.0, y + 4.0);
+                let room = rect.width() - 12.0;
+                let why = text::block(ui, at, room, reason, size::BODY, t.ink2);
+                y = why.rect.bottom() - 3.0;
                 continue;
             }
             let value = format!("{} {}", shown.value, shown.unit);
-            let run = [Run::new(value.clone(), size::BODY, ink)];
+            let run = [Run::new(shown.value.clone(), size::BODY, ink)];
             if outcome.primary {
                 let key = Key { id: &shown.key, name, value: &value };
                 text::number(ui, pos2(x[0], y), Align::Max, &run, &key);
@@ -141,11 +149,11 @@ fn summary(ui: &mut Ui, cx: &Context<'_>, rect: Rect) {
             }
         }
         if let Some(words) = why(cx, mark) {
-            y += 18.0;
-            text::plain(ui, pos2(rect.left(), y), Align::Min, words, size::BODY, t.ink2);
+            let at = pos2(rect.left(), y + 7.0);
+            y = text::block(ui, at, rect.width(), &words, size::BODY, t.ink2).rect.bottom() - 3.0;
         }
     }
-    let _ = Axis::fixed(0.0, 1.0, 1.0);
+    ui.allocate_rect(rect.with_max_y(y + 6.0), Sense::hover());
 }
 
 fn time(cx: &Context<'_>, mark: Threshold) -> Option<f64> {

@@ -14,6 +14,17 @@ use crate::command::Outbox;
 use crate::context::Context;
 use crate::theme::Family;
 
+/// What is listed beside the charts.
+const BREATHING: [&str; 7] = [
+    "ve-vco2-slope-to-vt2",
+    "ve-vco2-slope-full",
+    "oues",
+    "breathing-reserve",
+    "ve-peak",
+    "eq-co2-nadir",
+    "oscillation",
+];
+
 /// Draws the view.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<Geometry> {
     let places = columns(rect, 2, cx.grid.gap);
@@ -23,21 +34,10 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
     xy::draw(ui, cx, cells[0], ve_on_vco2(cx), "L/min");
     xy::draw(ui, cx, cells[1], vt_on_ve(cx), "L/min");
     xy::draw(ui, cx, cells[2], oues(cx), "L/min");
-    outcome_list::show(
-        ui,
-        cx,
-        cells[3].expand2(egui::vec2(20.0, 18.0)),
-        "Breathing",
-        &[
-            "ve-vco2-slope-to-vt2",
-            "ve-vco2-slope-full",
-            "oues",
-            "breathing-reserve",
-            "ve-peak",
-            "eq-co2-nadir",
-            "oscillation",
-        ],
-    );
+    let place = cells[3];
+    let list =
+        Rect::from_min_max(place.min - egui::vec2(10.0, 18.0), place.max + egui::vec2(46.0, 18.0));
+    outcome_list::show(ui, cx, list, "Breathing", |id| BREATHING.contains(&id));
     vec![geometry]
 }
 

@@ -1,16 +1,15 @@
 //! Charts of one quantity against another over the increments, and cells to put them in.
 
 use analysis::quantity::Quantity;
-use egui::{Align, Rect, Ui, pos2, vec2};
+use egui::{Rect, Ui, pos2, vec2};
 
 use super::series;
 use crate::chart::paint;
 use crate::chart::spec::{Chart, Item, Mark, Point, Title};
 use crate::chart::ticks::Axis;
 use crate::context::Context;
-use crate::theme::{Family, size};
+use crate::theme::Family;
 use crate::values;
-use crate::widgets::text::{self, Run};
 
 /// Averaged path of `y` on `x` between two instants, shown units.
 #[must_use]
@@ -140,17 +139,11 @@ pub fn frame(cell: Rect) -> Rect {
     )
 }
 
-/// Draws `chart` and names its x unit at the right end.
-pub fn draw(ui: &mut Ui, cx: &Context<'_>, frame: Rect, mut chart: Chart, x_name: &str) {
+/// Draws `chart` with its x unit at the right end.
+pub fn draw(ui: &mut Ui, cx: &Context<'_>, frame: Rect, mut chart: Chart, x_unit: &str) {
+    chart.x_unit = x_unit.to_owned();
     paint::chart(ui, cx.tokens, frame, &mut chart);
     crate::widgets::missing::show(ui, cx, &mut Vec::new(), frame, &chart);
-    let run = [Run::new(x_name, size::BODY, cx.tokens.ink2)];
-    let wide = text::width(ui, &run);
-    let at = pos2(frame.right() + 10.0, frame.bottom() + 15.0);
-    let at = if wide < 34.0 { at } else { pos2(frame.right() - wide, frame.bottom() + 15.0) };
-    if wide < 34.0 {
-        text::paint(ui, at, Align::Min, &run);
-    }
 }
 
 /// A straight line between two x.

@@ -38,7 +38,7 @@ pub fn styled(
     let t = cx.tokens;
     let available = command.available(cx);
     let (fill, ink) = if strong { (t.ink, t.plot) } else { (t.control, t.ink) };
-    let words = RichText::new(label).size(size::BODY).color(if available { ink } else { t.ink2 });
+    let words = RichText::new(label).size(size::BODY).color(if available { ink } else { t.ink });
     let mut button = Button::new(words).wrap_mode(egui::TextWrapMode::Truncate);
     if strong && available {
         button = button.fill(fill).stroke(Stroke::new(1.0, t.ink));

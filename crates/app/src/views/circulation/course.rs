@@ -255,14 +255,14 @@ fn ramp_time(ui: &mut Ui, cx: &Context<'_>, labels: Rect, scale: &Scale) {
     let start = cx.results.phases.ramp().map_or(0.0, |r| r.0);
     let shown = (scale.value.0 - start, scale.value.1 - start);
     let step = time_step(shown.1 - shown.0, labels.width(), 56.0);
+    let base = labels.bottom() - 4.0;
+    let run = [Run::new("ramp time", size::BODY, cx.tokens.ink2)];
+    let name = text::paint(ui, pos2(labels.right(), base), Align::Max, &run);
     for t in ticks(shown.0, shown.1, step) {
         let x = scale.place(t + start);
-        if x > labels.right() - 66.0 || x < labels.left() + 10.0 {
-            continue;
-        }
         let run = [Run::new(clock(t), size::BODY, cx.tokens.ink2)];
-        text::paint(ui, pos2(x, labels.bottom() - 4.0), Align::Center, &run);
+        if x + 0.5 * text::width(ui, &run) < name.left() - 4.0 && x > labels.left() + 10.0 {
+            text::paint(ui, pos2(x, base), Align::Center, &run);
+        }
     }
-    let run = [Run::new("ramp time", size::BODY, cx.tokens.ink2)];
-    text::paint(ui, pos2(labels.right(), labels.bottom() - 4.0), Align::Max, &run);
 }

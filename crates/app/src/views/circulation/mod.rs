@@ -6,7 +6,7 @@ mod plane;
 mod slopes;
 mod table;
 
-use egui::{Rect, Ui, pos2};
+use egui::{Rect, ScrollArea, Ui, UiBuilder, pos2, vec2};
 
 use crate::chart::interact::Geometry;
 use crate::command::Outbox;
@@ -69,6 +69,10 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
         slopes::against_work(ui, cx, places.against_work);
     }
     plane::show(ui, cx, out, places.plane);
-    table::show(ui, cx, out, places.table);
+    let table = &mut ui.new_child(UiBuilder::new().max_rect(places.table).id_salt("two factors"));
+    ScrollArea::vertical().auto_shrink(false).show(table, |ui| {
+        ui.spacing_mut().item_spacing.y = 0.0;
+        table::show(ui, cx, out, places.table.size() - vec2(4.0, 0.0));
+    });
     vec![geometry]
 }

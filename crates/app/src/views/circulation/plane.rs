@@ -7,6 +7,7 @@ use crate::chart::layout::{Scale, spread};
 use crate::chart::paint;
 use crate::chart::spec::{Chart, DOTS, Dash, Item, LONG, Mark, Missing, Point};
 use crate::chart::ticks::{Axis, clock};
+use crate::chart::words;
 use crate::command::{Command, Outbox};
 use crate::context::Context;
 use crate::theme::{Family, size};
@@ -192,7 +193,8 @@ fn names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, chart: &Chart) {
         }
     }
     let foot = frame.left_bottom() + egui::vec2(8.0, -8.0);
-    text::line(ui, foot, Align::Min, &grey("mL/beat on each dotted line".into()));
+    let foot = text::line(ui, foot, Align::Min, &grey("mL/beat on each dotted line".into()));
+    let mut taken = vec![foot.rect];
     if let Some(region) = fick.region {
         let percent = |f: f64| format!("above {:.0}\u{a0}%", f * 100.0);
         for (content, words) in [
@@ -207,12 +209,20 @@ fn names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, chart: &Chart) {
             }
         }
     }
-    path_names(ui, cx, frame, &x, &y);
-    bound(ui, cx, frame, &x, &y);
+    path_names(ui, cx, frame, &x, &y, &mut taken);
+    bound(ui, cx, frame, &x, &y, &mut taken);
+    start(ui, cx, frame, &x, &y, &taken);
 }
 
-/// Names of the paths at their peaks, pushed apart; the first path also names its start.
-fn path_names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) {
+/// Names of the paths at their peaks, pushed apart.
+fn path_names(
+    ui: &mut Ui,
+    cx: &Context<'_>,
+    frame: Rect,
+    x: &Scale,
+    y: &Scale,
+    taken: &mut Vec<Rect>,
+) {
     let fick = &cx.results.fick;
     let color = cx.tokens.text(Family::Circulation);
     let ends: Vec<(Model, egui::Pos2)> = fick
@@ -226,21 +236,44 @@ fn path_names(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) 
     let placed = spread(&wanted, 15.0, (frame.top() + 60.0, frame.bottom() - 24.0));
     for ((model, at), place_y) in ends.iter().zip(placed) {
         let name = format!("{} peak", model.code());
-        text::plain(ui, pos2(at.x + 12.0, place_y), Align::Min, name, size::BODY, color);
+        let place = pos2(at.x + 12.0, place_y);
+        taken.push(text::plain(ui, place, Align::Min, name, size::BODY, color).rect);
     }
+}
+
+/// Where in the ramp the first path starts.
+fn start(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale, taken: &[Rect]) {
+    let fick = &cx.results.fick;
+    let color = cx.tokens.text(Family::Circulation);
     let first = fick.paths.iter().find(|p| p.model == Model::A1).and_then(|p| p.points.first());
     if let Some(p) = first {
         let start = cx.results.phases.ramp().map_or(0.0, |r| r.0);
         let at = pos2(x.place(p.content.value), y.place(p.stroke_volume.value) + 22.0);
         if frame.contains(at) {
             let words = format!("ramp {}", clock(p.t_s - start));
-            text::plain(ui, at, Align::Center, words, size::BODY, color);
+            beside(ui, frame, at, Align::Center, &[Run::new(words, size::BODY, color)], taken);
         }
     }
 }
 
+/// Sets a name on the baseline `at`, or above or below it where that is taken.
+fn beside(
+    ui: &mut Ui,
+    frame: Rect,
+    at: egui::Pos2,
+    align: Align,
+    run: &[Run],
+    taken: &[Rect],
+) -> Rect {
+    let wide = text::width(ui, run);
+    let left = if align == Align::Center { at.x - 0.5 * wide } else { at.x };
+    let wanted = Rect::from_min_size(pos2(left, at.y - 11.0), egui::vec2(wide, 14.0));
+    let place = words::free(wanted, frame.shrink(2.0), taken);
+    text::line(ui, pos2(place.left(), place.top() + 11.0), Align::Min, run).rect
+}
+
 /// The forward stroke-volume bound: a dotted line and a ring on the limit.
-fn bound(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) {
+fn bound(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale, taken: &mut Vec<Rect>) {
     let Some(bound) = &cx.results.fick.bound else {
         return;
     };
@@ -260,7 +293,8 @@ fn bound(ui: &mut Ui, cx: &Context<'_>, frame: Rect, x: &Scale, y: &Scale) {
         format!("SV not below {:.0}\u{a0}mL", bound.stroke_volume)
     };
     let place = pos2(frame.left() + 8.0, at.y - 6.0);
-    text::plain(ui, place, Align::Min, words, size::BODY, cx.tokens.ink);
+    let run = [Run::new(words, size::BODY, cx.tokens.ink)];
+    taken.push(beside(ui, frame, place, Align::Min, &run, taken));
 }
 
 fn describe(cx: &Context<'_>) -> String {

@@ -1,7 +1,7 @@
 //! The two-factor table and the conditional sentence on stroke volume.
 
 use analysis::fick::{FactorRow, Model, Ranged};
-use egui::{Align, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
+use egui::{Align, Rect, Sense, Stroke, StrokeKind, Ui, Vec2, pos2, vec2};
 
 use crate::chart::ticks::clock;
 use crate::command::{Command, Outbox};
@@ -11,8 +11,15 @@ use crate::view_state::Dialog;
 use crate::widgets::text::{self, Run};
 use crate::widgets::{button, marks};
 
-/// Draws table and sentence.
-pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
+/// Draws table and sentence, `size` large or higher where they need it.
+pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, size: Vec2) {
+    let rect = Rect::from_min_size(ui.cursor().min, size);
+    let bottom = parts(ui, cx, out, rect);
+    ui.allocate_rect(Rect::from_min_max(rect.min, pos2(rect.right(), bottom)), Sense::hover());
+}
+
+/// Draws them from the top of `rect`; returns where they end.
+fn parts(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> f32 {
     let t = cx.tokens;
     let mut head = vec![Run::new("Two-factor table", size::SECTION, t.ink)];
     let fick = &cx.results.fick;
@@ -30,8 +37,9 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
             .or(fick.no_bound.as_ref())
             .map(|n| crate::words::note(n, cx.results));
         let words = words.unwrap_or_else(|| "Waits for a course and stated facts.".into());
-        text::block(ui, pos2(rect.left(), y + 8.0), rect.width(), &words, size::STATEMENT, t.ink);
-        return;
+        let at = pos2(rect.left(), y + 8.0);
+        let why = text::block(ui, at, rect.width(), &words, size::STATEMENT, t.ink);
+        return why.rect.bottom();
     };
     let compact = cx.grid.narrow;
     let row_height = if compact { 34.0 } else { 44.0 };
@@ -55,7 +63,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
         .rect
         .bottom()
         + 8.0;
-    sentences(ui, cx, out, rect, y);
+    sentences(ui, cx, out, rect, y)
 }
 
 fn columns(frame: Rect) -> [f32; 3] {
@@ -137,7 +145,7 @@ fn one_row(ui: &mut Ui, cx: &Context<'_>, rect: Rect, row: &FactorRow) {
 }
 
 /// The two-sided sentence beside its bar, the bound and its inputs, always together.
-fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f32) {
+fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f32) -> f32 {
     let t = cx.tokens;
     let fick = &cx.results.fick;
     let mut y = top;
@@ -166,21 +174,13 @@ fn sentences(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect, top: f
         (None, Some(why)) => crate::words::note(why, cx.results),
         (None, None) => String::new(),
     };
-    let room = rect.bottom() - 30.0 - y;
-    let fits =
-        |ui: &Ui, words: &str| text::block_height(ui, rect.width(), words, size::BODY) <= room;
-    let short = why.split_inclusive(". ").next().unwrap_or_default().trim().to_owned();
-    // Without room the sentence stands alone; its inputs are a press away.
-    if let Some(words) = [&why, &short].into_iter().find(|w| !w.is_empty() && fits(ui, w)) {
+    if !why.is_empty() {
         let at = pos2(rect.left(), y);
-        let block = text::block(ui, at, rect.width(), words, size::BODY, t.ink2);
-        y = block.rect.bottom();
-        block.on_hover_text(why.clone());
+        y = text::block(ui, at, rect.width(), &why, size::BODY, t.ink2).rect.bottom() + 8.0;
     }
     let command = Command::Show(Dialog::Inputs);
-    let wide = button::width(ui, &command);
-    let place = Rect::from_min_size(pos2(rect.left(), rect.bottom() - 24.0), vec2(wide, 24.0));
-    if place.top() > y {
-        button::at(ui, cx, out, place, &command, &command.label());
-    }
+    let place = pos2(rect.left(), y.max(rect.bottom() - 24.0));
+    let place = Rect::from_min_size(place, vec2(button::width(ui, &command), 24.0));
+    button::at(ui, cx, out, place, &command, &command.label());
+    place.bottom()
 }
