@@ -57,7 +57,7 @@ fn known(
 
 /// Breaths outside k·s·√(1 + 1/n) of the line through their neighbours, `skip` left out of lines.
 /// s = 1.4826 × the median absolute residual of the neighbours.
-fn outside(t: &[f64], x: &[f64], skip: &[bool], k: f64) -> Vec<bool> {
+pub(crate) fn outside(t: &[f64], x: &[f64], skip: &[bool], k: f64) -> Vec<bool> {
     let n = x.len();
     let mut window = Window::default();
     // A skipped breath compares as false.

@@ -56,7 +56,7 @@ pub(crate) fn candidate_times(from_s: f64, to_s: f64) -> Vec<f64> {
 }
 
 /// Fits at every knot of `knots`.
-fn fits(points: &Points<'_>, knots: &[f64]) -> Vec<Fit> {
+pub(crate) fn fits(points: &Points<'_>, knots: &[f64]) -> Vec<Fit> {
     let n = points.x.len();
     let w = |i: usize| points.w.get(i).copied().unwrap_or(1.0);
     let total: f64 = (0..n).map(w).sum();
@@ -153,7 +153,7 @@ pub(crate) fn profile(
     Profile { t, fits }
 }
 
-fn weighted_residual(points: &Points<'_>, fit: &Fit, knot: f64) -> Vec<f64> {
+pub(crate) fn weighted_residual(points: &Points<'_>, fit: &Fit, knot: f64) -> Vec<f64> {
     let w = |i: usize| points.w.get(i).copied().unwrap_or(1.0);
     let model = |x: f64| fit.before * x + fit.change * (x - knot).max(0.0);
     let n = points.x.len();

@@ -14,6 +14,8 @@ pub mod facts;
 pub mod fick;
 pub mod filters;
 pub mod gas;
+#[cfg(test)]
+mod golden;
 mod hinge;
 mod long_run;
 pub mod methods;
@@ -44,6 +46,7 @@ mod smooth;
 mod stage;
 pub mod table;
 pub mod thresholds;
+pub mod two_segments;
 pub mod unit;
 
 pub use analyse::derive;

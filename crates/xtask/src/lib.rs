@@ -2,6 +2,7 @@
 
 pub mod ci;
 pub mod demo;
+pub mod race;
 pub mod references;
 pub mod tidy;
 pub mod window;

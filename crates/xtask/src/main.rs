@@ -6,6 +6,8 @@ const USAGE: &str = "cargo xtask VERB
 
   bench [--json]
           what a frame costs while a boundary is dragged
+  bench --baseline DIR
+          the engine against a Python pipeline on the same tables
   ci      everything the repository checks without a display or outside data
   demo    writes the demo tests below demo-sessions
   references noise|coverage|errors [--seeds A..B]
@@ -16,6 +18,13 @@ const USAGE: &str = "cargo xtask VERB
 fn main() -> ExitCode {
     let args: Vec<String> = std::env::args().skip(1).collect();
     match args.first().map(String::as_str) {
+        Some("bench") if args.get(1).is_some_and(|a| a == "--baseline") => match args.get(2) {
+            Some(folder) => xtask::race::run(folder.as_ref()),
+            None => {
+                eprintln!("{USAGE}");
+                ExitCode::from(2)
+            }
+        },
         Some("bench") => xtask::window::bench(&args[1..]),
         Some("sheet") => xtask::window::sheet(),
         Some("demo") => xtask::demo::run(),

@@ -70,6 +70,17 @@ mod tests {
         assert!((low + high - 1.0).abs() < 1e-9);
     }
 
+    /// Against statsmodels (`tests/golden`, first line of the table).
+    #[test]
+    fn limits_agree_with_statsmodels() {
+        let table = include_str!("../../../../tests/golden/exact-limits-py.csv");
+        for line in table.lines().skip(2) {
+            let row: Vec<f64> = line.split(',').map(|cell| cell.parse().unwrap()).collect();
+            let (low, high) = Count { k: row[0] as u64, n: row[1] as u64 }.limits();
+            assert!((low - row[2]).abs() < 1e-9 && (high - row[3]).abs() < 1e-9, "{line}");
+        }
+    }
+
     /// At the limit itself the tail probability is 2.5 %: checked by summing the binomial.
     #[test]
     fn limits_leave_the_tails_they_name() {
