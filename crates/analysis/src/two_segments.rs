@@ -169,69 +169,115 @@ impl Design {
         if y.len() != n || block == 0 || block > n {
             return out;
         }
-        let model: Vec<f64> = self.u.iter().map(|u| fit.at(u + self.mean)).collect();
-        let residual: Vec<f64> = y.iter().zip(&model).map(|(y, m)| y - m).collect();
-        let knots: Vec<Knot> = self.intervals.iter().map(Knot::new).collect();
+        let residual: Vec<f64> =
+            self.u.iter().zip(y).map(|(u, y)| y - fit.at(u + self.mean)).collect();
+        let (knots, straight) = self.knots(fit);
         let mut drawn = vec![[0.0; LANES]; n];
+        let mut scan = vec![Scan::default(); knots.len()];
         while out.len() < count {
             for lane in 0..LANES {
-                draw(&mut drawn, lane, (&model, &residual), block, seed, out.len() + lane);
+                draw(&mut drawn, lane, &residual, block, seed, out.len() + lane);
             }
-            out.extend(self.lanes(&drawn, &knots));
+            let (at, line) = self.scan(&drawn, &knots, &mut scan);
+            out.extend(
+                (0..LANES).map(|l| self.refined(&knots, &scan, l, at[l], line[l], straight)),
+            );
         }
         out.truncate(count);
         out
     }
 
-    fn lanes(&self, y: &[[f64; LANES]], knots: &[Knot]) -> [Replicate; LANES] {
+    /// The observed knots with the part of the fit that every replicate shares, and the slope of
+    /// one straight line through the fit.
+    fn knots(&self, fit: &BrokenLine) -> (Vec<Knot>, f64) {
         let n = self.u.len();
-        let (mut sum, mut uy) = ([0.0; LANES], [0.0; LANES]);
-        for (u, y) in self.u.iter().zip(y) {
-            for l in 0..LANES {
-                sum[l] += y[l];
-                uy[l] += u * y[l];
-            }
-        }
-        let my = sum.map(|s| s / n as f64);
-        let slope = uy.map(|s| s / self.uu);
-        let (mut a, mut b) = ([0.0; LANES], [0.0; LANES]);
-        let (mut top, mut at) = ([0.0; LANES], [0.0; LANES]);
+        let change = fit.after - fit.before;
+        // What the fit itself adds: its hinge less the line through it.
+        let bend = |u: &f64| change * (u + self.mean - fit.knot).max(0.0);
+        let middle = self.u.iter().map(bend).sum::<f64>() / n as f64;
+        let slope = self.u.iter().map(|u| u * bend(u)).sum::<f64>() / self.uu;
+        let (mut a, mut b) = (0.0, 0.0);
+        let mut knots = Vec::with_capacity(self.intervals.len());
         for i in (self.margin..n).rev() {
-            for l in 0..LANES {
-                b[l] += y[i][l];
-                a[l] += self.u[i] * y[i][l];
-            }
-            let Some(knot) = knots.get(i - self.margin) else { continue };
-            for l in 0..LANES {
-                let h = a[l] - knot.k * b[l] - my[l] * knot.h1 - slope[l] * knot.hu;
-                let gain = h * h * knot.per_square;
-                let better = gain > top[l];
-                top[l] = if better { gain } else { top[l] };
-                at[l] = if better { i as f64 } else { at[l] };
+            let r = bend(&self.u[i]) - middle - slope * self.u[i];
+            (a, b) = (a + self.u[i] * r, b + r);
+            if let Some(interval) = self.intervals.get(i - self.margin) {
+                let ([c, s1, s2], k) = (interval.beyond, interval.to);
+                let square = interval.square(k);
+                let per_square = if square > 0.0 { 1.0 / square } else { 0.0 };
+                let (h1, hu) = (s1 - k * c, s2 - k * s1);
+                knots.push(Knot { own: a - k * b, h1, hu, per_square, a, b });
             }
         }
-        array::from_fn(|l| self.refined(y, l, at[l] as usize, my[l], slope[l]))
+        knots.reverse();
+        (knots, fit.before + slope)
     }
 
-    /// The best knot of the intervals on both sides of point `at` in lane `l`.
-    fn refined(&self, y: &[[f64; LANES]], l: usize, at: usize, my: f64, slope: f64) -> Replicate {
-        let first = at.max(self.margin) - self.margin;
-        let (mut a, mut b) = (0.0, 0.0);
-        let mut best = (0, self.intervals[first].from, 0.0, 0.0);
-        for i in (self.margin + first..self.u.len()).rev() {
-            let r = y[i][l] - my - slope * self.u[i];
-            (a, b) = (a + self.u[i] * r, b + r);
-            let interval = i - self.margin;
-            if interval <= first + 1
-                && let Some(found) = self.intervals.get(interval)
-            {
-                let (k, gain) = found.best(a, b);
-                if gain > best.2 {
-                    best = (interval, k, gain, (a - k * b) / found.square(k));
-                }
+    /// One pass from the right over all lanes: the best observed knot of each, and the straight
+    /// line through each lane's draw. Leaves the running sums in `scan`.
+    fn scan(
+        &self,
+        e: &[[f64; LANES]],
+        knots: &[Knot],
+        scan: &mut [Scan],
+    ) -> ([usize; LANES], [(f64, f64); LANES]) {
+        let n = self.u.len();
+        let (mut sum, mut ue) = ([0.0; LANES], [0.0; LANES]);
+        for (u, e) in self.u.iter().zip(e) {
+            for l in 0..LANES {
+                sum[l] += e[l];
+                ue[l] += u * e[l];
             }
         }
-        let line = self.line(best.0, best.1, best.3, my, slope, 0.0);
+        let level = sum.map(|s| s / n as f64);
+        let slope = ue.map(|s| s / self.uu);
+        let mut now = Scan::default();
+        let (mut top, mut at) = ([0.0_f64; LANES], [0.0; LANES]);
+        let mut right = self.u[n - 1];
+        for i in (self.margin..n).rev() {
+            // Σ (u − k)·e over the points beyond k, taken from one point to the next.
+            let step = right - self.u[i];
+            right = self.u[i];
+            for l in 0..LANES {
+                now.hinge[l] += step * now.beyond[l];
+                now.beyond[l] += e[i][l];
+            }
+            let place = i - self.margin;
+            let Some(knot) = knots.get(place) else { continue };
+            scan[place] = now;
+            for l in 0..LANES {
+                let h = now.hinge[l] + knot.own - level[l] * knot.h1 - slope[l] * knot.hu;
+                let gain = h * h * knot.per_square;
+                at[l] = if gain > top[l] { place as f64 } else { at[l] };
+                top[l] = top[l].max(gain);
+            }
+        }
+        (at.map(|a| a as usize), array::from_fn(|l| (level[l], slope[l])))
+    }
+
+    /// The best knot of the intervals on both sides of observed knot `at` in lane `l`.
+    fn refined(
+        &self,
+        knots: &[Knot],
+        scan: &[Scan],
+        l: usize,
+        at: usize,
+        (level, slope): (f64, f64),
+        straight: f64,
+    ) -> Replicate {
+        let mut best = (at, self.intervals[at].to, 0.0, 0.0);
+        for place in at..(at + 2).min(self.intervals.len()) {
+            let (interval, knot, sums) = (&self.intervals[place], &knots[place], &scan[place]);
+            let [c, s1, s2] = interval.beyond;
+            let b = knot.b + sums.beyond[l] - level * c - slope * s1;
+            let ue = sums.hinge[l] + interval.to * sums.beyond[l];
+            let a = knot.a + ue - level * s1 - slope * s2;
+            let (k, gain) = interval.best(a, b);
+            if gain > best.2 {
+                best = (place, k, gain, (a - k * b) / interval.square(k));
+            }
+        }
+        let line = self.line(best.0, best.1, best.3, 0.0, straight + slope, 0.0);
         Replicate { knot: line.knot, after: line.after }
     }
 }
@@ -247,33 +293,37 @@ pub struct Replicate {
 
 /// The hinge at an observed x.
 struct Knot {
-    k: f64,
+    /// Its product with the fit that the replicates share.
+    own: f64,
     /// h·1 and h·u.
     h1: f64,
     hu: f64,
     /// 1 / (h·h) of the part orthogonal to the line.
     per_square: f64,
+    /// A and B of the shared fit.
+    a: f64,
+    b: f64,
 }
 
-impl Knot {
-    fn new(interval: &Interval) -> Self {
-        let ([c, s1, s2], k) = (interval.beyond, interval.to);
-        let square = interval.square(k);
-        let per_square = if square > 0.0 { 1.0 / square } else { 0.0 };
-        Self { k, h1: s1 - k * c, hu: s2 - k * s1, per_square }
-    }
+/// Sums over the points beyond a knot k of what was drawn.
+#[derive(Clone, Copy, Debug, Default)]
+struct Scan {
+    /// Σ (u − k)·e.
+    hinge: [f64; LANES],
+    /// Σ e.
+    beyond: [f64; LANES],
 }
 
-/// Puts replicate number `replicate` into lane `lane`.
+/// Puts the residuals of replicate number `replicate` into lane `lane`.
 fn draw(
     drawn: &mut [[f64; LANES]],
     lane: usize,
-    (model, residual): (&[f64], &[f64]),
+    residual: &[f64],
     block: usize,
     seed: u64,
     replicate: usize,
 ) {
-    let n = model.len();
+    let n = residual.len();
     let starts = (n - block + 1) as u64;
     let key = [seed as u32, (seed >> 32) as u32];
     let mut words = [0; 4];
@@ -283,9 +333,8 @@ fn draw(
         }
         let start = ((u64::from(words[k % 4]) * starts) >> 32) as usize;
         let to = (from + block).min(n);
-        let places = drawn[from..to].iter_mut().zip(&model[from..to]);
-        for ((place, m), r) in places.zip(&residual[start..]) {
-            place[lane] = m + r;
+        for (place, r) in drawn[from..to].iter_mut().zip(&residual[start..]) {
+            place[lane] = *r;
         }
     }
 }
@@ -335,8 +384,8 @@ mod tests {
         let residual: Vec<f64> = y.iter().zip(&model).map(|(y, m)| y - m).collect();
         let mut drawn = vec![[0.0; LANES]; 60];
         for l in 0..LANES {
-            draw(&mut drawn, l, (&model, &residual), 5, 9, 8 + l);
-            let y: Vec<f64> = drawn.iter().map(|row| row[l]).collect();
+            draw(&mut drawn, l, &residual, 5, 9, 8 + l);
+            let y: Vec<f64> = drawn.iter().zip(&model).map(|(row, m)| m + row[l]).collect();
             let own = design.fit(&y).unwrap();
             assert!((own.knot - all[8 + l].knot).abs() < 1e-8);
             assert!((own.after - all[8 + l].after).abs() < 1e-10);

@@ -10,7 +10,7 @@ use crate::note::{Arg, Note};
 use crate::results::{At, Interval, Kind, Outcome};
 use crate::stage::Stage;
 
-pub use bands::{Band, Class, TABLE};
+pub use bands::{Band, Class, ISHLT, ISHLT_BLOCKED, TABLE};
 
 /// Derives the classes of the stated indication; effort, predictions and slopes must be known.
 pub(super) fn derive(stage: &mut Stage<'_>) {
@@ -37,7 +37,7 @@ fn outcome(stage: &Stage<'_>, class: &Class) -> Outcome {
     if class.needs_effort && submaximal(stage) {
         return absent(Note::new("not-graded-submaximal"));
     }
-    let band = bands::band(class.bands, value);
+    let band = class.band(value);
     let mut outcome = Outcome::reading(class.id, class.at, class.method, band.word);
     outcome.kind = Kind::Class;
     // Both intervals of the deciding value; its unit stands with it in the doubt below.
@@ -63,8 +63,8 @@ fn outcome(stage: &Stage<'_>, class: &Class) -> Outcome {
 
 /// The doubt when the interval reaches into another band.
 fn straddle(class: &Class, band: &Band, interval: Interval) -> Option<Note> {
-    let low = bands::band(class.bands, interval.low);
-    let high = bands::band(class.bands, interval.high);
+    let low = class.band(interval.low);
+    let high = class.band(interval.high);
     (low.word != band.word || high.word != band.word).then(|| {
         Note::new("class-straddles")
             .with("low", Arg::Word(low.text))
@@ -76,7 +76,7 @@ fn straddle(class: &Class, band: &Band, interval: Interval) -> Option<Note> {
 fn transplant(stage: &Stage<'_>, indication: Indication) -> Option<Outcome> {
     (indication == Indication::HeartFailure).then_some(())?;
     let drug = &stage.facts.test.rate_slowing_drug;
-    let class = if beta_blocked(stage) { &bands::ISHLT_BLOCKED } else { &bands::ISHLT };
+    let class = if beta_blocked(stage) { &ISHLT_BLOCKED } else { &ISHLT };
     let mut outcome = outcome(stage, class);
     if outcome.value.is_some() && drug.taken.is_none() {
         outcome.doubts.push(Note::new("class-drug-not-stated"));
