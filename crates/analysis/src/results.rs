@@ -39,7 +39,7 @@ pub enum Value {
 
 /// An interval, low ≤ high, in the unit of its outcome. Of a prediction it holds the limits of
 /// normal; an end that is not published is infinite.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct Interval {
     /// Lower end.
     pub low: f64,

@@ -68,6 +68,8 @@ pub struct Design {
     pub heavy_noise: bool,
     /// HR from about 64 to 108.
     pub hr_limited: bool,
+    /// Share of a break that V̇O₂ takes by slowing, HR the rest by accelerating (of ln ratio).
+    pub vo2_share: f64,
 }
 
 impl Design {
@@ -82,6 +84,7 @@ impl Design {
             plateau_s: 0.0,
             heavy_noise: false,
             hr_limited: false,
+            vo2_share: 0.5,
         }
     }
 }
@@ -241,7 +244,7 @@ fn broken(design: &Design, p: &Person) -> (f64, f64) {
 /// Noise-free V̇O₂ and HR on a grid of one second from the start of warm-up.
 fn clean(design: &Design, p: &Person) -> (Vec<f64>, Vec<f64>, f64) {
     let (ratio, onset) = broken(design, p);
-    let end_min = design.ramp_min;
+    let (end_min, share) = (design.ramp_min, design.vo2_share);
     let after = |shape: &Shape, factor: f64, minutes: f64| {
         let demand = shape.at(load_fraction(design, minutes));
         if minutes <= onset {
@@ -257,8 +260,8 @@ fn clean(design: &Design, p: &Person) -> (Vec<f64>, Vec<f64>, f64) {
     for i in 0..n {
         let minutes = (i as f64 - WARM_UP_S) / 60.0;
         let held = minutes.min(end_min - p.plateau_s / 60.0);
-        v += av * (after(&p.vo2, ratio.sqrt(), held) - v);
-        h += ah * (after(&p.hr, 1.0 / ratio.sqrt(), minutes.min(end_min)) - h);
+        v += av * (after(&p.vo2, libm::pow(ratio, share), held) - v);
+        h += ah * (after(&p.hr, libm::pow(ratio, share - 1.0), minutes.min(end_min)) - h);
         vo2.push(v);
         hr.push(h);
     }

@@ -1,5 +1,4 @@
-//! Log Bayes factor of a late break against a smooth natural bend, and what this test could have
-//! seen (step 8 and the detection limit).
+//! Log Bayes factor of a late break against a smooth natural bend (step 8).
 
 use super::design::ONSETS_MIN;
 use super::fit::Fit;
@@ -77,37 +76,6 @@ fn quantile(weight: &[f64; 6], sum: f64, p: f64) -> f64 {
         }
     }
     ONSETS_MIN[ONSETS_MIN.len() - 1]
-}
-
-/// What the early part of the curves says: slopes per unit of lagged load, and the O₂ pulse at
-/// each onset (mL/beat).
-#[derive(Clone, Copy, Debug)]
-pub(crate) struct EarlyPart {
-    /// Slope of V̇O₂ per unit of lagged load.
-    pub vo2_per_load: f64,
-    /// Slope of HR per unit of lagged load.
-    pub hr_per_load: f64,
-    /// O₂ pulse at each of the onsets.
-    pub pulse_at_onset: [f64; 6],
-}
-
-/// Probability that levelling from `onset` on would have been found.
-pub(crate) fn probability_found(v: &Square, h: &Square, early: &EarlyPart, onset: usize) -> f64 {
-    let asymptote = early.vo2_per_load / early.hr_per_load;
-    let ratio = (early.pulse_at_onset[onset] / asymptote).clamp(0.2, 0.9);
-    let column = BREAKS + onset;
-    let dv = early.vo2_per_load * (ratio.sqrt() - 1.0);
-    let dh = early.hr_per_load * (1.0 / ratio.sqrt() - 1.0);
-    let distance = (dv * dv * v.at(column, column) + dh * dh * h.at(column, column)).sqrt();
-    normal_cdf(-2.29 + 0.66 * distance + 0.82 * ONSETS_MIN[onset].min(4.0))
-}
-
-/// Shortest levelling found with probability 0.8, min; `None` where it is longer than 5 min.
-pub(crate) fn detection_limit(vo2: &Fit, hr: &Fit, early: &EarlyPart) -> Option<f64> {
-    let (v, h) = (vo2.detrended()?, hr.detrended()?);
-    (0..ONSETS_MIN.len())
-        .find(|&onset| probability_found(&v, &h, early, onset) >= 0.8)
-        .map(|onset| ONSETS_MIN[onset])
 }
 
 /// Standard normal distribution function.

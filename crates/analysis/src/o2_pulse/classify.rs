@@ -3,21 +3,21 @@
 //! Constants and their error rates: calibrated on the stage values of Donne et al. 2024
 //! (doi:10.5281/zenodo.10841412) and the ramps of Chabert et al. 2022 (doi:10.13026/2qs3-kh43).
 
-use super::bayes::{self, EarlyPart};
+use super::bayes;
 use super::bins::{self, Binned, TRIM_S};
-use super::design::{self, Design, ONSETS_MIN};
+use super::design;
 use super::detail::{Course, CourseDetail, CourseNumbers, CurvePoint, Estimate, Line, Onset};
 use super::fit::{Fit, Variable, mean_weights, slope_weights};
 use super::linalg::dot;
+use super::score::{self, LINE_LOWER, LINE_UPPER, Weighed};
 use crate::recording::Trace;
 use crate::results::{Arg, Interval, Note};
 
 /// Length of the late window, s.
 pub const LATE_S: f64 = 180.0;
-/// Score above which the course is flattened or falling.
-pub const LINE_UPPER: f64 = 1.6;
-/// Score above which it is at least slowed.
-pub const LINE_LOWER: f64 = -0.5;
+/// The prior of the curves rounds a steep knee, so the interval of the late slope reaches further
+/// down by this share of the deficit.
+const ROUNDED_KNEE: f64 = 0.075;
 /// Shortest ramp, s.
 pub const SHORTEST_RAMP_S: f64 = 360.0;
 /// Fewest breaths in the late window.
@@ -43,7 +43,6 @@ pub struct CourseInput<'a> {
 /// What the recipe works on, ready for its steps.
 struct Parts {
     binned: Binned,
-    design: Design,
     vo2: Fit,
     hr: Fit,
     /// Bin times, min.
@@ -69,7 +68,7 @@ pub fn classify(input: &CourseInput<'_>) -> Result<CourseDetail, Note> {
     let late = Window::late(&parts, LATE_S);
     let numbers = numbers(&parts, &late, ramp_s / 60.0).ok_or(Note::new("course-not-fitted"))?;
     let evidence = bayes::evidence(&parts.vo2, &parts.hr).ok_or(Note::new("course-not-fitted"))?;
-    let course = decide(&numbers);
+    let course = score::decide(&numbers);
     let mut detail = drawing(input, &parts, &late);
     detail.course = Some(course);
     detail.onset = onset(course, &evidence, input.load_end_s);
@@ -107,7 +106,7 @@ fn prepare(input: &CourseInput<'_>) -> Result<Parts, Note> {
         return Err(Note::new("course-not-fitted"));
     }
     let minutes = binned.bins.iter().map(|b| b.t_s / 60.0).collect();
-    Ok(Parts { binned, design, vo2, hr, minutes, late_from_s })
+    Ok(Parts { binned, vo2, hr, minutes, late_from_s })
 }
 
 /// Weights on the bins of a window.
@@ -218,11 +217,17 @@ fn numbers(parts: &Parts, window: &Window, ramp_min: f64) -> Option<CourseNumber
     let early_pulse =
         dot(&parts.vo2.curve, &window.early_mean) / dot(&parts.hr.curve, &window.early_mean);
     let evidence = bayes::evidence(&parts.vo2, &parts.hr)?;
-    let k = ramp_min / 10.0;
-    let score =
-        evidence.log_bayes_factor - 3.9 * (k * g.value - 2.7) / (4.6 + (k * g.se) * (k * g.se));
+    let weighed = Weighed {
+        log_bayes_factor: evidence.log_bayes_factor,
+        late_slope: g.value,
+        ramp_min,
+        vo2_bend: parts.vo2.bend,
+        hr_bend: parts.hr.bend,
+    };
+    let score = weighed.score();
     score.is_finite().then(|| CourseNumbers {
         late_slope: g,
+        late_slope_interval: reaching_down(g, deficit.value),
         early_slope: g.value - deficit.value,
         deficit,
         deficit_vo2: change_v,
@@ -235,46 +240,17 @@ fn numbers(parts: &Parts, window: &Window, ramp_min: f64) -> Option<CourseNumber
         score,
         line_upper: LINE_UPPER,
         line_lower: LINE_LOWER,
-        detection_limit_min: bayes::detection_limit(
-            &parts.vo2,
-            &parts.hr,
-            &early_part(parts, window),
-        ),
+        detection_limit_min: score::detection_limit(score, g.se, ramp_min),
         late_slope_4min: (ramp_min >= 10.0)
             .then(|| pulse_slope(parts, &Window::late(parts, 240.0))),
     })
 }
 
-fn early_part(parts: &Parts, window: &Window) -> EarlyPart {
-    let bins = &parts.binned.bins;
-    let weights = slope_weights(&parts.design.u, |i| bins[i].t_s < window.from_s);
-    let end_s = parts.late_from_s + LATE_S + TRIM_S;
-    let pulse_at_onset = ONSETS_MIN.map(|minutes| {
-        let at = end_s - 60.0 * minutes;
-        let k = bins.partition_point(|b| b.t_s < at).min(bins.len() - 1);
-        parts.vo2.curve[k] / parts.hr.curve[k]
-    });
-    EarlyPart {
-        vo2_per_load: dot(&parts.vo2.curve, &weights),
-        hr_per_load: dot(&parts.hr.curve, &weights),
-        pulse_at_onset,
-    }
-}
-
-/// Step 10: the word.
-fn decide(numbers: &CourseNumbers) -> Course {
-    let (g, se, score) = (numbers.late_slope.value, numbers.late_slope.se, numbers.score);
-    if score > LINE_UPPER && g + 2.33 * se < 0.0 {
-        Course::Falling
-    } else if score > LINE_UPPER && g - 1.645 * se <= 0.0 {
-        Course::Flattened
-    } else if score > LINE_LOWER {
-        Course::RisingSlowed
-    } else if g - 1.645 * se > 0.0 {
-        Course::Rising
-    } else {
-        Course::Indeterminate
-    }
+/// The 90 % interval of the late slope, %/min.
+fn reaching_down(g: Estimate, deficit: f64) -> Interval {
+    let knee = ROUNDED_KNEE * deficit.min(0.0);
+    let low = g.value - 1.645 * (g.se * g.se + knee * knee).sqrt();
+    Interval { low, high: g.interval().high }
 }
 
 /// The onset is given only above the upper line and where the evidence is for a real loss of slope.

@@ -139,6 +139,8 @@ impl Estimate {
 pub struct CourseNumbers {
     /// Relative slope of the O₂ pulse in the late window, %/min.
     pub late_slope: Estimate,
+    /// Its 90 % interval: reaches further down where the slope broke.
+    pub late_slope_interval: Interval,
     /// Slope of the own early line carried on, %/min.
     pub early_slope: f64,
     /// Late slope less the early line's, %/min.

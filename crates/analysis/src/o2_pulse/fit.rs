@@ -3,9 +3,7 @@
 use super::design::Design;
 use super::detail::Bin;
 use super::linalg::{Cholesky, Square, dot};
-use super::noise::{
-    self, BEND_EVEN, BEND_ODD, COLUMNS, CONSTANT, LOAD, NoiseShape, Prior, Whitened,
-};
+use super::noise::{self, BEND_EVEN, BEND_ODD, COLUMNS, CONSTANT, NoiseShape, Prior, Whitened};
 
 /// Which of the two variables.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -17,13 +15,20 @@ pub(crate) enum Variable {
 }
 
 impl Variable {
-    /// Prior of the natural bend, scaled to the rise of this variable over the bins.
-    fn prior(self, rise: f64) -> Prior {
-        let (mean, sd, least) = match self {
-            Variable::Vo2 => ((0.0, -0.12), (0.18, 0.30), 200.0),
-            Variable::Hr => ((-0.18, -0.04), (0.27, 0.35), 10.0),
+    /// Size of the rise over the bins on which bends are scaled, never less than what noise makes.
+    fn rise(self, slope: f64) -> f64 {
+        slope.abs().max(match self {
+            Variable::Vo2 => 200.0,
+            Variable::Hr => 10.0,
+        })
+    }
+
+    /// Prior of the natural bend, scaled to the rise `r` of this variable over the bins.
+    fn prior(self, r: f64) -> Prior {
+        let (mean, sd) = match self {
+            Variable::Vo2 => ((0.0, -0.12), (0.18, 0.30)),
+            Variable::Hr => ((-0.18, -0.04), (0.27, 0.35)),
         };
-        let r = rise.abs().max(least);
         Prior { mean: (mean.0 * r, mean.1 * r), sd: (sd.0 * r, sd.1 * r), break_sd: 0.45 * r }
     }
 
@@ -117,6 +122,8 @@ pub(crate) struct Fit {
     pub white: Whitened,
     /// Prior used.
     pub prior: Prior,
+    /// Even and odd bend less their prior means, as fractions of the rise of this variable.
+    pub bend: (f64, f64),
     rows: Vec<[f64; 7]>,
     covariance: Square,
 }
@@ -130,7 +137,8 @@ impl Fit {
         level: &[f64],
         design: &Design,
     ) -> Option<Self> {
-        let prior = variable.prior(dot(&slope_weights(&design.u, |_| true), y));
+        let rise = variable.rise(dot(&slope_weights(&design.u, |_| true), y));
+        let prior = variable.prior(rise);
         let columns = noise::columns(y, design, &prior);
         let white = noise::choose(bins, &variable.noise(bins, y, level), &prior, &columns)?;
         let (index, precision) = noise::terms(&prior);
@@ -140,7 +148,8 @@ impl Fit {
             (0..y.len()).map(|k| index.map(|column| columns[column][k])).collect();
         let mean = noise::prior_mean(design, &prior);
         let curve = rows.iter().zip(mean).map(|(row, m)| m + dot(row, &theta)).collect();
-        Some(Self { curve, white, prior, rows, covariance: factor.inverse() })
+        let bend = (theta[2] / rise, theta[3] / rise);
+        Some(Self { curve, white, prior, bend, rows, covariance: factor.inverse() })
     }
 
     /// The functional with `weights` on the bins.
@@ -164,15 +173,12 @@ impl Fit {
         self.variance(&self.rows[k]).max(0.0).sqrt()
     }
 
-    /// Inner products under noise and natural bend only, with the columns `flat` projected out.
-    pub fn reduced(&self, flat: &[usize]) -> Option<Square> {
+    /// Inner products under noise and natural bend only, with the constant projected out.
+    pub fn centred(&self) -> Option<Square> {
         let gram = &self.white.gram;
-        let mut index = flat.to_vec();
-        let mut precision = vec![0.0; flat.len()];
-        for (column, sd) in [(BEND_EVEN, self.prior.sd.0), (BEND_ODD, self.prior.sd.1)] {
-            index.push(column);
-            precision.push(1.0 / (sd * sd));
-        }
+        let index = [CONSTANT, BEND_EVEN, BEND_ODD];
+        let of = |sd: f64| 1.0 / (sd * sd);
+        let precision = [0.0, of(self.prior.sd.0), of(self.prior.sd.1)];
         let factor: Cholesky = noise::normal(gram, &index, &precision)?.0;
         let solved: Vec<Vec<f64>> = (0..COLUMNS)
             .map(|b| factor.solve(&index.iter().map(|&i| gram.at(i, b)).collect::<Vec<_>>()))
@@ -185,16 +191,6 @@ impl Fit {
             }
         }
         Some(out)
-    }
-
-    /// Inner products with the constant projected out.
-    pub fn centred(&self) -> Option<Square> {
-        self.reduced(&[CONSTANT])
-    }
-
-    /// Inner products with constant and load projected out.
-    pub fn detrended(&self) -> Option<Square> {
-        self.reduced(&[CONSTANT, LOAD])
     }
 }
 

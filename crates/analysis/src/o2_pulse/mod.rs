@@ -12,6 +12,7 @@ mod fit;
 mod linalg;
 mod noise;
 mod outcomes;
+mod score;
 pub(crate) mod suppress;
 mod terminal;
 
@@ -21,10 +22,10 @@ use crate::stage::Stage;
 
 pub(crate) use bayes::normal_cdf;
 pub use classify::{
-    CourseInput, FEWEST_LATE_BREATHS, LATE_S, LINE_LOWER, LINE_UPPER, SHORTEST_RAMP_S, classify,
-    vo2_fell_late,
+    CourseInput, FEWEST_LATE_BREATHS, LATE_S, SHORTEST_RAMP_S, classify, vo2_fell_late,
 };
 pub use detail::{Bin, Course, CourseDetail, CourseNumbers, CurvePoint, Estimate, Line, Onset};
+pub use score::{LINE_LOWER, LINE_UPPER};
 
 /// Margin of "level", %/min.
 const LEVEL_MARGIN: f64 = 2.5;

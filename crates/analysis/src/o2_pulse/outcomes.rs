@@ -15,7 +15,9 @@ fn ranged(estimate: Estimate) -> (f64, Option<Interval>) {
 }
 
 const ROWS: [Row; 9] = [
-    ("o2-pulse-late-slope", Unit::PercentPerMin, |n| ranged(n.late_slope)),
+    ("o2-pulse-late-slope", Unit::PercentPerMin, |n| {
+        (n.late_slope.value, Some(n.late_slope_interval))
+    }),
     ("o2-pulse-early-slope", Unit::PercentPerMin, |n| (n.early_slope, None)),
     ("o2-pulse-deficit", Unit::PercentPerMin, |n| ranged(n.deficit)),
     ("o2-pulse-deficit-vo2-part", Unit::PercentPerMin, |n| ranged(n.deficit_vo2)),

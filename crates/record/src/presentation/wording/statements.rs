@@ -65,7 +65,7 @@ pub const TEXTS: &[Entry] = &[
     ("course-rising", "O₂-pulse course: rising, late slope {slope}."),
     (
         "course-rising-slowed",
-        "O₂-pulse course: rising less than expected, late slope {slope}; levelling cannot be separated from it. About one normal test in ten reads so.",
+        "O₂-pulse course: rising less than expected, late slope {slope}; levelling cannot be separated from it. About 9 in 100 simulated normal ramps read so.",
     ),
     (
         "course-flattened",
