@@ -4,5 +4,6 @@
 
 mod browser;
 mod open_data;
+mod real_ramps;
 mod tools;
 mod window;

@@ -7,6 +7,7 @@
 use super::detail::ShuntStep;
 use crate::breaths::Breaths;
 use crate::quantity::Quantity;
+use crate::robust;
 
 /// Windows before and after the step, s: (start, end) from the step.
 const BEFORE: (f64, f64) = (-40.0, -5.0);
@@ -27,11 +28,7 @@ fn median(b: &Breaths, q: impl Fn(usize) -> Option<f64>, at_s: f64, w: (f64, f64
     let (first, last) =
         (end.partition_point(|t| *t < at_s + w.0), end.partition_point(|t| *t < at_s + w.1));
     let mut x: Vec<f64> = (first..last).filter_map(q).collect();
-    if x.len() < 4 {
-        return None;
-    }
-    x.sort_by(f64::total_cmp);
-    Some(0.5 * (x[(x.len() - 1) / 2] + x[x.len() / 2]))
+    (x.len() >= 4).then(|| robust::median(&mut x))
 }
 
 /// Rise into the window `after`, less what the drift before the step already promised in that
@@ -60,21 +57,24 @@ pub(crate) fn find(b: &Breaths, window: (f64, f64), spo2_usable: bool) -> Option
     let seconds = (window.1 - LATER.1 - window.0 + EARLIER.0) / 5.0;
     for k in 0..libm::floor(seconds).max(0.0) as usize {
         let t_s = window.0 - EARLIER.0 + 5.0 * k as f64;
-        let at = |after| -> Option<(f64, f64)> {
-            Some((rise(b, &petco2, t_s, after)?, rise(b, &peto2, t_s, after)?))
+        // One channel after the other: almost everywhere the first already refuses.
+        let step = |q: &dyn Fn(usize) -> Option<f64>, after, least: f64| {
+            rise(b, &q, t_s, after).filter(|rise| *rise >= least)
         };
-        let (Some(now), Some(later)) = (at(AFTER), at(LATER)) else { continue };
-        let Some(r) = rise(b, &rer, t_s, AFTER_RER) else { continue };
-        let stays = |now: f64, later: f64, least: f64| now >= least && later >= REMAINS * least;
-        if !(stays(now.0, later.0, STEP.0) && stays(now.1, later.1, STEP.1) && r >= STEP.2) {
+        let Some(co2) = step(&petco2, AFTER, STEP.0) else { continue };
+        let Some(o2) = step(&peto2, AFTER, STEP.1) else { continue };
+        let Some(r) = step(&rer, AFTER_RER, STEP.2) else { continue };
+        if step(&petco2, LATER, REMAINS * STEP.0).is_none()
+            || step(&peto2, LATER, REMAINS * STEP.1).is_none()
+        {
             continue;
         }
-        let size = now.0 / STEP.0 + now.1 / STEP.1 + r / STEP.2;
+        let size = co2 / STEP.0 + o2 / STEP.1 + r / STEP.2;
         if best.as_ref().is_none_or(|(top, _)| size > *top) {
             let saturation = spo2_usable
                 .then(|| Some(median(b, spo2, t_s, LATER)? - median(b, spo2, t_s, BEFORE)?))
                 .flatten();
-            let found = ShuntStep { t_s, petco2: -now.0, peto2: now.1, rer: r, spo2: saturation };
+            let found = ShuntStep { t_s, petco2: -co2, peto2: o2, rer: r, spo2: saturation };
             best = Some((size, found));
         }
     }
