@@ -3,10 +3,11 @@
 use std::ops::RangeInclusive;
 
 use egui::emath::GuiRounding as _;
-use egui::{Color32, Mesh, Pos2, Shape, Stroke, Ui, pos2, vec2};
+use egui::{Color32, Mesh, Pos2, Rect, Shape, Stroke, Ui, pos2, vec2};
 use egui_plot::{PlotBounds, PlotGeometry, PlotItem, PlotItemBase, PlotPoint, PlotTransform};
 
 use super::spec::{Dash, Item, Mark, Point};
+use super::thin;
 
 /// One [`Item`] in a plot.
 pub struct Drawn {
@@ -26,33 +27,18 @@ impl PlotItem for Drawn {
     fn shapes(&self, ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
         let place = |p: &Point| transform.position_from_point(&PlotPoint::new(p[0], p[1]));
         let frame = transform.frame();
+        let pen = Pen { width: frame.width(), pixels_per_point: ui.pixels_per_point() };
         match &self.item {
             Item::Line { pieces, width, color, dash } => {
                 for piece in pieces {
-                    let points: Vec<Pos2> = piece.iter().map(place).collect();
-                    stroke(&points, Stroke::new(*width, *color), *dash, shapes);
+                    let points = piece.iter().map(place).collect();
+                    pen.stroke(points, Stroke::new(*width, *color), *dash, shapes);
                 }
             }
             Item::Points { points, mark, radius, color } => {
-                let mut squares = Mesh::default();
-                for p in points.iter().map(place) {
-                    if p.x < frame.left() || p.x > frame.right() {
-                        continue;
-                    }
-                    if p.y < frame.top() || p.y > frame.bottom() {
-                        beyond(p, frame, *color, shapes);
-                    } else if let Some(rect) = square(p, *mark, *radius) {
-                        let rect = rect.round_to_pixels(ui.pixels_per_point());
-                        squares.add_colored_rect(rect, *color);
-                    } else {
-                        point(p, *mark, *radius, *color, shapes);
-                    }
-                }
-                if !squares.is_empty() {
-                    shapes.push(Shape::mesh(squares));
-                }
+                pen.points(points.iter().map(place), *frame, (*mark, *radius, *color), shapes);
             }
-            Item::Band { rows, fill, edge } => band(rows, *fill, *edge, &place, shapes),
+            Item::Band { rows, fill, edge } => band(rows, *fill, *edge, &place, &pen, shapes),
             Item::Area { points, fill, edge } => {
                 let points: Vec<Pos2> = points.iter().map(place).collect();
                 area(&points, *fill, *edge, shapes);
@@ -70,7 +56,7 @@ impl PlotItem for Drawn {
             }
             Item::Stretch { from, to, fill, edge } => {
                 let (a, b) = (place(&[*from, 0.0]).x, place(&[*to, 0.0]).x);
-                let rect = egui::Rect::from_x_y_ranges(a..=b, frame.y_range());
+                let rect = Rect::from_x_y_ranges(a..=b, frame.y_range());
                 shapes.push(Shape::rect_filled(rect, 0.0, *fill));
                 if let Some(edge) = edge {
                     for x in [a, b] {
@@ -80,7 +66,7 @@ impl PlotItem for Drawn {
             }
             Item::Hatch { from, to, every, color } => {
                 let (a, b) = (place(&[*from, 0.0]).x, place(&[*to, 0.0]).x.min(frame.right()));
-                hatch(egui::Rect::from_x_y_ranges(a..=b, frame.y_range()), *every, *color, shapes);
+                hatch(Rect::from_x_y_ranges(a..=b, frame.y_range()), *every, *color, shapes);
             }
         }
     }
@@ -108,32 +94,57 @@ impl PlotItem for Drawn {
     }
 }
 
-/// Adds a line with its pattern.
-pub fn stroke(points: &[Pos2], stroke: Stroke, dash: Option<Dash>, shapes: &mut Vec<Shape>) {
-    let points = thinned(points);
-    match dash {
-        _ if points.len() < 2 => {}
-        None => shapes.push(Shape::line(points, stroke)),
-        Some(dash) => {
-            shapes.extend(dashes(&points, dash).into_iter().map(|d| Shape::line(d, stroke)));
-        }
-    }
+/// How lines are drawn: the screen they are drawn for.
+struct Pen {
+    width: f32,
+    pixels_per_point: f32,
 }
 
-/// The line without points that no eye tells from their neighbour: nearer than a point of the
-/// screen, each of them costing as much to paint as a visible stretch.
-fn thinned(points: &[Pos2]) -> Vec<Pos2> {
-    let mut kept: Vec<Pos2> = Vec::with_capacity(points.len());
-    for (i, p) in points.iter().enumerate() {
-        let is_near = kept.last().is_some_and(|last| last.distance_sq(*p) < 1.0);
-        if !is_near {
-            kept.push(*p);
-        } else if i + 1 == points.len() && kept.len() > 1 {
-            kept.pop();
-            kept.push(*p);
+impl Pen {
+    /// Adds a line with its pattern.
+    fn stroke(&self, points: Vec<Pos2>, stroke: Stroke, dash: Option<Dash>, to: &mut Vec<Shape>) {
+        let points = thin::columns(points, self.width, self.pixels_per_point);
+        let points = thin::line(&points, self.pixels_per_point);
+        match dash {
+            _ if points.len() < 2 => {}
+            None => to.push(Shape::line(points, stroke)),
+            Some(dash) => {
+                to.extend(dashes(&points, dash).into_iter().map(|d| Shape::line(d, stroke)));
+            }
         }
     }
-    kept
+
+    /// Adds points; those above or below the frame stand as small marks at its edge.
+    fn points(
+        &self,
+        points: impl Iterator<Item = Pos2>,
+        frame: Rect,
+        (mark, radius, color): (Mark, f32, Color32),
+        to: &mut Vec<Shape>,
+    ) {
+        let shown = points.filter(|p| p.x >= frame.left() && p.x <= frame.right());
+        let (inside, outside): (Vec<Pos2>, Vec<Pos2>) =
+            shown.partition(|p| p.y >= frame.top() && p.y <= frame.bottom());
+        for p in thin::columns(outside, self.width, self.pixels_per_point) {
+            beyond(p, &frame, color, to);
+        }
+        let mut rects = thin::bars(&inside, frame, self.pixels_per_point).unwrap_or_default();
+        if rects.is_empty() {
+            for p in inside {
+                match square(p, mark, radius) {
+                    Some(rect) => rects.push(rect),
+                    None => point(p, mark, radius, color, to),
+                }
+            }
+        }
+        let mut mesh = Mesh::default();
+        for rect in rects {
+            mesh.add_colored_rect(rect.round_to_pixels(self.pixels_per_point), color);
+        }
+        if !mesh.is_empty() {
+            to.push(Shape::mesh(mesh));
+        }
+    }
 }
 
 /// The drawn stretches of a dashed line, each as one line with the bends it passes.
@@ -172,7 +183,7 @@ fn dashes(points: &[Pos2], Dash(on, off): Dash) -> Vec<Vec<Pos2>> {
 }
 
 /// Marks that are squares or bars of whole pixels: two triangles each, in one mesh.
-fn square(p: Pos2, mark: Mark, r: f32) -> Option<egui::Rect> {
+fn square(p: Pos2, mark: Mark, r: f32) -> Option<Rect> {
     let half = match mark {
         // A square of this size is not told from a disc.
         Mark::Dot if r <= 1.2 => vec2(r, r),
@@ -180,7 +191,7 @@ fn square(p: Pos2, mark: Mark, r: f32) -> Option<egui::Rect> {
         Mark::Level => vec2(r, 0.5),
         _ => return None,
     };
-    Some(egui::Rect::from_min_max(p - half, p + half))
+    Some(Rect::from_min_max(p - half, p + half))
 }
 
 /// Adds one mark.
@@ -193,7 +204,7 @@ pub fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape
     match mark {
         Mark::Dot | Mark::Square | Mark::Level => shapes.push(Shape::circle_filled(p, r, color)),
         Mark::OpenSquare => {
-            let square = egui::Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
+            let square = Rect::from_center_size(p, vec2(2.0 * r, 2.0 * r));
             shapes.push(Shape::rect_stroke(square, 0.0, thin, egui::StrokeKind::Middle));
         }
         Mark::Triangle => shapes.push(Shape::convex_polygon(
@@ -211,7 +222,7 @@ pub fn point(p: Pos2, mark: Mark, r: f32, color: Color32, shapes: &mut Vec<Shape
 }
 
 /// A breath outside the frame: a small open triangle at its edge.
-fn beyond(p: Pos2, frame: &egui::Rect, color: Color32, shapes: &mut Vec<Shape>) {
+fn beyond(p: Pos2, frame: &Rect, color: Color32, shapes: &mut Vec<Shape>) {
     let (y, up) =
         if p.y < frame.top() { (frame.top() + 3.0, -1.0) } else { (frame.bottom() - 3.0, 1.0) };
     let c = pos2(p.x, y);
@@ -225,6 +236,7 @@ fn band(
     fill: Color32,
     edge: Color32,
     place: &impl Fn(&Point) -> Pos2,
+    pen: &Pen,
     shapes: &mut Vec<Shape>,
 ) {
     let low: Vec<Pos2> = rows.iter().map(|r| place(&[r[0], r[1]])).collect();
@@ -240,7 +252,7 @@ fn band(
     }
     shapes.push(Shape::mesh(mesh));
     for line in [low, high] {
-        stroke(&line, Stroke::new(1.0, edge), None, shapes);
+        pen.stroke(line, Stroke::new(1.0, edge), None, shapes);
     }
 }
 
@@ -264,7 +276,7 @@ fn area(points: &[Pos2], fill: Color32, edge: Color32, shapes: &mut Vec<Shape>) 
     }
 }
 
-fn hatch(rect: egui::Rect, every: f32, color: Color32, shapes: &mut Vec<Shape>) {
+fn hatch(rect: Rect, every: f32, color: Color32, shapes: &mut Vec<Shape>) {
     if rect.width() <= 0.0 || every <= 0.0 {
         return;
     }
@@ -298,15 +310,5 @@ mod tests {
                 vec![pos2(10.0, 8.0), pos2(10.0, 10.0)],
             ]
         );
-    }
-
-    #[test]
-    fn thinning_keeps_both_ends_and_every_visible_step() {
-        let fine: Vec<Pos2> = (0..=100).map(|i| pos2(i as f32 * 0.1, 0.0)).collect();
-        let kept = thinned(&fine);
-        assert_eq!((kept[0], kept[kept.len() - 1]), (fine[0], fine[100]));
-        assert!(kept.len() <= 11, "{}", kept.len());
-        let spike = [pos2(0.0, 0.0), pos2(0.2, 30.0), pos2(0.4, 0.0)];
-        assert_eq!(thinned(&spike), spike);
     }
 }

@@ -8,5 +8,6 @@ pub mod items;
 pub mod layout;
 pub mod paint;
 pub mod spec;
+pub mod thin;
 pub mod ticks;
 pub mod words;
