@@ -24,6 +24,9 @@ pub struct Band<'a> {
     pub damage: PixelRect,
 }
 
+/// The place of a piece of a mesh, in points: left, top, right, bottom.
+type Place = [f32; 4];
+
 /// What all triangles of one mesh share.
 struct Job<'a> {
     mesh: &'a Mesh,
@@ -61,18 +64,19 @@ impl Band<'_> {
     }
 
     fn clear(&mut self, colour: u32) {
-        for row in self.pixels.chunks_exact_mut(self.width) {
+        let rows =
+            (self.damage.y0 - self.top) * self.width..(self.damage.y1 - self.top) * self.width;
+        for row in self.pixels[rows].chunks_exact_mut(self.width) {
             row[self.damage.x0..self.damage.x1].fill(colour);
         }
     }
 
     fn mesh(&mut self, job: &Job<'_>, reach: &Reach) {
         // In points, with a pixel to spare.
-        let low = (job.clip.y0 as f32 - 1.0) / job.scale;
-        let high = (job.clip.y1 as f32 + 1.0) / job.scale;
-        let pieces = job.mesh.indices.chunks(PIECE);
-        for (indices, (top, bottom)) in pieces.zip(&reach.0) {
-            if *bottom >= low && *top <= high {
+        let [left, top] = [job.clip.x0, job.clip.y0].map(|edge| (edge as f32 - 1.0) / job.scale);
+        let [right, bottom] = [job.clip.x1, job.clip.y1].map(|e| (e as f32 + 1.0) / job.scale);
+        for (indices, [x0, y0, x1, y1]) in job.mesh.indices.chunks(PIECE).zip(&reach.0) {
+            if *y1 >= top && *y0 <= bottom && *x1 >= left && *x0 <= right {
                 self.piece(job, indices);
             }
         }
@@ -192,10 +196,10 @@ impl Job<'_> {
 /// Indices per piece of a mesh: 32 triangles, an even number so that pairs stay together.
 const PIECE: usize = 96;
 
-/// Top and bottom, in points, of each piece of a mesh: strips skip pieces that do not touch them.
+/// The place of each piece of a mesh: strips skip pieces that do not touch them.
 /// Not-a-number is left out, because it drops its triangle.
 #[derive(Default)]
-pub struct Reach(Vec<(f32, f32)>);
+pub struct Reach(Vec<Place>);
 
 impl Reach {
     /// Looks at every corner of `primitive` once.
@@ -204,21 +208,23 @@ impl Reach {
             return Self::default();
         };
         let pieces = mesh.indices.chunks(PIECE).map(|indices| {
-            let (mut top, mut bottom) = (f32::INFINITY, f32::NEG_INFINITY);
+            let mut place = [f32::INFINITY, f32::INFINITY, f32::NEG_INFINITY, f32::NEG_INFINITY];
             for index in indices {
                 if let Some(vertex) = mesh.vertices.get(*index as usize) {
-                    top = top.min(vertex.pos.y);
-                    bottom = bottom.max(vertex.pos.y);
+                    place[0] = place[0].min(vertex.pos.x);
+                    place[1] = place[1].min(vertex.pos.y);
+                    place[2] = place[2].max(vertex.pos.x);
+                    place[3] = place[3].max(vertex.pos.y);
                 }
             }
-            (top, bottom)
+            place
         });
         Self(pieces.collect())
     }
 }
 
 /// A rectangle in points to the pixels it covers, rounded as egui's own renderers round.
-fn pixel_rect(rect: Rect, scale: f32) -> PixelRect {
+pub fn pixel_rect(rect: Rect, scale: f32) -> PixelRect {
     // The cast of a negative number or NaN gives 0, of a huge one the largest value.
     let edge = |x: f32| (x * scale).round() as usize;
     PixelRect {

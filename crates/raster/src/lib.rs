@@ -9,7 +9,8 @@
 //!
 //! Reading order: [`Rasteriser::paint`] → `band` (one horizontal strip of the target) → `setup`
 //! (corners to sub-pixels) → `triangle` (spans) → `shade` (one row of one span) → `blend`.
-//! Axis-aligned rectangles and glyphs leave that road early, in `quad`.
+//! Axis-aligned rectangles and glyphs leave that road early, in `quad`. A window that shows almost
+//! the same again asks `changes` what has to be painted at all.
 //!
 //! Every coordinate is allowed: corners that are not numbers drop their triangle, and far-away
 //! ones are cut at a guard border. Nothing here panics on what egui can be made to emit.
@@ -17,6 +18,7 @@
 mod band;
 mod blend;
 mod canvas;
+mod changes;
 mod guard;
 mod paint;
 mod quad;
@@ -29,4 +31,5 @@ mod triangle;
 mod tests;
 
 pub use canvas::{Canvas, PixelRect, Target};
+pub use changes::Tiles;
 pub use paint::{Frame, Rasteriser};

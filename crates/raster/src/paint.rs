@@ -6,6 +6,7 @@ use egui::{ClippedPrimitive, Color32, Context, TexturesDelta};
 
 use crate::band::{Band, Reach};
 use crate::canvas::{Canvas, PixelRect, Target};
+use crate::changes::Tiles;
 use crate::texture::Textures;
 
 /// Strips per thread: a thread that got the empty part of a window takes the next strip.
@@ -21,8 +22,8 @@ pub struct Frame<'a> {
     pub pixels_per_point: f32,
     /// Colour to start from; `None` paints over what is there.
     pub background: Option<Color32>,
-    /// The only pixels that may change; `None` means all.
-    pub damage: Option<PixelRect>,
+    /// The only pixels that may change, without overlap; `None` means all.
+    pub damage: Option<&'a [PixelRect]>,
     /// Greatest number of threads. It never shows in the picture.
     pub threads: usize,
 }
@@ -39,6 +40,8 @@ impl<'a> Frame<'a> {
 #[derive(Default)]
 pub struct Rasteriser {
     textures: Textures,
+    /// Rises whenever a texture sent before changes.
+    changes: u64,
 }
 
 impl Rasteriser {
@@ -50,7 +53,15 @@ impl Rasteriser {
 
     /// Takes over new and changed textures. Call before painting the frame they came with.
     pub fn set_textures(&mut self, delta: &mut TexturesDelta) {
+        self.changes += u64::from(Textures::changes_what_is_shown(delta));
         self.textures.set(delta);
+    }
+
+    /// What `frame` shows in each part of a target of `size` pixels, to be compared with that of
+    /// another frame.
+    #[must_use]
+    pub fn tiles(&self, frame: &Frame<'_>, size: [usize; 2]) -> Tiles {
+        Tiles::of(frame, size, self.changes)
     }
 
     /// Drops textures no longer used. Call after painting the frame they came with.
@@ -64,7 +75,12 @@ impl Rasteriser {
     /// positive number paint nothing.
     pub fn paint(&self, target: &mut Target<'_>, frame: &Frame<'_>) {
         let bounds = target.bounds();
-        let area = frame.damage.map_or(bounds, |damage| damage.intersect(bounds));
+        let damage: Vec<PixelRect> = match frame.damage {
+            None => vec![bounds],
+            Some(damage) => damage.iter().map(|part| part.intersect(bounds)).collect(),
+        };
+        let empty = PixelRect { x0: 0, y0: 0, x1: 0, y1: 0 };
+        let area = damage.iter().fold(empty, |area, part| area.union(*part));
         if area.is_empty() {
             return;
         }
@@ -82,9 +98,14 @@ impl Rasteriser {
                 };
                 let top = area.y0 + index * rows;
                 let bottom = top + pixels.len() / width;
-                let damage = PixelRect { y0: top, y1: bottom, ..area };
-                let mut band = Band { pixels, width, top, damage };
-                band.paint(frame, &reaches, &self.textures);
+                let strip = PixelRect { y0: top, y1: bottom, ..area };
+                let mut band = Band { pixels, width, top, damage: strip };
+                for damage in damage.iter().map(|part| part.intersect(strip)) {
+                    if !damage.is_empty() {
+                        band.damage = damage;
+                        band.paint(frame, &reaches, &self.textures);
+                    }
+                }
             }
         };
         std::thread::scope(|scope| {

@@ -126,6 +126,14 @@ impl Textures {
         }
     }
 
+    /// Whether `delta` touches what shapes drawn before may show: anything but glyphs added to
+    /// free places of the font's texture.
+    pub fn changes_what_is_shown(delta: &TexturesDelta) -> bool {
+        delta.set.iter().any(|(id, changes)| {
+            *id != TextureId::default() || changes.iter().any(|change| change.pos.is_none())
+        })
+    }
+
     /// Drops the textures `delta` frees, and takes them out of `delta`.
     pub fn free(&mut self, delta: &mut TexturesDelta) {
         for id in std::mem::take(&mut delta.free) {

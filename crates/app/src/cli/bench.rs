@@ -32,10 +32,15 @@ struct Report {
     first_frame_ms: f64,
     ui_ms: Cost,
     tessellate_ms: Cost,
+    /// The whole window.
     raster_ms: Cost,
+    /// What differs from the frame before, found and painted, as a window does it.
+    changed_ms: Cost,
+    /// With the raster of the whole window.
     total_ms: Cost,
-    /// Processor time of all threads per frame, which other programs do not lengthen.
-    cpu_ms: Option<f64>,
+    /// Processor time of all threads for the raster of one frame, which other programs do not
+    /// lengthen.
+    raster_cpu_ms: Option<f64>,
 }
 
 #[derive(Default)]
@@ -43,6 +48,8 @@ struct Times {
     ui: Vec<Duration>,
     tessellate: Vec<Duration>,
     raster: Vec<Duration>,
+    changed: Vec<Duration>,
+    raster_cpu_ms: Option<f64>,
     triangles: usize,
 }
 
@@ -62,9 +69,7 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
     let mut output = headless.settle(|ui| app.ui(ui));
     let _ = headless.paint(&mut output, threads);
     let first = start.elapsed();
-    let before = cpu_ms();
     let times = drag(&mut app, &mut headless, screen, frames, threads);
-    let spent = before.zip(cpu_ms()).map(|(before, after)| (after - before) / frames as f64);
     let total: Vec<Duration> =
         (0..frames).map(|i| times.ui[i] + times.tessellate[i] + times.raster[i]).collect();
     let report = Report {
@@ -79,8 +84,9 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
         ui_ms: cost(times.ui),
         tessellate_ms: cost(times.tessellate),
         raster_ms: cost(times.raster),
+        changed_ms: cost(times.changed),
         total_ms: cost(total),
-        cpu_ms: spent,
+        raster_cpu_ms: times.raster_cpu_ms.map(|all| all / frames as f64),
     };
     if args.json {
         files::print(&serde_json::to_string(&report).unwrap_or_default());
@@ -90,9 +96,10 @@ pub fn frame(args: &Args) -> Result<Exit, Failure> {
         line("ui", &report.ui_ms);
         line("tessellate", &report.tessellate_ms);
         line("raster", &report.raster_ms);
+        line("changed", &report.changed_ms);
         line("total", &report.total_ms);
-        if let Some(spent) = spent {
-            files::print(&format!("processor   {spent:8.2} per frame, all threads"));
+        if let Some(spent) = report.raster_cpu_ms {
+            files::print(&format!("processor   {spent:8.2} per raster, all threads"));
         }
     }
     Ok(Exit::Ok)
@@ -117,27 +124,37 @@ fn drag(
         let _ = headless.frame(events, |ui| app.ui(ui));
     }
     let background = headless.ctx().global_style().visuals.panel_fill;
-    let mut canvas = Canvas::new(screen.width, screen.height, background);
-    let mut times = Times::default();
+    let new = || Canvas::new(screen.width, screen.height, background);
+    let (mut canvas, mut window, mut shown) = (new(), new(), None);
+    let mut times = Times { raster_cpu_ms: Some(0.0), ..Times::default() };
     for n in 0..frames {
         let swing = (n % 60) as f32;
         let x = at.x + 2.0 * swing.min(60.0 - swing) + 2.0;
         let moved = Event::PointerMoved(Pos2::new(x, at.y));
         let start = Instant::now();
         let output = headless.frame(vec![moved], |ui| app.ui(ui));
-        let built = Instant::now();
+        times.ui.push(start.elapsed());
+        let start = Instant::now();
         let primitives = headless.ctx().tessellate(output.shapes, output.pixels_per_point);
-        let tessellated = Instant::now();
+        times.tessellate.push(start.elapsed());
         let frame = Frame {
             background: Some(background),
             threads,
             ..Frame::new(&primitives, output.pixels_per_point)
         };
+        let (cpu, start) = (cpu_ms(), Instant::now());
         headless.rasteriser().paint(&mut canvas.target(), &frame);
-        let painted = Instant::now();
-        times.ui.push(built - start);
-        times.tessellate.push(tessellated - built);
-        times.raster.push(painted - tessellated);
+        times.raster.push(start.elapsed());
+        times.raster_cpu_ms = times
+            .raster_cpu_ms
+            .and_then(|all| Some(all + cpu_ms()? - cpu?));
+        let start = Instant::now();
+        let tiles = headless.rasteriser().tiles(&frame, [screen.width, screen.height]);
+        let changed = shown.map(|earlier| tiles.changed_since(&earlier));
+        let damage = changed.as_deref();
+        headless.rasteriser().paint(&mut window.target(), &Frame { damage, ..frame });
+        times.changed.push(start.elapsed());
+        shown = Some(tiles);
         times.triangles = primitives
             .iter()
             .map(|primitive| match &primitive.primitive {

@@ -1,12 +1,13 @@
 //! The window painted by the processor: winit for events, softbuffer for pixels.
 
+use std::collections::VecDeque;
 use std::num::NonZeroU32;
 use std::rc::Rc;
 use std::time::{Duration, Instant};
 
 use egui::{Context, ViewportCommand, ViewportEvent, ViewportId, ViewportInfo};
 use egui_winit::accesskit_winit::{Event as AccessEvent, WindowEvent as AccessWindowEvent};
-use raster::{Frame, Rasteriser, Target};
+use raster::{Frame, PixelRect, Rasteriser, Target, Tiles};
 use winit::application::ApplicationHandler;
 use winit::event::{StartCause, WindowEvent};
 use winit::event_loop::{ActiveEventLoop, ControlFlow, EventLoop, EventLoopProxy};
@@ -62,7 +63,7 @@ impl ApplicationHandler<Wish> for Shell {
     fn new_events(&mut self, _events: &ActiveEventLoop, cause: StartCause) {
         if let (StartCause::ResumeTimeReached { .. }, Some(open)) = (cause, &mut self.open) {
             open.repaint_at = None;
-            open.window.request_redraw();
+            open.redraw();
         }
     }
 
@@ -101,9 +102,16 @@ struct OpenWindow {
     paint: Paint,
     rasteriser: Rasteriser,
     threads: usize,
+    /// What the latest frames showed, the latest first.
+    shown: VecDeque<Tiles>,
     repaint_at: Option<Instant>,
     hidden: bool,
+    /// Whether the next request to draw comes from here; others mean that pixels were lost.
+    asked: bool,
 }
+
+/// Buffers that a window system takes turns with, at most.
+const BUFFERS: usize = 4;
 
 impl OpenWindow {
     fn new(
@@ -140,6 +148,7 @@ impl OpenWindow {
         egui_winit::update_viewport_info(&mut info, &ctx, &window, true);
         window.set_visible(true);
         window.request_redraw();
+        let threads = std::thread::available_parallelism().map_or(1, usize::from).min(8);
         Ok(Self {
             surface,
             window,
@@ -147,10 +156,17 @@ impl OpenWindow {
             info,
             paint,
             rasteriser: Rasteriser::new(),
-            threads: std::thread::available_parallelism().map_or(1, usize::from).min(8),
+            threads,
+            shown: VecDeque::new(),
             repaint_at: None,
             hidden: false,
+            asked: false,
         })
+    }
+
+    fn redraw(&mut self) {
+        self.asked = true;
+        self.window.request_redraw();
     }
 
     fn fulfil(&mut self, wish: Wish) {
@@ -174,14 +190,14 @@ impl OpenWindow {
                         self.state.egui_ctx().disable_accesskit();
                     }
                 }
-                self.window.request_redraw();
+                self.redraw();
             }
         }
     }
 
     fn repaint_after(&mut self, delay: Duration) {
         if delay.is_zero() {
-            self.window.request_redraw();
+            self.redraw();
         } else if let Some(at) = Instant::now().checked_add(delay) {
             self.repaint_at = Some(self.repaint_at.map_or(at, |sooner| sooner.min(at)));
         }
@@ -194,10 +210,19 @@ impl OpenWindow {
     ) -> Result<(), StartError> {
         let response = self.state.on_window_event(&self.window, event);
         match event {
-            WindowEvent::RedrawRequested if !self.hidden => self.frame(events)?,
+            WindowEvent::RedrawRequested => {
+                // Only here is a lost pixel never told together with a wish of our own.
+                if !std::mem::take(&mut self.asked) || !cfg!(target_os = "linux") {
+                    self.shown.clear();
+                }
+                if !self.hidden {
+                    self.frame(events)?;
+                }
+            }
             WindowEvent::Occluded(hidden) => {
                 self.hidden = *hidden;
-                self.window.request_redraw();
+                self.shown.clear();
+                self.redraw();
             }
             WindowEvent::CloseRequested => {
                 // The content may keep the window open, e.g. to ask about unsaved work; it is
@@ -205,7 +230,7 @@ impl OpenWindow {
                 self.info.events.push(ViewportEvent::Close);
                 self.frame(events)?;
             }
-            _ if response.repaint => self.window.request_redraw(),
+            _ if response.repaint => self.redraw(),
             _ => {}
         }
         Ok(())
@@ -264,7 +289,7 @@ impl OpenWindow {
             self.state.egui_input_mut().events.extend(event);
         }
         if !self.info.events.is_empty() || !self.state.egui_input().events.is_empty() {
-            self.window.request_redraw();
+            self.redraw();
         }
     }
 
@@ -283,16 +308,41 @@ impl OpenWindow {
         let primitives = ctx.tessellate(shapes, scale);
         self.surface.resize(width, height).map_err(failed)?;
         let mut buffer = self.surface.buffer_mut().map_err(failed)?;
-        let frame = Frame {
+        let whole = Frame {
             background: Some(ctx.global_style().visuals.panel_fill),
             threads: self.threads,
             ..Frame::new(&primitives, scale)
         };
-        let mut target = Target::new(&mut buffer, size.width as usize, size.height as usize);
-        self.rasteriser.paint(&mut target, &frame);
+        let [wide, high] = [size.width, size.height].map(|side| side as usize);
+        let tiles = self.rasteriser.tiles(&whole, [wide, high]);
+        let all = PixelRect { x0: 0, y0: 0, x1: wide, y1: high };
+        let since = |frames: usize| match self.shown.get(frames) {
+            Some(earlier) => tiles.changed_since(earlier),
+            None => vec![all],
+        };
+        // The window shows the latest frame, the buffer perhaps an older one or nothing.
+        let on_screen: Vec<softbuffer::Rect> = since(0).iter().filter_map(damage).collect();
+        let in_buffer = usize::from(buffer.age()).checked_sub(1).map_or(vec![all], since);
+        self.shown.push_front(tiles);
+        self.shown.truncate(BUFFERS);
+        let mut target = Target::new(&mut buffer, wide, high);
+        self.rasteriser.paint(&mut target, &Frame { damage: Some(&in_buffer), ..whole });
+        if on_screen.is_empty() {
+            return Ok(());
+        }
         self.window.pre_present_notify();
-        buffer.present().map_err(failed)
+        buffer.present_with_damage(&on_screen).map_err(failed)
     }
+}
+
+fn damage(part: &PixelRect) -> Option<softbuffer::Rect> {
+    let side = |from: usize, to: usize| NonZeroU32::new(u32::try_from(to - from).ok()?);
+    Some(softbuffer::Rect {
+        x: u32::try_from(part.x0).ok()?,
+        y: u32::try_from(part.y0).ok()?,
+        width: side(part.x0, part.x1)?,
+        height: side(part.y0, part.y1)?,
+    })
 }
 
 fn failed(error: softbuffer::SoftBufferError) -> StartError {

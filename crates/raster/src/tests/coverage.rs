@@ -122,7 +122,7 @@ fn clip_rectangles_round_to_whole_pixels_and_damage_limits_the_change() {
     let damage = PixelRect { x0: 2, y0: 1, x1: 4, y1: 2 };
     white().paint(
         &mut canvas.target(),
-        &Frame { damage: Some(damage), ..Frame::new(&primitives, 1.0) },
+        &Frame { damage: Some(&[damage]), ..Frame::new(&primitives, 1.0) },
     );
     assert!(painted(&canvas, 0).is_empty());
     assert_eq!(painted(&canvas, 1), [2, 3]);

@@ -28,7 +28,7 @@ fn any_vertex() -> impl Strategy<Value = Vertex> {
     )
 }
 
-fn any_mesh() -> impl Strategy<Value = Mesh> {
+pub fn any_mesh() -> impl Strategy<Value = Mesh> {
     let vertices = prop::collection::vec(any_vertex(), 0..12);
     // Some indices point at nothing.
     let indices = prop::collection::vec(0u32..14, 0..40);
@@ -82,7 +82,7 @@ proptest! {
         for (x0, x1) in [(0, x), (x, 50)] {
             for (y0, y1) in [(0, y), (y, 50)] {
                 let part = PixelRect { x0, y0, x1, y1 };
-                rasteriser.paint(&mut pieces.target(), &Frame { damage: Some(part), threads: 2, ..Frame::new(&primitives, 1.0) });
+                rasteriser.paint(&mut pieces.target(), &Frame { damage: Some(&[part]), threads: 2, ..Frame::new(&primitives, 1.0) });
             }
         }
         // A span cut at a piece's border starts anew from its exact value, so a channel may round

@@ -1,5 +1,6 @@
 //! Pictures small enough to check by arithmetic, and inputs chosen to break things.
 
+mod changes;
 mod coverage;
 mod hostile;
 mod texturing;
