@@ -27,16 +27,16 @@ impl PlotItem for Drawn {
     fn shapes(&self, ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
         let place = |p: &Point| transform.position_from_point(&PlotPoint::new(p[0], p[1]));
         let frame = transform.frame();
-        let pen = Pen { width: frame.width(), pixels_per_point: ui.pixels_per_point() };
+        let pen = Pen { frame: *frame, pixels_per_point: ui.pixels_per_point() };
         match &self.item {
             Item::Line { pieces, width, color, dash } => {
                 for piece in pieces {
-                    let points = piece.iter().map(place).collect();
-                    pen.stroke(points, Stroke::new(*width, *color), *dash, shapes);
+                    let points: Vec<Pos2> = piece.iter().map(place).collect();
+                    pen.stroke(&points, Stroke::new(*width, *color), *dash, shapes);
                 }
             }
             Item::Points { points, mark, radius, color } => {
-                pen.points(points.iter().map(place), *frame, (*mark, *radius, *color), shapes);
+                pen.points(points.iter().map(place), (*mark, *radius, *color), shapes);
             }
             Item::Band { rows, fill, edge } => band(rows, *fill, *edge, &place, &pen, shapes),
             Item::Area { points, fill, edge } => {
@@ -94,17 +94,24 @@ impl PlotItem for Drawn {
     }
 }
 
-/// How lines are drawn: the screen they are drawn for.
+/// How lines and points are drawn: the frame and the screen they are drawn for.
 struct Pen {
-    width: f32,
+    frame: Rect,
     pixels_per_point: f32,
 }
 
 impl Pen {
     /// Adds a line with its pattern.
-    fn stroke(&self, points: Vec<Pos2>, stroke: Stroke, dash: Option<Dash>, to: &mut Vec<Shape>) {
-        let points = thin::columns(points, self.width, self.pixels_per_point);
-        let points = thin::line(&points, self.pixels_per_point);
+    fn stroke(&self, points: &[Pos2], stroke: Stroke, dash: Option<Dash>, to: &mut Vec<Shape>) {
+        let scale = self.pixels_per_point;
+        if let Some(mut bars) = thin::thicket(points, self.frame, stroke.width, scale) {
+            if let Some(Dash(on, off)) = dash {
+                bars.retain(|bar| (bar.left() - self.frame.left()).rem_euclid(on + off) < on);
+            }
+            self.rects(bars, stroke.color, to);
+            return;
+        }
+        let points = thin::line(points, scale);
         match dash {
             _ if points.len() < 2 => {}
             None => to.push(Shape::line(points, stroke)),
@@ -114,36 +121,49 @@ impl Pen {
         }
     }
 
-    /// Adds points; those above or below the frame stand as small marks at its edge.
-    fn points(
-        &self,
-        points: impl Iterator<Item = Pos2>,
-        frame: Rect,
-        (mark, radius, color): (Mark, f32, Color32),
-        to: &mut Vec<Shape>,
-    ) {
-        let shown = points.filter(|p| p.x >= frame.left() && p.x <= frame.right());
-        let (inside, outside): (Vec<Pos2>, Vec<Pos2>) =
-            shown.partition(|p| p.y >= frame.top() && p.y <= frame.bottom());
-        for p in thin::columns(outside, self.width, self.pixels_per_point) {
-            beyond(p, &frame, color, to);
-        }
-        let mut rects = thin::bars(&inside, frame, self.pixels_per_point).unwrap_or_default();
+    /// Adds rectangles of whole pixels: two triangles each, in one mesh.
+    fn rects(&self, rects: Vec<Rect>, color: Color32, to: &mut Vec<Shape>) {
         if rects.is_empty() {
-            for p in inside {
-                match square(p, mark, radius) {
-                    Some(rect) => rects.push(rect),
-                    None => point(p, mark, radius, color, to),
-                }
-            }
+            return;
         }
         let mut mesh = Mesh::default();
         for rect in rects {
             mesh.add_colored_rect(rect.round_to_pixels(self.pixels_per_point), color);
         }
-        if !mesh.is_empty() {
-            to.push(Shape::mesh(mesh));
+        to.push(Shape::mesh(mesh));
+    }
+
+    /// Adds points; those above or below the frame stand as small marks at its edge.
+    fn points(
+        &self,
+        points: impl Iterator<Item = Pos2>,
+        (mark, radius, color): (Mark, f32, Color32),
+        to: &mut Vec<Shape>,
+    ) {
+        let frame = self.frame;
+        let shown = points.filter(|p| p.x >= frame.left() && p.x <= frame.right());
+        let (inside, outside): (Vec<Pos2>, Vec<Pos2>) =
+            shown.partition(|p| p.y >= frame.top() && p.y <= frame.bottom());
+        let mut last = f32::NEG_INFINITY;
+        for p in outside {
+            // Marks within a pixel of each other are one.
+            if (p.x - last).abs() * self.pixels_per_point >= 1.0 {
+                beyond(p, &frame, color, to);
+                last = p.x;
+            }
         }
+        if let Some(bars) = thin::cloud(&inside, frame, self.pixels_per_point) {
+            self.rects(bars, color, to);
+            return;
+        }
+        let mut squares = Vec::new();
+        for p in inside {
+            match square(p, mark, radius) {
+                Some(rect) => squares.push(rect),
+                None => point(p, mark, radius, color, to),
+            }
+        }
+        self.rects(squares, color, to);
     }
 }
 
@@ -241,18 +261,26 @@ fn band(
 ) {
     let low: Vec<Pos2> = rows.iter().map(|r| place(&[r[0], r[1]])).collect();
     let high: Vec<Pos2> = rows.iter().map(|r| place(&[r[0], r[2]])).collect();
+    // Rows nearer to each other than a pixel are one.
+    let mut edges: Vec<(Pos2, Pos2)> = Vec::new();
+    for (i, pair) in low.iter().copied().zip(high.iter().copied()).enumerate() {
+        let far = edges.last().is_none_or(|e| (pair.0.x - e.0.x) * pen.pixels_per_point >= 1.0);
+        if far || i + 1 == low.len() {
+            edges.push(pair);
+        }
+    }
     let mut mesh = Mesh::default();
-    for (a, b) in low.iter().zip(&high) {
+    for (a, b) in &edges {
         mesh.colored_vertex(*a, fill);
         mesh.colored_vertex(*b, fill);
     }
-    for i in 1..rows.len() as u32 {
+    for i in 1..edges.len() as u32 {
         mesh.add_triangle(2 * i - 2, 2 * i - 1, 2 * i);
         mesh.add_triangle(2 * i - 1, 2 * i, 2 * i + 1);
     }
     shapes.push(Shape::mesh(mesh));
     for line in [low, high] {
-        pen.stroke(line, Stroke::new(1.0, edge), None, shapes);
+        pen.stroke(&line, Stroke::new(1.0, edge), None, shapes);
     }
 }
 

@@ -124,7 +124,9 @@ fn ground(ui: &mut Ui, tokens: &Tokens, frame: Rect, chart: &Chart, x: &Scale) {
         }
         None => {
             let step = time_step(chart.x.1 - chart.x.0, frame.width(), 56.0);
-            let fine = if step > 60.0 { 60.0 } else { step };
+            // Minutes are lined where they stand apart.
+            let apart = 60.0 * f64::from(frame.width()) / (chart.x.1 - chart.x.0) >= 6.0;
+            let fine = if step > 60.0 && apart { 60.0 } else { step };
             for t in ticks(chart.x.0, chart.x.1, fine) {
                 let labelled = (t / step - (t / step).round()).abs() < 1e-9;
                 painter.vline(x.place(t), frame.y_range(), if labelled { full } else { half });

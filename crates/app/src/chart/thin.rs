@@ -76,51 +76,72 @@ fn cross(a: Vec2, b: Vec2) -> f32 {
     a.x * b.y - a.y * b.x
 }
 
-/// Of a long run of points that advances along x: in each column of pixels the first, the lowest,
-/// the highest and the last, in their order. Shorter runs stay as they are.
+/// Of a cloud of points too dense to be told apart: in each column of pixels the bar from its
+/// lowest to its highest point. `None` for a cloud that is not.
 #[must_use]
-pub fn columns(points: Vec<Pos2>, width: f32, pixels_per_point: f32) -> Vec<Pos2> {
-    if points.len() <= dense(width, pixels_per_point) {
-        return points;
+pub fn cloud(points: &[Pos2], frame: Rect, pixels_per_point: f32) -> Option<Vec<Rect>> {
+    let mut columns = Columns::of(points, frame, pixels_per_point)?;
+    for p in points {
+        columns.reach(p.x, p.y, p.y);
     }
-    let column = |p: &Pos2| (p.x * pixels_per_point).floor();
-    let mut kept = Vec::new();
-    for group in points.chunk_by(|a, b| column(a) == column(b)) {
-        let by_y = |i: &usize, k: &usize| group[*i].y.total_cmp(&group[*k].y);
-        let low = (0..group.len()).min_by(by_y).unwrap_or(0);
-        let high = (0..group.len()).max_by(by_y).unwrap_or(0);
-        let mut corners = [0, low.min(high), low.max(high), group.len() - 1].to_vec();
-        corners.dedup();
-        kept.extend(corners.into_iter().map(|i| group[i]));
-    }
-    kept
+    Some(columns.bars(1.0 / pixels_per_point))
 }
 
-/// Of a cloud too dense to be told apart: in each column of pixels the bar from its lowest to its
-/// highest point. `None` for a cloud that is not.
+/// Of a line that runs up and down within single columns of pixels: in each column the bar that
+/// holds all of it, `width` high at least. `None` for a line that does not.
 #[must_use]
-pub fn bars(points: &[Pos2], frame: Rect, pixels_per_point: f32) -> Option<Vec<Rect>> {
-    if points.len() <= dense(frame.width(), pixels_per_point) {
-        return None;
+pub fn thicket(
+    points: &[Pos2],
+    frame: Rect,
+    width: f32,
+    pixels_per_point: f32,
+) -> Option<Vec<Rect>> {
+    let mut columns = Columns::of(points, frame, pixels_per_point)?;
+    for pair in points.windows(2) {
+        // Joined to its neighbour where the line leaves a column.
+        columns.reach(pair[1].x, pair[0].y, pair[1].y);
     }
-    let columns = (frame.width() * pixels_per_point).ceil() as usize + 1;
-    let mut spans = vec![(f32::INFINITY, f32::NEG_INFINITY); columns];
-    for p in points {
-        let column = ((p.x - frame.left()) * pixels_per_point) as usize;
-        if let Some(span) = spans.get_mut(column) {
-            *span = (span.0.min(p.y), span.1.max(p.y));
+    Some(columns.bars(width))
+}
+
+/// Lowest and highest y in each column of pixels of a frame.
+struct Columns {
+    left: f32,
+    pixels_per_point: f32,
+    spans: Vec<(f32, f32)>,
+}
+
+impl Columns {
+    /// Empty columns for points that crowd them.
+    fn of(points: &[Pos2], frame: Rect, pixels_per_point: f32) -> Option<Self> {
+        let columns = (frame.width() * pixels_per_point).ceil().max(1.0) as usize;
+        (points.len() > DENSE * columns).then(|| Self {
+            left: frame.left(),
+            pixels_per_point,
+            spans: vec![(f32::INFINITY, f32::NEG_INFINITY); columns + 1],
+        })
+    }
+
+    fn reach(&mut self, x: f32, y0: f32, y1: f32) {
+        let column = (x - self.left) * self.pixels_per_point;
+        // Points left of the frame would all be cast to its first column.
+        if column >= 0.0
+            && let Some(span) = self.spans.get_mut(column as usize)
+        {
+            *span = (span.0.min(y0).min(y1), span.1.max(y0).max(y1));
         }
     }
-    let pixel = 1.0 / pixels_per_point;
-    let place = |(i, (low, high)): (usize, (f32, f32))| {
-        let left = frame.left() + i as f32 * pixel;
-        (low <= high).then(|| Rect::from_min_max(pos2(left, low), pos2(left + pixel, high + pixel)))
-    };
-    Some(spans.into_iter().enumerate().filter_map(place).collect())
-}
 
-fn dense(width: f32, pixels_per_point: f32) -> usize {
-    DENSE * (width * pixels_per_point).max(1.0) as usize
+    fn bars(self, width: f32) -> Vec<Rect> {
+        let pixel = 1.0 / self.pixels_per_point;
+        let place = |(i, (low, high)): (usize, (f32, f32))| {
+            let left = self.left + i as f32 * pixel;
+            let (top, bottom) = (low - 0.5 * width, high + 0.5 * width);
+            let corners = (pos2(left, top), pos2(left + pixel, bottom));
+            (low <= high).then(|| Rect::from_min_max(corners.0, corners.1))
+        };
+        self.spans.into_iter().enumerate().filter_map(place).collect()
+    }
 }
 
 #[cfg(test)]
@@ -166,23 +187,30 @@ mod tests {
         }
     }
 
-    #[test]
-    fn a_dense_run_keeps_ends_and_extremes_of_each_column() {
-        // Two columns of pixels, ten points each (more than eight per column).
-        let y = [3.0, 1.0, 2.0, 9.0, 4.0, 5.0, 6.0, 7.0, 8.0, 2.5];
-        let points: Vec<Pos2> = (0..20).map(|i| pos2(i as f32 * 0.1, y[i % 10])).collect();
-        let kept: Vec<f32> = columns(points.clone(), 2.0, 1.0).iter().map(|p| p.y).collect();
-        assert_eq!(kept, [3.0, 1.0, 9.0, 2.5, 3.0, 1.0, 9.0, 2.5]);
-        assert_eq!(columns(points.clone(), 3.0, 1.0), points);
+    fn bar([left, top, right, bottom]: [f32; 4]) -> Rect {
+        Rect::from_min_max(pos2(left, top), pos2(right, bottom))
+    }
+
+    /// Two columns of pixels from x = 10, ten points each (dense is more than eight).
+    const FRAME: Rect = Rect { min: pos2(10.0, 0.0), max: pos2(12.0, 50.0) };
+
+    fn points(y: impl Fn(usize) -> f32) -> Vec<Pos2> {
+        (0..20).map(|i| pos2(10.05 + i as f32 * 0.1, y(i))).collect()
     }
 
     #[test]
     fn a_dense_cloud_becomes_one_bar_per_column() {
-        let frame = Rect::from_min_max(pos2(10.0, 0.0), pos2(12.0, 50.0));
-        let points: Vec<Pos2> = (0..20).map(|i| pos2(10.0 + i as f32 * 0.1, i as f32)).collect();
-        let bars = bars(&points, frame, 1.0).expect("dense");
-        let wanted = [[10.0, 0.0, 11.0, 10.0], [11.0, 10.0, 12.0, 20.0]]
-            .map(|[a, b, c, d]| Rect::from_min_max(pos2(a, b), pos2(c, d)));
-        assert_eq!(bars, wanted);
+        let rising = points(|i| i as f32);
+        let bars = cloud(&rising, FRAME, 1.0).expect("dense");
+        assert_eq!(bars, [bar([10.0, -0.5, 11.0, 9.5]), bar([11.0, 9.5, 12.0, 19.5])]);
+        assert_eq!(cloud(&rising[..16], FRAME, 1.0), None);
+    }
+
+    #[test]
+    fn a_dense_line_fills_what_it_runs_through_and_stays_joined() {
+        // Up and down between 3 and 7 in the first column, at 9 in the second.
+        let line = points(|i| if i >= 10 { 9.0 } else { [3.0, 7.0][i % 2] });
+        let bars = thicket(&line, FRAME, 2.0, 1.0).expect("dense");
+        assert_eq!(bars, [bar([10.0, 2.0, 11.0, 8.0]), bar([11.0, 6.0, 12.0, 10.0])]);
     }
 }

@@ -145,9 +145,7 @@ fn drag(
         let (cpu, start) = (cpu_ms(), Instant::now());
         headless.rasteriser().paint(&mut canvas.target(), &frame);
         times.raster.push(start.elapsed());
-        times.raster_cpu_ms = times
-            .raster_cpu_ms
-            .and_then(|all| Some(all + cpu_ms()? - cpu?));
+        times.raster_cpu_ms = times.raster_cpu_ms.and_then(|all| Some(all + cpu_ms()? - cpu?));
         let start = Instant::now();
         let tiles = headless.rasteriser().tiles(&frame, [screen.width, screen.height]);
         let changed = shown.map(|earlier| tiles.changed_since(&earlier));
