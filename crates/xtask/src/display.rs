@@ -269,8 +269,8 @@ impl Display {
             // Iconic state (3), as the Inter-Client Communication Conventions Manual has it.
             let change = self.atom("WM_CHANGE_STATE")?;
             let event = xproto::ClientMessageEvent::new(32, window, change, [3, 0, 0, 0, 0]);
-            let to = xproto::EventMask::SUBSTRUCTURE_REDIRECT
-                | xproto::EventMask::SUBSTRUCTURE_NOTIFY;
+            let to =
+                xproto::EventMask::SUBSTRUCTURE_REDIRECT | xproto::EventMask::SUBSTRUCTURE_NOTIFY;
             self.connection.send_event(false, self.root, to, event)?;
         } else {
             self.connection.map_window(window)?;

@@ -1,11 +1,15 @@
 //! The project's own chores, as functions: each verb of `cargo xtask` is one module.
 
+pub mod bench;
 pub mod ci;
 pub mod demo;
+pub mod display;
+pub mod drag;
+pub mod program;
 pub mod race;
 pub mod references;
+pub mod sheet;
 pub mod tidy;
-pub mod window;
 
 use std::path::PathBuf;
 

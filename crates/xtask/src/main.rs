@@ -4,8 +4,8 @@ use std::process::ExitCode;
 
 const USAGE: &str = "cargo xtask VERB
 
-  bench [--json]
-          what a frame costs while a boundary is dragged
+  bench [--json] [--quick]
+          what frames and real windows cost, beside what they may cost; needs Xvfb
   bench --baseline DIR
           the engine against a Python pipeline on the same tables
   ci      everything the repository checks without a display or outside data
@@ -25,8 +25,8 @@ fn main() -> ExitCode {
                 ExitCode::from(2)
             }
         },
-        Some("bench") => xtask::window::bench(&args[1..]),
-        Some("sheet") => xtask::window::sheet(),
+        Some("bench") => xtask::bench::run(&args[1..]),
+        Some("sheet") => xtask::sheet::run(),
         Some("demo") => xtask::demo::run(),
         Some("references") => xtask::references::run(&args[1..]),
         Some("ci") => xtask::ci::run(),

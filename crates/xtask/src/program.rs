@@ -1,5 +1,7 @@
 //! The program itself, as chores and checks from outside start it.
 
+use std::io::Read as _;
+use std::os::unix::process::CommandExt as _;
 use std::path::{Path, PathBuf};
 use std::process::{Child, Command, Stdio};
 
@@ -69,7 +71,8 @@ impl Program {
     pub fn start(mut command: Command, display: &Display, home: &Path) -> std::io::Result<Self> {
         command.env("DISPLAY", display.name()).env_remove("WAYLAND_DISPLAY");
         command.env_remove("WAYLAND_SOCKET").env("XDG_CONFIG_HOME", home);
-        Ok(Self { child: command.spawn()? })
+        // A group of its own: the program may start itself again in a child.
+        Ok(Self { child: command.process_group(0).spawn()? })
     }
 
     /// Whether it still runs.
@@ -94,6 +97,19 @@ impl Program {
         Some(fields.next()?.parse::<u64>().ok()? + fields.next()?.parse::<u64>().ok()?)
     }
 
+    /// Ends it and all it started, and returns what it has written on standard error, if that was
+    /// piped.
+    pub fn end_and_read(&mut self) -> String {
+        let group = format!("-{}", self.child.id());
+        let _ = Command::new("kill").args(["-KILL", "--", &group]).status();
+        let _ = self.child.wait();
+        let mut text = String::new();
+        if let Some(mut pipe) = self.child.stderr.take() {
+            let _ = pipe.read_to_string(&mut text);
+        }
+        text
+    }
+
     fn proc(&self, file: &str) -> String {
         format!("/proc/{}/{file}", self.child.id())
     }
@@ -101,7 +117,6 @@ impl Program {
 
 impl Drop for Program {
     fn drop(&mut self) {
-        let _ = self.child.kill();
-        let _ = self.child.wait();
+        self.end_and_read();
     }
 }
