@@ -1,7 +1,10 @@
 //! The phase ribbon under each column of time charts: phases, grips, marks, notes.
 
 use analysis::decisions::Phase;
-use egui::{Align, EventFilter, Rect, Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2, vec2};
+use egui::{
+    Align, EventFilter, NumExt as _, Rect, Role, Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2,
+    vec2,
+};
 
 use crate::chart::column::{Side, hovered};
 use crate::chart::handles::{Handle, HandleKind};
@@ -150,7 +153,7 @@ fn focus_ring(ui: &Ui, cx: &Context<'_>, rect: Rect) {
 
 /// The focusable slider of a handle.
 pub(crate) fn slider(ui: &mut Ui, cx: &Context<'_>, ribbon: Rect, scale: &Scale, handle: &Handle) {
-    let x = scale.place(handle.t_s).clamp(ribbon.left(), ribbon.right());
+    let x = scale.place(handle.t_s).at_most(ribbon.right()).at_least(ribbon.left());
     let rect = Rect::from_center_size(pos2(x, ribbon.center().y), vec2(12.0, ribbon.height()));
     let response = ui.interact(rect, slider_id(handle.kind), Sense::FOCUSABLE);
     let name = handle.kind.name();

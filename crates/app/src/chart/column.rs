@@ -1,6 +1,6 @@
 //! A column of linked time charts with its handles, ribbon and notes.
 
-use egui::{Align, Rect, Response, Sense, Stroke, Ui, pos2, vec2};
+use egui::{Align, NumExt as _, Rect, Response, Sense, Stroke, Ui, pos2, vec2};
 
 use super::handles::{Handle, HandleKind};
 use super::interact::{Geometry, REACH, pointer_id};
@@ -235,7 +235,8 @@ pub(crate) fn active_label(
     }
     let wide = text::width(ui, &[Run::new(words.clone(), size::BODY, cx.tokens.on_movable)]) + 12.0;
     let x = scale.place(handle.t_s);
-    let left = (x - 0.5 * wide).clamp(column.labels.left(), column.labels.right() - wide);
+    let left =
+        (x - 0.5 * wide).at_most(column.labels.right() - wide).at_least(column.labels.left());
     let top = column.labels.top() + 1.0;
     Some((Rect::from_min_size(pos2(left, top), vec2(wide, 20.0)), words))
 }

@@ -1,7 +1,8 @@
 //! Draws a chart into its frame.
 
 use egui::{
-    Align, Color32, Rect, Response, Role, Sense, Stroke, Ui, UiBuilder, WidgetInfo, pos2, vec2,
+    Align, Color32, NumExt as _, Rect, Response, Role, Sense, Stroke, Ui, UiBuilder, WidgetInfo,
+    pos2, vec2,
 };
 use egui_plot::{Plot, PlotBounds};
 
@@ -158,7 +159,7 @@ pub fn time_labels(ui: &mut Ui, tokens: &Tokens, labels: Rect, x: &Scale, covere
         let run = [Run::new(clock(*t), size::BODY, tokens.ink2)];
         let wide = text::width(ui, &run);
         let centre = x.place(*t);
-        let left = (centre - 0.5 * wide).clamp(labels.left(), labels.right() - wide);
+        let left = (centre - 0.5 * wide).at_most(labels.right() - wide).at_least(labels.left());
         let left = if i == 0 || i == last { left } else { centre - 0.5 * wide };
         let rect = Rect::from_min_size(pos2(left, labels.top()), vec2(wide, labels.height()));
         if covered.iter().any(|c| c.intersects(rect)) {

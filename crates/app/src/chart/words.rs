@@ -1,6 +1,6 @@
 //! What is written into the frame of a chart: names beside lines, and remarks.
 
-use egui::{Align, FontId, Rect, Stroke, Ui, pos2, vec2};
+use egui::{Align, FontId, NumExt as _, Rect, Stroke, Ui, pos2, vec2};
 
 use super::layout::{Scale, spread};
 use super::spec::Chart;
@@ -32,7 +32,7 @@ fn names(
     let runs: Vec<[Run; 1]> =
         shown.iter().map(|l| [Run::new(l.text.clone(), size::BODY, l.color)]).collect();
     let widths: Vec<f32> = runs.iter().map(|r| text::width(ui, r)).collect();
-    let line_y = |i: usize| y.place(shown[i].at[1]).clamp(frame.top(), frame.bottom());
+    let line_y = |i: usize| y.place(shown[i].at[1]).at_most(frame.bottom()).at_least(frame.top());
     let after = |i: usize| x.place(shown[i].at[0]) + 26.0 + widths[i] <= frame.right() - 2.0;
     // Without room after its line a name stands under it, or over it near the bottom.
     let wanted: Vec<f32> = (0..shown.len())
@@ -93,8 +93,8 @@ pub fn free(wanted: Rect, frame: Rect, taken: &[Rect]) -> Rect {
     let rightmost = (frame.right() - wanted.width()).max(frame.left());
     let lowest = (frame.bottom() - wanted.height()).max(frame.top());
     let at = |shift: f32| {
-        let left = wanted.left().clamp(frame.left(), rightmost);
-        let top = (wanted.top() + shift).clamp(frame.top(), lowest);
+        let left = wanted.left().at_most(rightmost).at_least(frame.left());
+        let top = (wanted.top() + shift).at_most(lowest).at_least(frame.top());
         Rect::from_min_size(pos2(left, top), wanted.size())
     };
     let meets_none = |rect: &Rect| taken.iter().all(|t| !t.intersects(*rect));

@@ -2,7 +2,7 @@
 
 use analysis::facts::EventKind;
 use analysis::quantity::Quantity;
-use egui::{Align, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
+use egui::{Align, NumExt as _, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
 
 use crate::chart::ticks::clock;
 use crate::context::Context;
@@ -68,7 +68,7 @@ fn place(ui: &mut Ui, cx: &Context<'_>, rect: Rect, left: f32, cells: &[Cell]) {
         count -= 1;
     }
     let used: f32 = widths[..count].iter().sum();
-    let gap = ((free - used) / (count + 1) as f32).clamp(gap_min, 40.0);
+    let gap = ((free - used) / (count + 1) as f32).at_most(40.0).at_least(gap_min);
     let (top, bottom) = baselines(rect, cx.grid.narrow);
     let mut x = left + gap;
     for ((name, value), wide) in runs.iter().zip(&widths).take(count) {
