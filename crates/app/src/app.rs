@@ -105,14 +105,14 @@ impl App {
         let mut commands = self.read_handles(ui);
         commands.extend(self.arrivals(ui));
         self.carry_out(ui, commands);
-        self.derive();
+        self.derive(ui);
         let commands = self.draw(ui, window);
         self.carry_out(ui, commands);
     }
 
     /// Reads pointer and keys before anything is drawn, so that this very frame shows the result.
     fn read_handles(&mut self, ui: &Ui) -> Outbox {
-        self.derive();
+        self.derive(ui);
         let Some(recording) = self.document.recording().cloned() else {
             return Outbox::new();
         };
@@ -170,13 +170,14 @@ impl App {
     }
 
     /// Brings the results up to date with the session and the handle under way.
-    fn derive(&mut self) {
+    fn derive(&mut self, ui: &Ui) {
         let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor).map(|d| {
             let mut decisions = self.document.decisions();
             d.kind.set(&mut decisions, d.t_s);
             decisions
         });
-        self.derived.update(&self.document, moving.as_ref());
+        let ctx = ui.ctx().clone();
+        self.derived.update(&self.document, moving.as_ref(), move || ctx.request_repaint());
     }
 
     fn carry_out(&mut self, ui: &Ui, commands: Outbox) {

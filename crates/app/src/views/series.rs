@@ -1,5 +1,7 @@
 //! Chart items from averaged series and raw breaths.
 
+use std::collections::BTreeSet;
+
 use analysis::quantity::Quantity;
 use analysis::results::FlagKind;
 
@@ -34,21 +36,28 @@ pub fn style(quantity: Quantity) -> (f32, Option<Dash>, Mark, f32) {
 /// Raw value of `quantity` at breath `i`, ratios formed from their parts, shown unit.
 #[must_use]
 pub fn breath(cx: &Context<'_>, quantity: Quantity, i: usize) -> Option<f64> {
+    breaths(cx, quantity)(i)
+}
+
+/// [`breath`] for many breaths: the columns are looked up once.
+fn breaths<'a>(cx: &Context<'a>, quantity: Quantity) -> impl Fn(usize) -> Option<f64> + 'a {
     use Quantity as Q;
-    let b = &cx.recording.breaths;
-    if b.column(quantity).is_some() {
-        return b.value(quantity, i).map(|v| values::in_shown(quantity, v));
-    }
-    let ratio = |a: Q, c: Q, k: f64| match (b.value(a, i), b.value(c, i)) {
-        (Some(x), Some(y)) if y > 0.0 => Some(k * x / y),
-        _ => None,
+    let table = &cx.recording.breaths;
+    let own = table.column(quantity);
+    let (over, under, factor) = match quantity {
+        Q::O2Pulse => (table.column(Q::Vo2), table.column(Q::Hr), 1.0),
+        Q::Rer => (table.column(Q::Vco2), table.column(Q::Vo2), 1.0),
+        Q::EqO2 => (table.column(Q::Ve), table.column(Q::Vo2), 1000.0),
+        Q::EqCo2 => (table.column(Q::Ve), table.column(Q::Vco2), 1000.0),
+        _ => (None, None, 1.0),
     };
-    match quantity {
-        Q::O2Pulse => ratio(Q::Vo2, Q::Hr, 1.0),
-        Q::Rer => ratio(Q::Vco2, Q::Vo2, 1.0),
-        Q::EqO2 => ratio(Q::Ve, Q::Vo2, 1000.0),
-        Q::EqCo2 => ratio(Q::Ve, Q::Vco2, 1000.0),
-        _ => None,
+    move |i| {
+        let at = |column: Option<&[Option<f64>]>| column?.get(i).copied().flatten();
+        if own.is_some() {
+            return at(own).map(|v| values::in_shown(quantity, v));
+        }
+        let (over, under) = (at(over)?, at(under)?);
+        (under > 0.0).then(|| factor * over / under)
     }
 }
 
@@ -61,14 +70,15 @@ pub fn raw(cx: &Context<'_>, chart: &mut Chart, quantity: Quantity, map: impl Fn
     let color = cx.tokens.raw(Family::of(quantity));
     let ends = cx.recording.breaths.end_s();
     let (from, to) = chart.x;
-    let left_out: Vec<usize> =
+    let left_out: BTreeSet<usize> =
         cx.results.flags.iter().filter(|f| f.kind == FlagKind::LeftOut).map(|f| f.breath).collect();
+    let value = breaths(cx, quantity);
     let (mut kept, mut out): (Vec<Point>, Vec<Point>) = (Vec::new(), Vec::new());
     for (i, t) in ends.iter().enumerate() {
         if *t < from || *t > to {
             continue;
         }
-        if let Some(v) = breath(cx, quantity, i) {
+        if let Some(v) = value(i) {
             let point = [cx.recording.breaths.mid_s(i), map(v)];
             if left_out.contains(&i) { out.push(point) } else { kept.push(point) }
         }
