@@ -3,7 +3,9 @@
 
 use analysis::decisions::{Decisions, PhaseStarts};
 use analysis::facts::{Event, EventKind, Facts};
-use analysis::predicted::classes::{Class, ISHLT, ISHLT_BLOCKED, TABLE};
+use analysis::predicted::classes::{
+    Class, ISHLT, ISHLT_BLOCKED, ISHLT_PERCENT, ISHLT_SLOPE, TABLE,
+};
 use analysis::quantity::Quantity;
 use analysis::recording::Recording;
 use analysis::results::{At, Results};
@@ -48,7 +50,7 @@ fn rows() -> Vec<Row> {
 }
 
 fn classes() -> impl Iterator<Item = &'static Class> {
-    TABLE.iter().chain([&ISHLT, &ISHLT_BLOCKED])
+    TABLE.iter().chain([&ISHLT, &ISHLT_BLOCKED, &ISHLT_PERCENT, &ISHLT_SLOPE])
 }
 
 /// A test whose values are whole numbers held through each stretch, so that means are exact.

@@ -177,6 +177,19 @@ pub enum StopKind {
     Other,
 }
 
+/// Kind of a planned operation, closed set beside the free text (which stays in `record`).
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum OperationKind {
+    /// Lung resection.
+    LungResection,
+    /// Major abdominal surgery other than colorectal.
+    MajorAbdominal,
+    /// Colorectal surgery.
+    Colorectal,
+    /// Any other.
+    Other,
+}
+
 /// The ECG as read by a person.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub struct Ecg {
@@ -205,6 +218,8 @@ pub struct TestFacts {
     pub protocol: Option<Protocol>,
     /// Inspired oxygen fraction; `None` = room air assumed.
     pub fio2: Option<f64>,
+    /// Closed kind of the planned operation.
+    pub operation: Option<OperationKind>,
     /// Closed kind of the stop reason.
     pub stop: Option<StopKind>,
     /// ECG.

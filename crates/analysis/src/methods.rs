@@ -87,6 +87,9 @@ methods! {
     "older-three-tier" "Band at the first threshold: oxygen uptake 11 and 8 mL/kg/min, ventilatory equivalent for carbon dioxide 34." "after Older 1999; POETTS, Levett et al., Br J Anaesth 2018";
     "west-#" "Cut-offs of a multi-centre colorectal cohort: threshold 11.1 and peak 18.2 mL/kg/min, ventilatory equivalent at the threshold 30.9." "West et al., Br J Surg 2016";
     "ishlt-#" "Peak oxygen uptake of at most 14 mL/kg/min, without a beta-blocker." "ISHLT criteria 2016";
+    "ishlt-#-percent" "Peak oxygen uptake of at most 50 % of predicted, below 50 years and in women." "ISHLT criteria 2016";
+    "ishlt-#-slope" "Slope of ventilation on carbon dioxide output above 35, where the exchange ratio stayed below 1.05." "ISHLT criteria 2016";
+    "guazzi-#" "Oscillatory breathing, and end-tidal carbon dioxide of at least 33 mmHg at rest with a rise of at least 3 mmHg in exercise." "Guazzi et al., Circulation 2012 (limits from memory)";
     "ishlt-#-beta-blocker" "Peak oxygen uptake of at most 12 mL/kg/min, on a beta-blocker." "ISHLT criteria 2016";
 }
 

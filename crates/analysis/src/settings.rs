@@ -1,8 +1,9 @@
 //! Choices that no publication fixes: visible, editable, saved with the session.
 
+use std::collections::BTreeMap;
 use std::sync::Arc;
 
-use crate::predicted::sets::PredictedSet;
+use crate::predicted::sets::{PredictedSet, Predicts};
 
 /// How breaths are averaged for charts and the value strip.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -28,6 +29,8 @@ pub struct PredictedChoice {
     pub vo2: String,
     /// Set of peak HR, by id.
     pub hr: String,
+    /// Sets of other quantities that the reader chose, by id; the rest follow the order of loading.
+    pub others: BTreeMap<Predicts, String>,
     /// Inputs outside a set's range that the reader let pass, by set id.
     pub overridden: Vec<String>,
     /// Whether sets whose coefficients are unconfirmed may be chosen.
@@ -39,6 +42,7 @@ impl Default for PredictedChoice {
         Self {
             vo2: "hansen-1984".into(),
             hr: "hansen-hr".into(),
+            others: BTreeMap::new(),
             overridden: Vec::new(),
             unconfirmed: false,
         }
@@ -62,6 +66,26 @@ pub struct OverlaySettings {
     pub ve_intercept: f64,
     /// RER at peak.
     pub rer_peak: f64,
+    /// V̇O₂ at rest where it was not measured, mL/min per kg (from memory; common practice).
+    pub rest_per_kg: f64,
+    /// V̇O₂ of unloaded pedalling at 60 rpm, mL/min per kg (from memory; common practice) …
+    pub unloaded_per_kg: f64,
+    /// … and what is added to it, mL/min.
+    pub unloaded_added: f64,
+    /// RER at rest (modelling choice).
+    pub rer_rest: f64,
+    /// ΔV̇CO₂/ΔV̇O₂ below VT1 (modelling choice; slightly below 1 in the literature).
+    pub s1: f64,
+    /// By how much the V̇E–V̇CO₂ slope steepens above VT2 (modelling choice).
+    pub late_ve: f64,
+}
+
+impl OverlaySettings {
+    /// V̇O₂ of unloaded pedalling at 60 rpm, mL/min.
+    #[must_use]
+    pub fn unloaded_vo2(&self, mass_kg: f64) -> f64 {
+        self.unloaded_per_kg * mass_kg + self.unloaded_added
+    }
 }
 
 impl Default for OverlaySettings {
@@ -74,6 +98,12 @@ impl Default for OverlaySettings {
             vt2_fraction: 0.87,
             ve_intercept: 4.0,
             rer_peak: 1.15,
+            rest_per_kg: 3.5,
+            unloaded_per_kg: 5.8,
+            unloaded_added: 151.0,
+            rer_rest: 0.85,
+            s1: 0.95,
+            late_ve: 1.25,
         }
     }
 }

@@ -59,6 +59,8 @@ pub enum Command {
     Edit(Edit),
     /// Several edits as one step.
     Edits(Vec<Edit>),
+    /// Add the laboratory's own predicted set from this file.
+    AddSet(std::path::PathBuf),
     /// Read a column of the file so: its name in the question, and the reading chosen.
     Answer(String, String),
     /// Close the window, work saved or not.
@@ -106,7 +108,8 @@ impl Command {
                 Dialog::Open => "Open file…".into(),
                 Dialog::Save => "Save session as…".into(),
                 Dialog::Export => "Export page…".into(),
-                Dialog::Sets => "Predicted sets and their fit…".into(),
+                Dialog::Sets(_) => "Predicted sets and their fit…".into(),
+                Dialog::Overlay => "Parameters of the overlay…".into(),
                 Dialog::Facts => "Facts…".into(),
                 Dialog::Sign => "Sign…".into(),
                 Dialog::Keys => "Keys".into(),
@@ -143,6 +146,7 @@ impl Command {
                 "import-answer",
                 &[("column", column.clone()), ("reading", crate::views::import::reading(reading))],
             ),
+            Command::AddSet(_) => wording::plain_text("chooser-add-button"),
             Command::Quit => "Close".into(),
             Command::Discard(_) => "Discard changes".into(),
         }

@@ -75,6 +75,7 @@ pub fn carry_out(app: &mut App, ui: &Ui, command: Command) {
         Command::Evidence(id) => app.view.evidence_of = id,
         Command::Edit(one) => edit(app, &[one]),
         Command::Edits(edits) => edit(app, &edits),
+        Command::AddSet(path) => add_set(app, &path),
         Command::Answer(column, reading) => answer(app, &column, &reading),
         Command::Quit => ui.ctx().send_viewport_cmd(egui::ViewportCommand::Close),
         Command::OpenDemo => {
@@ -123,6 +124,17 @@ fn export(app: &mut App, path: &std::path::Path) {
         Ok(()) => {
             app.view.dialog = None;
             app.view.status = Some("Page written.".into());
+        }
+        Err(problem) => app.view.status = Some(problem.to_string()),
+    }
+}
+
+/// Adds the predicted set of a file to the session.
+fn add_set(app: &mut App, path: &std::path::Path) {
+    match record::session::store::read_file(path) {
+        Ok(bytes) => {
+            let text = String::from_utf8_lossy(&bytes).into_owned();
+            edit(app, &[Edit::AddPredictedSet { text }]);
         }
         Err(problem) => app.view.status = Some(problem.to_string()),
     }

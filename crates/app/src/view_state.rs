@@ -1,5 +1,7 @@
 //! What is shown, apart from the session: view, selection, cursor, zoom, the drag in progress.
 
+use analysis::predicted::sets::Predicts;
+
 use crate::chart::interact::{Drag, Geometry};
 
 /// A view of the window, by the question it answers.
@@ -130,8 +132,10 @@ pub enum Dialog {
     Event,
     /// Leave out breaths: of this stretch, s, or of the breath at the cursor.
     Exclude(Option<(f64, f64)>),
-    /// Choose predicted sets.
-    Sets,
+    /// Choose predicted sets, of this quantity first.
+    Sets(Predicts),
+    /// Parameters of the model of a normal response.
+    Overlay,
     /// Inputs of the stroke-volume sentence.
     Inputs,
     /// Edit a statement.

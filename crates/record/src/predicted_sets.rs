@@ -9,7 +9,7 @@ mod read;
 mod schema;
 
 pub use bundled::{bundled, default_settings};
-pub use parse::{LARGEST, parse};
+pub use parse::{LARGEST, own, parse};
 
 #[cfg(test)]
 mod tests;

@@ -180,6 +180,101 @@ fn the_first_threshold_is_set_against_predicted_peak() {
     assert!((percent - 100.0 * vt1 / vo2).abs() < 1e-9);
 }
 
+/// O₂ pulse as the quotient of predicted V̇O₂ and HR, worked apart from this program: with
+/// 210 − 0.65·A and with 220 − A.
+#[test]
+fn the_predicted_pulse_is_the_quotient_of_both_sets() {
+    for (age, sex, height, mass, own, fox) in [
+        (45.0, Sex::Male, 178.0, 80.0, 15.03, 15.52),
+        (60.0, Sex::Female, 163.0, 85.0, 8.58, 9.17),
+        (35.0, Sex::Female, 165.0, 58.0, 9.37, 9.48),
+        (72.0, Sex::Male, 172.0, 80.0, 11.20, 12.35),
+    ] {
+        let mut facts = man_45();
+        facts.subject.age_years = Some(age);
+        facts.subject.sex = Some(sex);
+        facts.subject.height_cm = Some(height);
+        facts.subject.mass_kg = Some(mass);
+        let mut settings = default_settings();
+        for (hr, expected) in [("hansen-hr", own), ("fox-220", fox)] {
+            settings.predicted.hr = hr.into();
+            let results = with(&facts, &settings);
+            let pulse = results.number("predicted-o2-pulse", At::Peak).expect("predicted");
+            assert!((pulse - expected).abs() <= 0.0051, "{age} {hr}: {pulse} for {expected}");
+        }
+    }
+}
+
+#[test]
+fn a_set_chosen_for_another_quantity_stands_on_the_page() {
+    let mut settings = default_settings();
+    settings.predicted.others.insert(Predicts::WorkRate, "jones-1989".into());
+    settings.predicted.others.insert(Predicts::O2Pulse, "friend-o2-pulse-2020".into());
+    let results = with(&man_45(), &settings);
+    let work = results.primary("predicted-work-rate", At::Peak).unwrap();
+    // 1240.2 kpm/min ÷ 6.1183, worked apart from this program.
+    assert_eq!(work.method, "jones-1989");
+    assert!((work.number().unwrap() - 202.7).abs() < 0.05);
+    // What is for information only never stands on the page.
+    let pulse = results.primary("predicted-o2-pulse", At::Peak).unwrap();
+    assert_eq!(pulse.method, "hansen-1984/hansen-hr");
+}
+
+#[test]
+fn sets_of_one_family_come_together_until_the_reader_mixes_them() {
+    let mut settings = default_settings();
+    assert!(!chooser::mixes_families(&settings));
+    assert_eq!(chooser::hr_along(&settings, "jones-1985").as_deref(), Some("jones-1985"));
+    assert_eq!(chooser::hr_along(&settings, "friend-2018"), None, "it has no HR of its own");
+    settings.predicted.hr = "tanaka-2001".into();
+    assert!(chooser::mixes_families(&settings));
+    assert_eq!(chooser::hr_along(&settings, "jones-1985"), None);
+}
+
+#[test]
+fn surgical_bands_stand_under_their_operation_only() {
+    use analysis::facts::OperationKind;
+    let classes = |operation| {
+        let mut facts = man_45();
+        facts.test.indication = Some(Indication::Preoperative);
+        facts.test.operation = operation;
+        let results = with(&facts, &default_settings());
+        let classes = results.outcomes.iter().filter(|o| o.kind == Kind::Class);
+        classes.map(|o| (o.id.to_string(), reason(o))).collect::<Vec<_>>()
+    };
+    let unstated = classes(None);
+    assert!(!unstated.is_empty() && unstated.iter().all(|c| c.1 == "fact-missing"), "{unstated:?}");
+    let lung = classes(Some(OperationKind::LungResection));
+    assert!(
+        !lung.is_empty() && lung.iter().all(|c| c.0.starts_with("class-resection")),
+        "{lung:?}"
+    );
+    let colorectal = classes(Some(OperationKind::Colorectal));
+    assert!(colorectal.iter().all(|c| c.0.starts_with("class-colorectal")), "{colorectal:?}");
+    assert!(classes(Some(OperationKind::Other)).is_empty());
+}
+
+/// ISHLT 2016: per cent of predicted below 50 years and in women; the slope where RER stayed below
+/// 1.05.
+#[test]
+fn transplant_criteria_follow_age_sex_and_rer() {
+    let ids = |age, sex| {
+        let mut facts = man_45();
+        facts.test.indication = Some(Indication::HeartFailure);
+        facts.subject.age_years = Some(age);
+        facts.subject.sex = Some(sex);
+        let results = with(&facts, &default_settings());
+        let rer = results.number("rer-peak", At::Peak).expect("measured");
+        let has = |id: &str| results.outcomes.iter().any(|o| o.id == id);
+        assert_eq!(has("class-ishlt-slope"), rer < 1.05, "RER {rer}");
+        assert!(has("class-ishlt-vo2") && has("class-hf-oscillation") && has("class-hf-petco2"));
+        has("class-ishlt-vo2-percent")
+    };
+    assert!(ids(45.0, Sex::Male));
+    assert!(!ids(60.0, Sex::Male));
+    assert!(ids(60.0, Sex::Female));
+}
+
 /// Work rate that goes with predicted V̇O₂ at 20 W/min: 204.0 + 13.3 = 217.3 W in the man of 45.
 #[test]
 fn work_rate_follows_from_predicted_vo2_and_this_ramp() {

@@ -67,6 +67,7 @@ fn exactly_the_unseen_coefficients_are_locked() {
         "ats-accp-2003 vo2-peak",
         "cooper-1984-mass vo2-peak",
         "fairbarn-1994 vo2-peak",
+        "gellish-2007-quadratic hr-peak",
         "hollenberg-tager-2000 oues",
         "koch-2009 vo2-peak",
         "mvv-fev1-regression mvv",
@@ -117,6 +118,8 @@ fn sex_is_coded_inside_each_equation() {
         ("lowlands-wr-2018", Predicts::WorkRate, Cycle, 60.0),
         ("sun-2002", Predicts::VeVco2Nadir, Cycle, -0.97),
         ("hr-vo2-2020", Predicts::HrVo2Slope, Cycle, -14.3),
+        // SHIP codes 1/2 at class 2, body mass index below 25: (8.8697 − 0.2512·2) mL/kg/min · 70.
+        ("koch-2009", Predicts::Vo2Peak, Cycle, (8.8697 - 0.2512 * 2.0) * 70.0),
     ] {
         let at = |sex| value(id, predicts, &person(sex, 40.0, 172.0, 70.0, mode));
         let difference = at(Sex::Male) - at(Sex::Female);
@@ -144,6 +147,26 @@ fn pounds_inches_and_metres_are_taken_as_printed() {
     let old = person(Sex::Male, 77.3, 180.0, 80.0, Mode::Cycle);
     let watts = value("wohlfart-2003", Predicts::WorkRate, &old);
     assert!((watts - (244.6 * 1.8 - 92.1) / 2.0).abs() < 1e-9, "{watts}");
+}
+
+/// SHIP takes an age class and body mass index as a flag: the prediction jumps at a birthday and
+/// at an index of 25, and is level between.
+#[test]
+fn classes_and_flags_jump_where_the_paper_says() {
+    let per_kg = |age, mass: f64| {
+        // Height 200 cm: body mass index is mass / 4.
+        let man = person(Sex::Male, age, 200.0, mass, Mode::Cycle);
+        value("koch-2009", Predicts::Vo2Peak, &man) / mass
+    };
+    assert!((per_kg(35.0, 90.0) - per_kg(44.9, 90.0)).abs() < 1e-9, "level within a class");
+    // From class 2 to 3 below 25 kg/m²: −0.9880 − 0.2356·(9 − 4) + 0.2512·1.
+    let birthday = per_kg(45.0, 90.0) - per_kg(44.9, 90.0);
+    assert!((birthday + 0.9880 + 0.2356 * 5.0 - 0.2512).abs() < 1e-9, "{birthday}");
+    // An index of exactly 25 is not above it; beyond, class 2, S = 1:
+    // 2.3597 − 2.0308·2 − 3.7405 + 1.3797·2.
+    assert!((per_kg(40.0, 100.0) - per_kg(40.0, 90.0)).abs() < 1e-9);
+    let flag = per_kg(40.0, 100.1) - per_kg(40.0, 100.0);
+    assert!((flag - (2.3597 - 2.0308 * 2.0 - 3.7405 + 1.3797 * 2.0)).abs() < 1e-9, "{flag}");
 }
 
 #[test]

@@ -84,14 +84,17 @@ fn candidate<'a>(
     Some(Candidate { set, chosen: false, information_only, result })
 }
 
-/// The reader's choice for V̇O₂ and heart rate; for work rate the same set where it has one;
-/// otherwise the first set that holds for this person, else the first.
+/// The reader's choice; without one, for work rate the set of V̇O₂ where it has one, otherwise the first set that holds for this person, else the first.
 fn index_of_chosen(
     all: &[Candidate<'_>],
     choice: &PredictedChoice,
     predicts: Predicts,
 ) -> Option<usize> {
     let with_id = |id: &str| all.iter().position(|c| c.set.id == id);
+    let own = choice.others.get(&predicts).and_then(|id| with_id(id));
+    if let Some(own) = own.filter(|i| !all[*i].information_only) {
+        return Some(own);
+    }
     match predicts {
         Predicts::Vo2Peak => with_id(&choice.vo2),
         Predicts::HrPeak => with_id(&choice.hr),

@@ -2,7 +2,7 @@
 
 use super::candidates::{candidates, provenance};
 use super::evaluate::{Prediction, evaluate};
-use super::sets::{Person, PredictedSet, Predicts, Provenance};
+use super::sets::{Formula, Person, PredictedSet, Predicts, Provenance};
 use super::validity::{self, Fit, InputFit};
 use crate::facts::{Facts, Sex};
 use crate::note::Note;
@@ -32,6 +32,38 @@ pub struct Choice<'a> {
 #[must_use]
 pub fn person(facts: &Facts, recording: &Recording) -> Person {
     super::person::from(facts, recording).0
+}
+
+/// Whether the sets of peak V̇O₂ and peak HR come from different families, although that of V̇O₂
+/// has an own HR.
+#[must_use]
+pub fn mixes_families(settings: &Settings) -> bool {
+    family_hr(settings, &settings.predicted.vo2).is_some_and(|hr| hr != settings.predicted.hr)
+}
+
+/// The HR set that comes along when `vo2` is chosen: that of its family, as long as the sets that
+/// stand now belong together too.
+#[must_use]
+pub fn hr_along(settings: &Settings, vo2: &str) -> Option<String> {
+    let own = family_hr(settings, vo2)?;
+    (!mixes_families(settings)).then(|| own.to_owned())
+}
+
+/// The HR set of the family to which the set `vo2` belongs.
+fn family_hr<'a>(settings: &'a Settings, vo2: &str) -> Option<&'a str> {
+    let family = &settings.sets.iter().find(|s| s.id == vo2)?.family;
+    let found = |s: &&PredictedSet| s.family == *family && s.equation(Predicts::HrPeak).is_some();
+    settings.sets.iter().find(found).map(|s| s.id.as_str())
+}
+
+/// The factor from FEV₁ to MVV of a set that has only that.
+#[must_use]
+pub fn mvv_factor(set: &PredictedSet) -> Option<f64> {
+    let arm = set.equation(Predicts::Mvv)?.male.as_ref()?;
+    match &arm.formula {
+        Formula::Sum(terms) if terms.len() == 1 => Some(terms[0].times),
+        _ => None,
+    }
 }
 
 /// Every loaded set that predicts `predicts`, locked ones included, in the order of loading.

@@ -2,15 +2,14 @@
 //! statistics of groups; nothing here says fit or unfit, and the local pathway decides.
 
 mod bands;
+mod heart_failure;
 
 use super::express::submaximal;
-use super::outcomes::beta_blocked;
-use crate::facts::Indication;
 use crate::note::{Arg, Note};
 use crate::results::{At, Interval, Kind, Outcome};
 use crate::stage::Stage;
 
-pub use bands::{Band, Class, ISHLT, ISHLT_BLOCKED, TABLE};
+pub use bands::{Band, Class, ISHLT, ISHLT_BLOCKED, ISHLT_PERCENT, ISHLT_SLOPE, TABLE};
 
 /// Derives the classes of the stated indication; effort, predictions and slopes must be known.
 pub(super) fn derive(stage: &mut Stage<'_>) {
@@ -18,11 +17,25 @@ pub(super) fn derive(stage: &mut Stage<'_>) {
     let outcomes: Vec<Outcome> = TABLE
         .iter()
         .filter(|class| class.indication == indication)
-        .map(|class| outcome(stage, class))
-        .chain(transplant(stage, indication))
+        .filter_map(|class| for_operation(stage, class))
+        .chain(heart_failure::derive(stage, indication))
         .collect();
     for outcome in outcomes {
         stage.push(outcome);
+    }
+}
+
+/// Bands of an operation stand under that operation only; without one stated they say what is
+/// missing.
+fn for_operation(stage: &Stage<'_>, class: &Class) -> Option<Outcome> {
+    match (class.operation, stage.facts.test.operation) {
+        (Some(of), Some(planned)) if of != planned => None,
+        (Some(_), None) => {
+            let why = Note::missing_fact("operation");
+            let absent = Outcome::absent(class.id, class.at, class.method, why);
+            Some(absent.of_kind(Kind::Class))
+        }
+        _ => Some(outcome(stage, class)),
     }
 }
 
@@ -70,21 +83,4 @@ fn straddle(class: &Class, band: &Band, interval: Interval) -> Option<Note> {
             .with("low", Arg::Word(low.text))
             .with("high", Arg::Word(high.text))
     })
-}
-
-/// ISHLT 2016: the cut-off of peak V̇O₂ depends on whether a beta-blocker is taken.
-fn transplant(stage: &Stage<'_>, indication: Indication) -> Option<Outcome> {
-    (indication == Indication::HeartFailure).then_some(())?;
-    let drug = &stage.facts.test.rate_slowing_drug;
-    let class = if beta_blocked(stage) { &ISHLT_BLOCKED } else { &ISHLT };
-    let mut outcome = outcome(stage, class);
-    if outcome.value.is_some() && drug.taken.is_none() {
-        outcome.doubts.push(Note::new("class-drug-not-stated"));
-    }
-    if outcome.value.is_some()
-        && stage.results.number("rer-peak", At::Peak).is_none_or(|rer| rer <= 1.05)
-    {
-        outcome.doubts.push(Note::new("class-ishlt-not-maximal"));
-    }
-    Some(outcome)
 }

@@ -135,8 +135,7 @@ fn work_rate(stage: &Stage<'_>, person: &Person, another_chosen: bool) -> Option
         let mass = person.mass_kg.ok_or_else(|| Note::missing_fact("mass"))?;
         let rate = stage.ramp_rate().ok_or_else(|| stage.no_ramp())?;
         let overlay = &stage.settings.overlay;
-        let watts =
-            (vo2 - super::overlay::unloaded_vo2(mass)) / overlay.gain + rate * overlay.tau_s / 60.0;
+        let watts = (vo2 - overlay.unloaded_vo2(mass)) / overlay.gain + rate * overlay.tau_s / 60.0;
         if watts > 0.0 { Ok(watts) } else { Err(Note::new("prediction-implausible-work-rate")) }
     })();
     if another_chosen && value.is_err() {

@@ -23,15 +23,6 @@ use crate::unit::Unit;
 pub use curves::{Curve, Curves, Role};
 pub use response::{Inputs, Moment, Response};
 
-/// V̇O₂ at rest per kg, mL/kg/min, where it was not measured (from memory; common practice).
-pub const REST_VO2_PER_KG: f64 = 3.5;
-
-/// V̇O₂ of unloaded pedalling at 60 rpm, mL/min (from memory; common practice).
-#[must_use]
-pub fn unloaded_vo2(mass_kg: f64) -> f64 {
-    5.8 * mass_kg + 151.0
-}
-
 /// The overlay, or why it is not drawn.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct OverlayOutcome {
@@ -108,11 +99,13 @@ fn build(stage: &Stage<'_>) -> Result<Model, Note> {
 fn inputs(stage: &Stage<'_>, person: &Person, vo2_peak: f64) -> Result<(Inputs, Vec<Note>), Note> {
     let mut doubts = Vec::new();
     let mass = person.mass_kg.ok_or_else(|| Note::missing_fact("mass"))?;
-    let unloaded = unloaded_vo2(mass);
+    let overlay = &stage.settings.overlay;
+    let unloaded = overlay.unloaded_vo2(mass);
     let measured = stage.results.number(Quantity::Vo2.code(), At::Rest);
     let rest_vo2 = measured.filter(|v| *v < 0.9 * unloaded).unwrap_or_else(|| {
-        doubts.push(Note::new("overlay-rest-from-mass"));
-        REST_VO2_PER_KG * mass
+        let per_kg = Arg::Number(overlay.rest_per_kg, Unit::MlPerKgMin);
+        doubts.push(Note::new("overlay-rest-from-mass").with("value", per_kg));
+        overlay.rest_per_kg * mass
     });
     let hr_peak = chosen_value(stage, Predicts::HrPeak, person).map(|p| p.value);
     let hr_rest = stage.results.number(Quantity::Hr.code(), At::Rest);

@@ -3,6 +3,8 @@
 //! A set is coefficients, ranges and a citation, never code: a laboratory can audit it and add its
 //! own. Parsed and checked outside this crate; evaluated by [`super::evaluate`].
 
+use std::sync::Arc;
+
 use crate::facts::{Mode, Sex};
 use crate::unit::Unit;
 
@@ -58,6 +60,12 @@ pub enum Input {
 }
 
 impl Input {
+    /// Its code in set files.
+    #[must_use]
+    pub fn code(self) -> &'static str {
+        Self::ALL.iter().find(|(input, _)| *input == self).map_or("", |(_, code)| code)
+    }
+
     /// All inputs with their codes in set files.
     pub const ALL: [(Input, &'static str); 13] = [
         (Input::AgeYears, "age_years"),
@@ -218,6 +226,17 @@ pub enum PrintedUnit {
     KpmPerMin,
 }
 
+impl PrintedUnit {
+    /// As printed.
+    #[must_use]
+    pub fn shown(self) -> &'static str {
+        match self {
+            PrintedUnit::Table(unit) => unit.shown(),
+            PrintedUnit::KpmPerMin => "kpm/min",
+        }
+    }
+}
+
 /// An equation's own numbers for two cases: 0/1, 1/2, whatever its paper uses.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Code {
@@ -365,6 +384,8 @@ pub struct PredictedSet {
     pub ranges: Vec<Range>,
     /// The equations.
     pub equations: Vec<Equation>,
+    /// The file word for word, where a laboratory added it; `None` for a set of the program.
+    pub own: Option<Arc<str>>,
 }
 
 impl PredictedSet {

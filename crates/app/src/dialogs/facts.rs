@@ -60,6 +60,16 @@ const FACTS: &[(&str, &str, Ask)] = &[
             ("none", "none of these"),
         ]),
     ),
+    (
+        "test.operation_kind",
+        "Planned operation",
+        Ask::Choice(&[
+            ("lung-resection", "lung resection"),
+            ("major-abdominal", "major abdominal, not colorectal"),
+            ("colorectal", "colorectal"),
+            ("other", "other"),
+        ]),
+    ),
     ("test.mode", "Ergometer", Ask::Choice(&[("cycle", "cycle"), ("treadmill", "treadmill")])),
     ("test.protocol.kind", "Protocol", Ask::Choice(&[("ramp", "ramp"), ("steps", "steps")])),
     ("test.protocol.w_per_min", "Rise, W/min", Ask::Number),

@@ -6,6 +6,7 @@ pub mod facts;
 pub mod files;
 pub mod inputs;
 pub mod keys;
+pub mod overlay;
 pub mod sets;
 pub mod sign;
 pub mod statement;
@@ -67,10 +68,12 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
         .collapsible(false)
         .resizable(false)
         .open(&mut open)
+        .default_height(ui.ctx().content_rect().height())
         .anchor(Align2::CENTER_CENTER, vec2(0.0, 0.0))
         .show(ui.ctx(), |ui| {
             let room = ui.ctx().content_rect().size();
-            ui.set_width(620.0_f32.min(room.x - 60.0));
+            let wide = if matches!(dialog, Dialog::Sets(_)) { 780.0_f32 } else { 620.0 };
+            ui.set_width(wide.min(room.x - 60.0));
             egui::ScrollArea::vertical().max_height(room.y - 90.0).show(ui, |ui| match dialog {
                 Dialog::Open => files::open(ui, cx, form, out),
                 Dialog::Save => files::save(ui, cx, form, out),
@@ -80,7 +83,8 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
                 Dialog::Keys => keys::show(ui),
                 Dialog::Event => event::show(ui, cx, form, out),
                 Dialog::Exclude(stretch) => exclude::show(ui, cx, form, out, *stretch),
-                Dialog::Sets => sets::show(ui, cx, out),
+                Dialog::Sets(quantity) => sets::show(ui, cx, form, out, *quantity),
+                Dialog::Overlay => overlay::show(ui, cx, form, out),
                 Dialog::Inputs => inputs::show(ui, cx, form, out),
                 Dialog::Statement(id) => statement::show(ui, cx, form, out, id),
                 Dialog::Unsaved(next) => files::unsaved(ui, out, next),
@@ -94,10 +98,25 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
 
 /// A labelled line of text; the response is that of the field.
 pub fn line(ui: &mut Ui, form: &mut Form, name: &str, label: &str) -> egui::Response {
+    line_of(ui, form, name, label, (190.0, 380.0))
+}
+
+/// The same with the widths of label and field.
+pub fn line_of(
+    ui: &mut Ui,
+    form: &mut Form,
+    name: &str,
+    label: &str,
+    (label_width, field_width): (f32, f32),
+) -> egui::Response {
     ui.horizontal(|ui| {
-        let label = ui.add_sized([190.0, 20.0], egui::Label::new(label).halign(egui::Align::Min));
-        let field = egui::TextEdit::singleline(form.field(name)).desired_width(380.0);
-        ui.add(field).labelled_by(label.id)
+        let layout = egui::Layout::left_to_right(egui::Align::Center);
+        let label = ui.allocate_ui_with_layout(vec2(label_width, 20.0), layout, |ui| {
+            ui.set_min_width(label_width);
+            ui.label(label)
+        });
+        let field = egui::TextEdit::singleline(form.field(name)).desired_width(field_width);
+        ui.add(field).labelled_by(label.inner.id)
     })
     .inner
 }

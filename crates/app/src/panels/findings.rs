@@ -96,7 +96,7 @@ pub fn wide(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     );
     let table = &mut ui.new_child(UiBuilder::new().max_rect(left).id_salt("key table"));
     ScrollArea::vertical().auto_shrink(false).show(table, |ui| {
-        crate::views::findings::key_table(ui, cx, left.width() - 12.0);
+        crate::views::findings::all_results(ui, cx, left.width() - 12.0);
     });
     let list = &mut ui.new_child(UiBuilder::new().max_rect(right).id_salt("wide statements"));
     ScrollArea::vertical().auto_shrink(false).show(list, |ui| {

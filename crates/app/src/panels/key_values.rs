@@ -45,19 +45,29 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, rect: Rect) -> f32 {
             let slope = shown::primary(cx.results, "o2-pulse-late-slope", At::Ramp);
             shown.recording = slope.and_then(|s| s.recording);
         }
+        let value = Value { name, shown: &shown, against: &against(cx, id) };
         y = if cx.grid.narrow {
-            large_narrow(ui, cx, rect, y, name, &shown)
+            large_narrow(ui, cx, rect, y, &value)
         } else {
-            large(ui, cx, rect, y, name, &shown, &against(cx, id))
+            large(ui, cx, rect, y, &value)
         };
     }
     ui.painter().hline(rect.x_range(), y, Stroke::new(1.0, cx.tokens.grid));
     y += 4.0;
     for (id, at, name) in small {
-        lesser(ui, cx, rect, y, name, &one(cx, id, at), &against(cx, id));
+        let value = Value { name, shown: &one(cx, id, at), against: &against(cx, id) };
+        lesser(ui, cx, rect, y, &value);
         y += if cx.grid.narrow { 19.0 } else { 22.0 };
     }
     y + 4.0
+}
+
+/// One value of the sheet.
+struct Value<'a> {
+    name: &'a str,
+    shown: &'a Shown,
+    /// What it is held against.
+    against: &'a str,
 }
 
 fn one(cx: &Context<'_>, id: &str, at: At) -> Shown {
@@ -119,35 +129,21 @@ fn value_text(cx: &Context<'_>, shown: &Shown) -> String {
     if cx.provisional && word { format!("({})", shown.value) } else { shown.value.clone() }
 }
 
-fn hover(response: egui::Response, shown: &Shown) {
-    let mut lines = vec![shown.spoken()];
-    lines.extend(shown.doubts.iter().cloned());
-    response.on_hover_text(lines.join("\n"));
-}
-
-fn large(
-    ui: &mut Ui,
-    cx: &Context<'_>,
-    rect: Rect,
-    top: f32,
-    name: &str,
-    shown: &Shown,
-    against: &str,
-) -> f32 {
+fn large(ui: &mut Ui, cx: &Context<'_>, rect: Rect, top: f32, value: &Value<'_>) -> f32 {
     let t = cx.tokens;
+    let Value { name, shown, against } = *value;
     text::plain(ui, pos2(rect.left(), top + 17.0), Align::Min, name, size::BODY, t.ink2);
     let at = pos2(rect.right(), top + 17.0);
     text::plain(ui, at, Align::Max, against, size::BODY, t.ink2);
     let base = top + 42.0;
     let value = value_text(cx, shown);
-    let key = Key { id: &shown.key, name, value: &shown.spoken() };
+    let key = Key { id: &shown.key, name, value: &shown.spoken(), cx };
     let runs = [
         Run::new(value, size::KEY, t.ink),
         Run::new(format!("  {}", shown.unit), size::BODY, t.ink2),
     ];
     let response = text::number(ui, pos2(rect.left(), base), Align::Min, &runs, &key);
     let end = response.rect.right();
-    hover(response, shown);
     let cols = interval_columns(rect);
     if let Some(reason) = &shown.reason {
         let room = rect.right() - end - 12.0;
@@ -169,24 +165,17 @@ fn large(
     top + 52.0
 }
 
-fn large_narrow(
-    ui: &mut Ui,
-    cx: &Context<'_>,
-    rect: Rect,
-    top: f32,
-    name: &str,
-    shown: &Shown,
-) -> f32 {
+fn large_narrow(ui: &mut Ui, cx: &Context<'_>, rect: Rect, top: f32, value: &Value<'_>) -> f32 {
     let t = cx.tokens;
+    let Value { name, shown, .. } = *value;
     let left = rect.left();
     text::plain(ui, pos2(left, top + 16.0), Align::Min, name, size::BODY, t.ink2);
-    let key = Key { id: &shown.key, name, value: &shown.spoken() };
+    let key = Key { id: &shown.key, name, value: &shown.spoken(), cx };
     let runs = [
         Run::new(value_text(cx, shown), size::KEY, t.ink),
         Run::new(format!("  {}", shown.unit), size::BODY, t.ink2),
     ];
-    let response = text::number(ui, pos2(left, top + 40.0), Align::Min, &runs, &key);
-    hover(response, shown);
+    text::number(ui, pos2(left, top + 40.0), Align::Min, &runs, &key);
     if let Some(reason) = &shown.reason {
         let at = pos2(left, top + 46.0);
         let block = text::block(ui, at, rect.width(), reason, size::BODY, t.ink2);
@@ -203,19 +192,12 @@ fn large_narrow(
     top + 83.0
 }
 
-fn lesser(
-    ui: &mut Ui,
-    cx: &Context<'_>,
-    rect: Rect,
-    top: f32,
-    name: &str,
-    shown: &Shown,
-    against: &str,
-) {
+fn lesser(ui: &mut Ui, cx: &Context<'_>, rect: Rect, top: f32, value: &Value<'_>) {
     let t = cx.tokens;
+    let Value { name, shown, against } = *value;
     let base = top + 16.0;
     text::plain(ui, pos2(rect.left(), base), Align::Min, name, size::BODY, t.ink2);
-    let key = Key { id: &shown.key, name, value: &shown.spoken() };
+    let key = Key { id: &shown.key, name, value: &shown.spoken(), cx };
     let unit = if shown.unit.is_empty() { String::new() } else { format!(" {}", shown.unit) };
     let runs =
         [Run::new(shown.value.clone(), size::SECTION, t.ink), Run::new(unit, size::BODY, t.ink2)];
@@ -226,7 +208,6 @@ fn lesser(
     };
     let response = text::number(ui, pos2(x, base), align, &runs, &key);
     let end = response.rect.right();
-    hover(response, shown);
     if cx.grid.narrow {
         return;
     }

@@ -1,5 +1,6 @@
 //! The row of views, and what concerns all of them: averaging, raw breaths, overlay, sets.
 
+use analysis::predicted::sets::Predicts;
 use analysis::settings::Averaging;
 use egui::{Align, Rect, Role, Sense, Ui, WidgetInfo, pos2, vec2};
 
@@ -98,6 +99,7 @@ fn more(
             averaging(ui, cx, out);
             check(ui, out, Command::ToggleOverlay, cx.settings.overlay_shown);
             check(ui, out, Command::ToggleRaw, cx.view.raw);
+            choose_sets(ui, out);
             ui.separator();
         }
         for view in rest {
@@ -152,7 +154,6 @@ fn controls(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> f32 
 
 /// The predicted sets that stand on the page: of peak V̇O₂ and of peak HR.
 fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
-    use analysis::predicted::sets::Predicts;
     let choice = &cx.settings.predicted;
     let set = |id: &str| cx.settings.sets.iter().find(|s| s.id == id);
     let vo2 = set(&choice.vo2).map_or(choice.vo2.clone(), |s| {
@@ -167,10 +168,7 @@ fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
         .width(210.0)
         .truncate()
         .show_ui(ui, |ui| {
-            let choose = Command::Show(Dialog::Sets);
-            if ui.button(choose.label()).clicked() {
-                out.push(choose);
-            }
+            choose_sets(ui, out);
             ui.separator();
             for (target, now) in [(Predicts::Vo2Peak, &choice.vo2), (Predicts::HrPeak, &choice.hr)]
             {
@@ -180,11 +178,7 @@ fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
                 for set in cx.settings.sets.iter().filter(of) {
                     let label = format!("{} ({})", set.name, set.year);
                     if ui.selectable_label(set.id == *now, label).clicked() {
-                        let id = Some(set.id.clone());
-                        out.push(Command::Edit(match target {
-                            Predicts::Vo2Peak => Edit::SetPredicted { vo2: id, hr: None },
-                            _ => Edit::SetPredicted { vo2: None, hr: id },
-                        }));
+                        out.push(Command::Edit(Edit::choose_set(target, &set.id)));
                     }
                 }
                 ui.separator();
@@ -194,6 +188,15 @@ fn sets(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox) {
     response
         .accessible_name("Predicted sets")
         .on_hover_text("Which published equations stand on the page.");
+}
+
+/// The dialogs of predicted sets and of the model made from them.
+fn choose_sets(ui: &mut Ui, out: &mut Outbox) {
+    for choose in [Dialog::Sets(Predicts::Vo2Peak), Dialog::Overlay].map(Command::Show) {
+        if ui.button(choose.label()).clicked() {
+            out.push(choose);
+        }
+    }
 }
 
 fn check(ui: &mut Ui, out: &mut Outbox, command: Command, on: bool) {

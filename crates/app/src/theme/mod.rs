@@ -53,7 +53,7 @@ fn apply(style: &mut egui::Style, tokens: &Tokens) {
     let v = &mut style.visuals;
     v.dark_mode = tokens.dark;
     // What cannot be used now is still read.
-    v.disabled_alpha = 0.75;
+    v.disabled_alpha = 0.62;
     v.override_text_color = None;
     v.weak_text_color = Some(tokens.ink2);
     v.panel_fill = tokens.window;
@@ -66,7 +66,7 @@ fn apply(style: &mut egui::Style, tokens: &Tokens) {
     v.extreme_bg_color = tokens.plot;
     v.faint_bg_color = tokens.window;
     v.hyperlink_color = tokens.ink;
-    v.selection.bg_fill = tokens.movable;
+    v.selection.bg_fill = tokens.band_edge;
     v.selection.stroke = Stroke::new(2.0, tokens.ink);
     v.warn_fg_color = tokens.ink;
     v.error_fg_color = tokens.ink;

@@ -1,6 +1,9 @@
 //! The findings view: the same key table with both intervals as page 1.
 
+use analysis::results::Outcome;
 use egui::{Align, Rect, ScrollArea, Sense, Stroke, Ui, UiBuilder, pos2};
+
+use record::presentation::key_table;
 
 use crate::command::Outbox;
 use crate::context::Context;
@@ -16,7 +19,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let right = Rect::from_min_max(pos2(rect.left() + half + 16.0, rect.top()), rect.max);
     let table = &mut ui.new_child(UiBuilder::new().max_rect(left).id_salt("key table"));
     ScrollArea::vertical().auto_shrink(false).show(table, |ui| {
-        key_table(ui, cx, left.width() - 12.0);
+        all_results(ui, cx, left.width() - 12.0);
     });
     let list = &mut ui.new_child(UiBuilder::new().max_rect(right).id_salt("statements of view"));
     ScrollArea::vertical().auto_shrink(false).show(list, |ui| {
@@ -26,7 +29,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
 }
 
 /// Every primary outcome with both intervals.
-pub fn key_table(ui: &mut Ui, cx: &Context<'_>, width: f32) {
+pub fn all_results(ui: &mut Ui, cx: &Context<'_>, width: f32) {
     let t = cx.tokens;
     let top = ui.cursor().min;
     let x = [0.44, 0.62, 0.81, 1.0].map(|share| top.x + width * share);
@@ -36,7 +39,10 @@ pub fn key_table(ui: &mut Ui, cx: &Context<'_>, width: f32) {
     }
     ui.painter().hline(top.x..=(top.x + width), top.y + 23.0, Stroke::new(1.0, t.frame));
     let mut y = top.y + 24.0;
-    for outcome in cx.results.outcomes.iter().filter(|o| o.primary) {
+    // The rows of page 1 stand first, in its order.
+    let mut all: Vec<&Outcome> = cx.results.outcomes.iter().filter(|o| o.primary).collect();
+    all.sort_by_key(|o| key_table::place(&o.id, o.at).unwrap_or(usize::MAX));
+    for outcome in all {
         let shown = shown::outcome(outcome, cx.results);
         row(ui, cx, top.x, width, x, y, &shown);
         y += 22.0;
@@ -52,7 +58,7 @@ fn row(ui: &mut Ui, cx: &Context<'_>, left: f32, width: f32, x: [f32; 4], top: f
     let runs = [Run::new(shown.value.clone(), size::STATEMENT, t.ink)];
     let intervals = [&shown.recording, &shown.repeat].map(|i| i.clone());
     let rect = text::paint(ui, pos2(x[0], base), Align::Max, &runs);
-    let named = Key { id: &shown.key, name: &shown.label, value: &shown.spoken() };
+    let named = Key { id: &shown.key, name: &shown.label, value: &shown.spoken(), cx };
     text::table_number(ui, rect, &named);
     let unit = pos2(x[0] + 6.0, base);
     if let Some(reason) = &shown.reason {

@@ -28,7 +28,7 @@ fn row(ui: &mut Ui, cx: &Context<'_>, width: f32, shown: &Shown) {
     let top = ui.cursor().min;
     let right = top.x + width;
     let spoken = shown.spoken();
-    let key = Key { id: &shown.key, name: &shown.label, value: &spoken };
+    let key = Key { id: &shown.key, name: &shown.label, value: &spoken, cx };
     let runs = [
         Run::new(shown.value.clone(), size::SECTION, t.ink),
         Run::new(format!(" {}", shown.unit), size::BODY, t.ink2),

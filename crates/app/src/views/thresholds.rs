@@ -135,7 +135,7 @@ fn summary(ui: &mut Ui, cx: &Context<'_>, width: f32) {
             let value = format!("{} {}", shown.value, shown.unit);
             let run = [Run::new(shown.value.clone(), size::BODY, ink)];
             if outcome.primary {
-                let key = Key { id: &shown.key, name, value: &value };
+                let key = Key { id: &shown.key, name, value: &value, cx };
                 text::number(ui, pos2(x[0], y), Align::Max, &run, &key);
             } else {
                 text::line(ui, pos2(x[0], y), Align::Max, &run);

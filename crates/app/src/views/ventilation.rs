@@ -84,8 +84,11 @@ fn oues(cx: &Context<'_>) -> Chart {
         let pieces = xy::straight(line.slope / 1000.0, line.intercept / 1000.0, line.x);
         chart.items.push(Item::Line { pieces, width: 1.5, color: cx.tokens.ink, dash: None });
     }
-    chart.title =
-        vec![Title::name("V̇O₂", Family::Oxygen), Title::grey("L/min against log₁₀ V̇E  ·  OUES")];
+    chart.title = vec![
+        Title::name("V̇O₂", Family::Oxygen),
+        Title::grey("L/min against log₁₀ V̇E"),
+        Title::grey("·  OUES"),
+    ];
     chart.description =
         "V̇O₂ against the logarithm of V̇E with the oxygen uptake efficiency slope".into();
     chart

@@ -1,6 +1,11 @@
 //! Text set on a baseline, with a node for assistive technology.
 
+use analysis::results::Outcome;
 use egui::{Align, Color32, FontId, Pos2, Rect, Response, Role, Sense, Ui, WidgetInfo, pos2, vec2};
+
+use record::presentation::{how, values};
+
+use crate::context::Context;
 
 /// Ascent of DejaVu Sans over the em (hhea table: 1901 of 2048 units).
 const ASCENT: f32 = 1901.0 / 2048.0;
@@ -83,7 +88,6 @@ pub fn plain(
 }
 
 /// What a shown number is for assistive technology and for `describe`.
-#[derive(Clone, Debug)]
 pub struct Key<'a> {
     /// `ID@AT`.
     pub id: &'a str,
@@ -91,6 +95,8 @@ pub struct Key<'a> {
     pub name: &'a str,
     /// Value as shown, unit and interval included.
     pub value: &'a str,
+    /// Results and settings, for how it was computed.
+    pub cx: &'a Context<'a>,
 }
 
 /// A shown number: `runs` on one baseline whose node bears `key`.
@@ -101,15 +107,15 @@ pub fn number(ui: &mut Ui, at: Pos2, align: Align, runs: &[Run], key: &Key<'_>) 
 
 /// Gives `rect` the node of a shown number.
 pub fn mark_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
-    node(ui, rect, "number", key)
+    node_of_number(ui, rect, key, "number")
 }
 
 /// The same in the key table, where a number may stand a second time in the window.
 pub fn table_number(ui: &mut Ui, rect: Rect, key: &Key<'_>) -> Response {
-    node(ui, rect, "table number", key)
+    node_of_number(ui, rect, key, "table number")
 }
 
-fn node(ui: &mut Ui, rect: Rect, place: &str, key: &Key<'_>) -> Response {
+fn node_of_number(ui: &mut Ui, rect: Rect, key: &Key<'_>, place: &str) -> Response {
     let id = ui.make_persistent_id((place, key.id));
     let response = ui.interact(rect, id, Sense::hover());
     response.widget_info(|| WidgetInfo::labeled(Role::Label, true, key.value));
@@ -118,7 +124,18 @@ fn node(ui: &mut Ui, rect: Rect, place: &str, key: &Key<'_>) -> Response {
         node.set_author_id(author);
         node.set_label(name);
     });
-    response
+    response.on_hover_ui(|ui| how(ui, key))
+}
+
+/// How a number was computed: method, formula, citation, breaths, doubts.
+fn how(ui: &mut Ui, key: &Key<'_>) {
+    let found = |o: &&Outcome| o.primary && values::key(&o.id, o.at) == key.id;
+    let Some(outcome) = key.cx.results.outcomes.iter().find(found) else { return };
+    ui.set_max_width(460.0);
+    ui.label(key.value);
+    for line in how::computed(outcome, key.cx.results, key.cx.settings, key.cx.facts) {
+        ui.label(line);
+    }
 }
 
 /// Text wrapped to `width`, its first line's top at `top_left`; returns its response.

@@ -7,6 +7,7 @@ mod rules;
 use std::collections::BTreeMap;
 use std::path::Path;
 
+use analysis::predicted::sets::Predicts;
 use app::App;
 use app::command::Command;
 use app::headless::{Headless, Screen};
@@ -127,7 +128,11 @@ fn dialogs() -> Vec<Dialog> {
         Dialog::Keys,
         Dialog::Event,
         Dialog::Exclude(None),
-        Dialog::Sets,
+        Dialog::Sets(Predicts::Vo2Peak),
+        Dialog::Sets(Predicts::HrPeak),
+        Dialog::Sets(Predicts::O2Pulse),
+        Dialog::Sets(Predicts::WorkRate),
+        Dialog::Overlay,
         Dialog::Inputs,
         Dialog::Unsaved(Box::new(Command::Quit)),
     ]

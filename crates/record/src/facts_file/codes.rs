@@ -87,6 +87,14 @@ closed! {
 }
 
 closed! {
+    /// Kind of the planned operation, beside its text.
+    OperationKind => OperationKind {
+        "lung-resection" LungResection; "major-abdominal" MajorAbdominal;
+        "colorectal" Colorectal; "other" Other;
+    }
+}
+
+closed! {
     /// Kind of the stop reason, beside its text.
     StopKind => StopKind {
         "fatigue" Fatigue; "breathlessness" Breathlessness; "ischaemia" Ischaemia;

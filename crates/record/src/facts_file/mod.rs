@@ -7,8 +7,8 @@ mod to_engine;
 mod types;
 
 pub use codes::{
-    BorgScale, Device, DiagnosisCode, EventKind, HbTime, HbUnit, Indication, Mode, ProtocolKind,
-    RecoveryMode, Rhythm, Sex, StopKind,
+    BorgScale, Device, DiagnosisCode, EventKind, HbTime, HbUnit, Indication, Mode, OperationKind,
+    ProtocolKind, RecoveryMode, Rhythm, Sex, StopKind,
 };
 pub use types::{
     BorgScore, Diagnosis, Drug, Ecg, Event, FactsFile, FactsSchema, Hb, Phases, Protocol, Subject,

@@ -181,6 +181,7 @@ fn every_code_of_the_schema_is_a_code_of_the_program() {
     assert_eq!(list("indication"), codes(Indication::ALL, Indication::code));
     assert_eq!(list("diagnosis"), codes(DiagnosisCode::ALL, DiagnosisCode::code));
     assert_eq!(list("device"), codes(Device::ALL, Device::code));
+    assert_eq!(list("operationKind"), codes(OperationKind::ALL, OperationKind::code));
     assert_eq!(list("stopKind"), codes(StopKind::ALL, StopKind::code));
     assert_eq!(list("recoveryMode"), codes(RecoveryMode::ALL, RecoveryMode::code));
     let kinds: Vec<String> = EventKind::ALL.iter().map(|(_, code)| (*code).to_owned()).collect();

@@ -58,6 +58,7 @@ fn test(t: &Test) -> engine::TestFacts {
             w_per_min: p.w_per_min,
         }),
         fio2: t.fio2,
+        operation: t.operation_kind.map(super::OperationKind::to_engine),
         stop: t.stop_kind.map(super::StopKind::to_engine),
         ecg: engine::Ecg { change: t.ecg.as_ref().and_then(|e| e.change) },
         spo2_confirmed: t.spo2_confirmed,

@@ -3,8 +3,8 @@
 use serde::{Deserialize, Serialize};
 
 use super::codes::{
-    BorgScale, Device, DiagnosisCode, EventKind, HbTime, HbUnit, Indication, Mode, ProtocolKind,
-    RecoveryMode, Rhythm, Sex, StopKind,
+    BorgScale, Device, DiagnosisCode, EventKind, HbTime, HbUnit, Indication, Mode, OperationKind,
+    ProtocolKind, RecoveryMode, Rhythm, Sex, StopKind,
 };
 use crate::identity::Identity;
 
@@ -117,6 +117,8 @@ fields! {
         fio2: f64,
         /// Planned operation.
         operation: String,
+        /// The same, as a closed kind: published bands appear under theirs only.
+        operation_kind: OperationKind,
         /// Why the test stopped, in words.
         stop_reason: String,
         /// The same, as a closed kind.

@@ -9,8 +9,8 @@ use super::html::Html;
 use super::model::Model;
 use crate::clock;
 use crate::presentation::key_table::set_names;
-use crate::presentation::values;
 use crate::presentation::wording::{method, plain_text as t, text, with};
+use crate::presentation::{choices, values};
 use crate::session::findings::{EvidenceShown, FindingShown, SECTIONS};
 use crate::session::history::Action;
 
@@ -328,6 +328,7 @@ fn decisions(m: &Model<'_>) -> Vec<String> {
         ];
         out.push(with("page-excluded", &args));
     }
+    out.extend(choices::changed(&j.settings));
     if out.is_empty() {
         out.push(t("page-none-made"));
     }
@@ -339,7 +340,8 @@ fn history(h: &mut Html, m: &Model<'_>) {
     h.element("h3", "", &t("page-history"));
     h.raw("<ol class=\"history\">\n");
     for entry in m.session.history() {
-        let edit = entry.edit.as_ref().map(|e| e.label()).unwrap_or_default();
+        let settings = &m.session.judgement().settings;
+        let edit = entry.edit.as_ref().map(|e| choices::edit(e, settings)).unwrap_or_default();
         let words = match entry.action {
             Action::Imported => t("page-imported"),
             Action::Edited => with("page-edited-entry", &[("edit", edit)]),

@@ -25,6 +25,8 @@ files! {
     "tanaka-2001"
     "fox-220"
     "gellish-2007"
+    "gellish-2007-rounded"
+    "gellish-2007-quadratic"
     "inbar-1994"
     "hunt-2013"
     "gulati-2010"

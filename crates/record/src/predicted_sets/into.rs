@@ -28,6 +28,7 @@ impl From<SetV1> for PredictedSet {
             adults_only: v.adults_only,
             ranges: v.ranges.into_iter().map(|r| r.0.into()).collect(),
             equations: v.equations.into_iter().map(|e| e.0.into()).collect(),
+            own: None,
         }
     }
 }

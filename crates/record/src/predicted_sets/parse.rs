@@ -49,6 +49,15 @@ pub fn parse(text: &str, file: &str) -> Result<PredictedSet, Problem> {
     Ok(set)
 }
 
+/// Reads a laboratory's own set, which keeps its text.
+///
+/// # Errors
+/// As [`parse`].
+pub fn own(text: &str) -> Result<PredictedSet, Problem> {
+    let set = parse(text, "the set of the laboratory")?;
+    Ok(PredictedSet { own: Some(text.into()), ..set })
+}
+
 /// Place of the n-th `"predicts"` key, which each equation has once.
 fn start_of_equation(text: &str, index: usize) -> usize {
     text.match_indices("\"predicts\"").nth(index).map_or(0, |(at, _)| at)

@@ -39,6 +39,12 @@ const ROWS: &[(&str, At, bool)] = &[
     ("breathing-reserve", At::Peak, false),
 ];
 
+/// Place of a result among the rows of page 1, if it is one of them.
+#[must_use]
+pub fn place(id: &str, at: At) -> Option<usize> {
+    ROWS.iter().position(|(row, place, _)| *row == id && *place == at)
+}
+
 /// Rows of the results that the engine gives.
 #[must_use]
 pub fn rows(results: &Results, settings: &Settings) -> Vec<Row> {
@@ -95,6 +101,14 @@ fn shown_onset(results: &Results) -> Option<String> {
 
 /// "92 % of Hansen 1984, limit 83 %" where the quantity has a prediction.
 fn of_predicted(outcome: &Outcome, results: &Results, settings: &Settings) -> Option<String> {
+    if outcome.id == "vt1-vo2" {
+        // Against predicted peak, as practice has it; not against the mean of a threshold table.
+        let share = results.primary("vt1-vo2-percent-predicted", At::Vt1)?;
+        share.number()?;
+        let percent = values::shown(share).with_unit();
+        let set = short_names(&share.method, settings);
+        return Some(wording::with("page-vt1-of-predicted", &[("percent", percent), ("set", set)]));
+    }
     let row = Predicts::all().find(|p| p.measured_id() == Some(outcome.id.as_ref()))?;
     let predicted = results.primary(row.predicted_id(), outcome.at)?;
     let (value, of) = (outcome.number()?, predicted.number()?);

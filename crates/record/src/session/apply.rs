@@ -1,9 +1,12 @@
 //! Carrying out edits, taking them back, making them again.
 
+use std::collections::BTreeMap;
 use std::sync::{Arc, OnceLock};
 
 use analysis::decisions::{Exclusion, Mark, Phase};
+use analysis::predicted::sets::{PredictedSet, Predicts};
 use analysis::results::Results;
+use analysis::settings::Settings;
 use serde_json::Value;
 
 use super::findings::{self, Finding, Status};
@@ -138,6 +141,7 @@ impl Session {
             }
             Edit::SetAveraging { .. }
             | Edit::SetPredicted { .. }
+            | Edit::AddPredictedSet { .. }
             | Edit::SetOverlayShown { .. }
             | Edit::SetSetting { .. } => change_setting(j, edit)?,
             Edit::Sign { name, meaning, .. } => check_signature(name, meaning)?,
@@ -286,17 +290,11 @@ fn change_setting(j: &mut Judgement, edit: &Edit) -> Done {
             settings.averaging = method.over(*n);
             SettingsFile::of(&settings).checked()?
         }
-        Edit::SetPredicted { vo2, hr } => {
-            let mut settings = j.settings.clone();
-            for id in [vo2, hr].into_iter().flatten() {
-                if !settings.sets.is_empty() && !settings.sets.iter().any(|s| s.id == *id) {
-                    let what = format!("There is no predicted set “{id}”.");
-                    return Err(problems::edit("set-unknown", what, "Choose one of the sets."));
-                }
-            }
-            settings.predicted.vo2 = vo2.clone().unwrap_or(settings.predicted.vo2);
-            settings.predicted.hr = hr.clone().unwrap_or(settings.predicted.hr);
-            SettingsFile::of(&settings)
+        Edit::SetPredicted { vo2, hr, others } => {
+            SettingsFile::of(&chosen_sets(&j.settings, vo2.as_ref(), hr.as_ref(), others)?)
+        }
+        Edit::AddPredictedSet { text } => {
+            SettingsFile::of(&j.settings).with_set(text, &j.settings)?
         }
         Edit::SetOverlayShown { shown } => {
             j.settings.overlay_shown = *shown;
@@ -306,6 +304,46 @@ fn change_setting(j: &mut Judgement, edit: &Edit) -> Done {
     };
     j.settings = file.to_engine(&j.settings);
     Ok(())
+}
+
+fn chosen_sets(
+    now: &Settings,
+    vo2: Option<&String>,
+    hr: Option<&String>,
+    others: &BTreeMap<String, String>,
+) -> Result<Settings, Problem> {
+    let mut settings = now.clone();
+    let pick = |quantity: Predicts, id: &String| {
+        let gives = |s: &PredictedSet| s.id == *id && s.equation(quantity).is_some();
+        if settings.sets.is_empty() || settings.sets.iter().any(gives) {
+            return Ok(id.clone());
+        }
+        let what = format!("No predicted set “{id}” gives {}.", quantity.code());
+        Err(problems::edit("set-unknown", what, "Choose one of the sets."))
+    };
+    let mut choice = settings.predicted.clone();
+    if let Some(id) = vo2 {
+        choice.vo2 = pick(Predicts::Vo2Peak, id)?;
+    }
+    if let Some(id) = hr {
+        choice.hr = pick(Predicts::HrPeak, id)?;
+    }
+    for (code, id) in others {
+        let quantity = Predicts::from_code(code).ok_or_else(|| {
+            let what = format!("Nothing predicts “{code}”.");
+            problems::edit("set-unknown", what, "Use the code of a set file, such as work-rate.")
+        })?;
+        let id = pick(quantity, id)?;
+        match quantity {
+            Predicts::Vo2Peak => choice.vo2 = id,
+            Predicts::HrPeak => choice.hr = id,
+            other => {
+                choice.others.insert(other, id);
+            }
+        }
+    }
+    settings.predicted = choice;
+    Ok(settings)
 }
 
 fn change_finding(list: &mut Vec<Finding>, edit: &Edit, results: &Results) -> Done {

@@ -1,6 +1,9 @@
 //! What can be changed in a session: `rampcrest-edits/1`. The window makes the same edits.
 
+use std::collections::BTreeMap;
+
 use analysis::decisions::{Mark, Phase};
+use analysis::predicted::sets::Predicts;
 use analysis::settings::Averaging;
 use serde::{Deserialize, Serialize};
 use serde_json::Value;
@@ -81,6 +84,14 @@ pub enum Edit {
         /// Set of peak HR.
         #[serde(default, skip_serializing_if = "Option::is_none")]
         hr: Option<String>,
+        /// Sets of other quantities by their code, such as `work-rate`.
+        #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+        others: BTreeMap<String, String>,
+    },
+    /// Adds a laboratory's own set, the text of a file `rampcrest-predicted/1`.
+    AddPredictedSet {
+        /// The text.
+        text: String,
     },
     /// Shows or hides the model of a normal response.
     SetOverlayShown {
@@ -155,6 +166,20 @@ impl Edit {
         Edit::SetAveraging { method, n }
     }
 
+    /// The edit that chooses the set `id` for `quantity`.
+    #[must_use]
+    pub fn choose_set(quantity: Predicts, id: &str) -> Self {
+        let (mut vo2, mut hr, mut others) = (None, None, BTreeMap::new());
+        match quantity {
+            Predicts::Vo2Peak => vo2 = Some(id.to_owned()),
+            Predicts::HrPeak => hr = Some(id.to_owned()),
+            other => {
+                others.insert(other.code().to_owned(), id.to_owned());
+            }
+        }
+        Edit::SetPredicted { vo2, hr, others }
+    }
+
     /// Stable code, as in the file.
     #[must_use]
     pub fn code(&self) -> &'static str {
@@ -168,6 +193,7 @@ impl Edit {
             Edit::SetMark { .. } => "set-mark",
             Edit::ClearMark { .. } => "clear-mark",
             Edit::SetPredicted { .. } => "set-predicted",
+            Edit::AddPredictedSet { .. } => "add-predicted-set",
             Edit::SetOverlayShown { .. } => "set-overlay-shown",
             Edit::SetTwoFactor { .. } => "set-two-factor",
             Edit::SetSetting { .. } => "set-setting",

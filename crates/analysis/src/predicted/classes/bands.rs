@@ -1,6 +1,6 @@
 //! The bands, as data with their sources.
 
-use crate::facts::Indication;
+use crate::facts::{Indication, OperationKind};
 use crate::results::At;
 
 /// One band of a class.
@@ -27,6 +27,8 @@ pub struct Class {
     pub method: &'static str,
     /// The lens under which it appears.
     pub indication: Indication,
+    /// The operation it concerns, where it concerns one.
+    pub operation: Option<OperationKind>,
     /// Deciding outcome.
     pub deciding: &'static str,
     /// Where the deciding outcome belongs.
@@ -87,6 +89,8 @@ const COLORECTAL_EQUIVALENT: &[Band] =
     bands! { -1.0e9 at "at-most-30.9"; 30.9 above "above-30.9"; };
 const CUT_14: &[Band] = bands! { -1.0e9 at "at-most-14"; 14.0 above "above-14"; };
 const CUT_12: &[Band] = bands! { -1.0e9 at "at-most-12"; 12.0 above "above-12"; };
+const CUT_50: &[Band] = bands! { -1.0e9 at "at-most-50-percent"; 50.0 above "above-50-percent"; };
+const CUT_35: &[Band] = bands! { -1.0e9 at "at-most-35"; 35.0 above "above-35"; };
 
 const ARENA: &str = "Arena R et al. Circulation 2007;115:2410";
 const WEBER_PAPER: &str = "Weber KT, Janicki JS et al. Circulation 1982;65:1213";
@@ -98,61 +102,84 @@ const WEST: &str = "West MA et al. Br J Surg 2016 (colorectal surgery, n 703)";
 const ISHLT_PAPER: &str = "ISHLT criteria for heart transplantation 2016";
 
 macro_rules! classes {
-    ($($id:literal $at:ident $method:literal $lens:ident $deciding:literal $dat:ident
+    ($($id:literal $at:ident $method:literal $lens:ident $operation:expr, $deciding:literal $dat:ident
        $effort:literal $source:ident $caveat:expr, $bands:ident;)*) => {
         /// All classes.
         pub const TABLE: &[Class] = &[$(Class {
             id: $id, at: At::$at, method: $method, indication: Indication::$lens,
+            operation: $operation,
             deciding: $deciding, deciding_at: At::$dat, needs_effort: $effort, source: $source,
             caveat: $caveat, bands: $bands,
         }),*];
     };
 }
 
+const LUNG: Option<OperationKind> = Some(OperationKind::LungResection);
+const ABDOMINAL: Option<OperationKind> = Some(OperationKind::MajorAbdominal);
+const COLORECTAL: Option<OperationKind> = Some(OperationKind::Colorectal);
+
 classes! {
-    "class-weber" Peak "weber-janicki-1982" HeartFailure "vo2-peak-per-kg" Peak true WEBER_PAPER None, WEBER;
-    "class-ventilatory" Ramp "arena-2007" HeartFailure "ve-vco2-slope-full" Ramp false ARENA None, VENTILATORY;
-    "class-hr-recovery" Recovery1Min "cole-1999" HeartFailure "hr-recovery-1min" Recovery1Min false COLE
+    "class-weber" Peak "weber-janicki-1982" HeartFailure None, "vo2-peak-per-kg" Peak true WEBER_PAPER None, WEBER;
+    "class-ventilatory" Ramp "arena-2007" HeartFailure None, "ve-vco2-slope-full" Ramp false ARENA None, VENTILATORY;
+    "class-hr-recovery" Recovery1Min "cole-1999" HeartFailure None, "hr-recovery-1min" Recovery1Min false COLE
         Some("class-recovery-posture"), RECOVERY;
-    "class-ph-vo2" Peak "esc-ers-2015" PulmonaryHypertension "vo2-peak-per-kg" Peak true ESC_2015 None, PH_VO2;
-    "class-ph-vo2-percent" Peak "esc-ers-2015" PulmonaryHypertension "vo2-peak-percent" Peak true ESC_2015
+    "class-ph-vo2" Peak "esc-ers-2015" PulmonaryHypertension None, "vo2-peak-per-kg" Peak true ESC_2015 None, PH_VO2;
+    "class-ph-vo2-percent" Peak "esc-ers-2015" PulmonaryHypertension None, "vo2-peak-percent" Peak true ESC_2015
         Some("class-percent-of-chosen-set"), PH_PERCENT;
-    "class-ph-slope" Ramp "esc-ers-2015" PulmonaryHypertension "ve-vco2-slope-full" Ramp false ESC_2015 None, PH_SLOPE;
-    "class-resection-vo2" Peak "lung-resection" Preoperative "vo2-peak-per-kg" Peak true BRUNELLI
+    "class-ph-slope" Ramp "esc-ers-2015" PulmonaryHypertension None, "ve-vco2-slope-full" Ramp false ESC_2015 None, PH_SLOPE;
+    "class-resection-vo2" Peak "lung-resection" Preoperative LUNG, "vo2-peak-per-kg" Peak true BRUNELLI
         Some("class-only-lung-resection"), RESECTION;
-    "class-resection-vo2-percent" Peak "lung-resection" Preoperative "vo2-peak-percent" Peak true BRUNELLI
+    "class-resection-vo2-percent" Peak "lung-resection" Preoperative LUNG, "vo2-peak-percent" Peak true BRUNELLI
         Some("class-only-lung-resection"), RESECTION_PERCENT;
-    "class-perioperative-vt1" Vt1 "older-three-tier" Preoperative "vt1-vo2-per-kg" Vt1 false OLDER
+    "class-perioperative-vt1" Vt1 "older-three-tier" Preoperative ABDOMINAL, "vt1-vo2-per-kg" Vt1 false OLDER
         Some("class-only-major-abdominal"), THRESHOLD;
-    "class-perioperative-ve-vco2" Vt1 "older-three-tier" Preoperative "eq-co2" Vt1 false OLDER
+    "class-perioperative-ve-vco2" Vt1 "older-three-tier" Preoperative ABDOMINAL, "eq-co2" Vt1 false OLDER
         Some("class-only-major-abdominal"), EQUIVALENT;
-    "class-colorectal-vt1" Vt1 "west-2016" Preoperative "vt1-vo2-per-kg" Vt1 false WEST
+    "class-colorectal-vt1" Vt1 "west-2016" Preoperative COLORECTAL, "vt1-vo2-per-kg" Vt1 false WEST
         Some("class-only-colorectal"), COLORECTAL_VT1;
-    "class-colorectal-vo2" Peak "west-2016" Preoperative "vo2-peak-per-kg" Peak true WEST
+    "class-colorectal-vo2" Peak "west-2016" Preoperative COLORECTAL, "vo2-peak-per-kg" Peak true WEST
         Some("class-only-colorectal"), COLORECTAL_PEAK;
-    "class-colorectal-ve-vco2" Vt1 "west-2016" Preoperative "eq-co2" Vt1 false WEST
+    "class-colorectal-ve-vco2" Vt1 "west-2016" Preoperative COLORECTAL, "eq-co2" Vt1 false WEST
         Some("class-only-colorectal"), COLORECTAL_EQUIVALENT;
 }
 
-const fn ishlt(method: &'static str, bands: &'static [Band]) -> Class {
+const fn ishlt(
+    id: &'static str,
+    method: &'static str,
+    deciding: &'static str,
+    needs_effort: bool,
+    bands: &'static [Band],
+) -> Class {
     Class {
-        id: "class-ishlt-vo2",
+        id,
         at: At::Peak,
         method,
         indication: Indication::HeartFailure,
-        deciding: "vo2-peak-per-kg",
+        operation: None,
+        deciding,
         deciding_at: At::Peak,
-        needs_effort: true,
+        needs_effort,
         source: ISHLT_PAPER,
         caveat: Some("class-never-vo2-alone"),
         bands,
     }
 }
 
+const ISHLT_VO2: (&str, &str) = ("class-ishlt-vo2", "vo2-peak-per-kg");
 /// Without a beta-blocker.
-pub const ISHLT: Class = ishlt("ishlt-2016", CUT_14);
+pub const ISHLT: Class = ishlt(ISHLT_VO2.0, "ishlt-2016", ISHLT_VO2.1, true, CUT_14);
 /// On a beta-blocker.
-pub const ISHLT_BLOCKED: Class = ishlt("ishlt-2016-beta-blocker", CUT_12);
+pub const ISHLT_BLOCKED: Class =
+    ishlt(ISHLT_VO2.0, "ishlt-2016-beta-blocker", ISHLT_VO2.1, true, CUT_12);
+/// Below 50 years, and in women.
+pub const ISHLT_PERCENT: Class =
+    ishlt("class-ishlt-vo2-percent", "ishlt-2016-percent", "vo2-peak-percent", true, CUT_50);
+/// Where RER stayed below 1.05.
+pub const ISHLT_SLOPE: Class = Class {
+    at: At::Ramp,
+    deciding_at: At::Ramp,
+    ..ishlt("class-ishlt-slope", "ishlt-2016-slope", "ve-vco2-slope-full", false, CUT_35)
+};
 
 #[cfg(test)]
 mod tests {
@@ -160,7 +187,7 @@ mod tests {
 
     #[test]
     fn bands_rise() {
-        for class in TABLE.iter().chain([&ISHLT, &ISHLT_BLOCKED]) {
+        for class in TABLE.iter().chain([&ISHLT, &ISHLT_BLOCKED, &ISHLT_PERCENT, &ISHLT_SLOPE]) {
             assert!(class.bands.windows(2).all(|w| w[0].from < w[1].from), "{}", class.id);
         }
     }

@@ -3,13 +3,6 @@
 use crate::note::Note;
 use crate::settings::OverlaySettings;
 
-/// Exchange ratio at rest (modelling choice).
-const REST_RER: f64 = 0.85;
-/// ΔV̇CO₂/ΔV̇O₂ below VT1 (modelling choice; slightly below 1 in the literature).
-const S1: f64 = 0.95;
-/// By how much the V̇E–V̇CO₂ slope steepens above VT2 (modelling choice).
-const LATE_VE: f64 = 1.25;
-
 /// What the model takes from the person and the test.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Inputs {
@@ -67,7 +60,7 @@ pub struct Response {
     pub peak_s: Option<f64>,
     /// Work rate at that time, W.
     pub peak_watts: Option<f64>,
-    ve_intercept: f64,
+    settings: OverlaySettings,
 }
 
 impl Response {
@@ -84,7 +77,8 @@ impl Response {
         if numbers.iter().any(|x| !x.is_finite() || *x <= 0.0) || top <= floor || top <= vt1_vo2 {
             return Err(low);
         }
-        let vt1_vco2 = REST_RER * inputs.rest_vo2 + S1 * (vt1_vo2 - inputs.rest_vo2);
+        let rest_vco2 = settings.rer_rest * inputs.rest_vo2;
+        let vt1_vco2 = rest_vco2 + settings.s1 * (vt1_vo2 - inputs.rest_vo2);
         let mut response = Self {
             inputs,
             tau_s: settings.tau_s,
@@ -95,7 +89,7 @@ impl Response {
             vt2_vo2: settings.vt2_fraction * top,
             peak_s: None,
             peak_watts: None,
-            ve_intercept: settings.ve_intercept,
+            settings: *settings,
         };
         if inputs.rate_w_per_min > 0.0 {
             let peak_s = response.time_of_peak();
@@ -156,7 +150,7 @@ impl Response {
     fn vco2(&self, vo2: f64) -> f64 {
         if vo2 <= self.vt1_vo2 {
             let rest = self.inputs.rest_vo2;
-            REST_RER * rest + S1 * (vo2 - rest)
+            self.settings.rer_rest * rest + self.settings.s1 * (vo2 - rest)
         } else {
             self.vt1_vco2 + self.s2 * (vo2 - self.vt1_vo2)
         }
@@ -176,10 +170,12 @@ impl Response {
     fn ve(&self, vo2: f64, vco2: f64) -> Option<f64> {
         let slope = self.inputs.ve_slope?;
         let litres = |v: f64| v / 1000.0;
+        let intercept = self.settings.ve_intercept;
         if vo2 <= self.vt2_vo2 {
-            return Some(self.ve_intercept + slope * litres(vco2));
+            return Some(intercept + slope * litres(vco2));
         }
         let at_vt2 = self.vco2(self.vt2_vo2);
-        Some(self.ve_intercept + slope * litres(at_vt2) + LATE_VE * slope * litres(vco2 - at_vt2))
+        let late = self.settings.late_ve * slope * litres(vco2 - at_vt2);
+        Some(intercept + slope * litres(at_vt2) + late)
     }
 }

@@ -3,7 +3,7 @@
 //! the peak heart rate given as 220 − age: 175 and 160.
 
 use super::curves::{Runs, over_time, over_vo2};
-use super::{Inputs, Moment, Response, unloaded_vo2};
+use super::{Inputs, Moment, Response};
 use crate::note::Note;
 use crate::quantity::Quantity;
 use crate::settings::OverlaySettings;
@@ -11,7 +11,7 @@ use crate::settings::OverlaySettings;
 fn man_45() -> Inputs {
     Inputs {
         rest_vo2: 3.5 * 80.0,
-        unloaded_vo2: unloaded_vo2(80.0),
+        unloaded_vo2: OverlaySettings::default().unloaded_vo2(80.0),
         // P = 0.79·178 − 60.7 = 79.92; k = 50.72 − 0.372·45; P·k + 6·(80 − P).
         vo2_peak: 79.92 * (50.72 - 0.372 * 45.0) + 6.0 * (80.0 - 79.92),
         hr: Some((70.0, 175.0)),
@@ -25,7 +25,7 @@ fn man_45() -> Inputs {
 fn woman_60() -> Inputs {
     Inputs {
         rest_vo2: 3.5 * 85.0,
-        unloaded_vo2: unloaded_vo2(85.0),
+        unloaded_vo2: OverlaySettings::default().unloaded_vo2(85.0),
         // P = 0.65·163 − 42.8 = 63.15; k = 22.78 − 0.17·60; (P + 43)·k + 6·(85 − P).
         vo2_peak: (63.15 + 43.0) * (22.78 - 0.17 * 60.0) + 6.0 * (85.0 - 63.15),
         hr: Some((75.0, 160.0)),
@@ -114,6 +114,48 @@ fn the_woman_of_60_comes_out_point_by_point() {
             [519.1, 86.5, 1466.5, 1686.4, 160.0, 9.165, 59.5, 35.3, 1.150],
         ],
     );
+}
+
+/// Wilkoff et al. 1989: HR = (220 − A − rest)·(METs − 1)/(peak METs − 1) + rest; worked apart from
+/// this program: 45 y, rest 70, 6 of 11 METs gives 122.5; 60 y, rest 75, 4 of 7 METs gives 117.5.
+#[test]
+fn heart_rate_follows_metabolic_reserve() {
+    for (rest, peak, mets, most, expected) in
+        [(70.0, 175.0, 6.0, 11.0, 122.5), (75.0, 160.0, 4.0, 7.0, 117.5)]
+    {
+        let met = 280.0;
+        let inputs = Inputs {
+            rest_vo2: met,
+            unloaded_vo2: 1.5 * met,
+            vo2_peak: most * met,
+            hr: Some((rest, peak)),
+            ..man_45()
+        };
+        let hr = run(inputs).at_vo2(mets * met).hr.expect("both ends are known");
+        assert!((hr - expected).abs() < 1e-9, "{hr} for {expected}");
+    }
+}
+
+#[test]
+fn every_parameter_of_the_model_does_something() {
+    let before = run(man_45()).at(480.0);
+    let exercise = |change: fn(&mut OverlaySettings)| {
+        let mut settings = OverlaySettings::default();
+        change(&mut settings);
+        Response::new(man_45(), &settings, settings.gain).expect("a model").at(600.0)
+    };
+    let same = exercise(|_| {});
+    for change in [
+        (|s| s.s1 = 0.9) as fn(&mut OverlaySettings),
+        |s| s.rer_rest = 0.8,
+        |s| s.late_ve = 1.5,
+        |s| s.rer_peak = 1.2,
+        |s| s.ve_intercept = 5.0,
+        |s| s.tau_s = 50.0,
+    ] {
+        assert_ne!(exercise(change), same);
+    }
+    assert!(before.vo2 < same.vo2);
 }
 
 fn runs(inputs: Inputs) -> Runs {

@@ -41,7 +41,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let at = pos2(frame.left() + 32.0, base);
     let big = if cx.grid.narrow { size::TITLE } else { size::COURSE };
     let run = [Run::new(words.clone(), big, t.ink)];
-    let key = Key { id: "o2-pulse-course@ramp", name: "O₂-pulse course", value: &words };
+    let key = Key { id: "o2-pulse-course@ramp", name: "O₂-pulse course", value: &words, cx };
     text::number(ui, at, Align::Min, &run, &key);
     let second =
         pos2(frame.left() + 32.0, frame.bottom() - if cx.grid.narrow { 9.0 } else { 17.0 });
@@ -99,7 +99,7 @@ fn number_line(ui: &mut Ui, cx: &Context<'_>, at: egui::Pos2, lead: &str, id: &s
         Run::new(tail, size::BODY, t.ink2),
     ];
     let value = format!("{} {}{interval}", s.value, s.unit);
-    let key = Key { id: &s.key, name: lead.trim(), value: &value };
+    let key = Key { id: &s.key, name: lead.trim(), value: &value, cx };
     text::number(ui, at, Align::Min, &runs, &key);
 }
 

@@ -121,6 +121,7 @@ pub const TEXTS: &[Entry] = &[
         "page-frozen",
         "Results are those signed with engine {engine}. The present engine {now} gives other values for: {keys}.",
     ),
+    ("page-vt1-of-predicted", "{percent} of predicted peak V̇O₂ ({set})"),
     ("page-of-predicted", "{percent} of {set}"),
     ("page-of-predicted-limit", "{percent} of {set}, limit {limit}"),
     ("page-own-early", "own early line {slope}"),

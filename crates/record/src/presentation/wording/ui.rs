@@ -17,6 +17,7 @@ pub const TEXTS: &[Entry] = &[
     ("edit-set-mark", "Move mark"),
     ("edit-clear-mark", "Mark as proposed"),
     ("edit-set-predicted", "Choose predicted set"),
+    ("edit-add-predicted-set", "Add a predicted set of the laboratory"),
     ("edit-set-overlay-shown", "Predicted overlay"),
     ("edit-set-two-factor", "Move two-factor times"),
     ("edit-set-setting", "Change a setting"),
