@@ -14,6 +14,9 @@ use crate::document::Document;
 /// a drag, and they show the last one that is done. No exercise test is that long.
 const LONG: usize = 3_000;
 
+/// Updates, of which a frame has two, in which frames have the processors to themselves.
+const REST: u8 = 4;
+
 /// A derivation under way on another thread.
 type Beside = Receiver<(Decisions, Results)>;
 
@@ -24,6 +27,8 @@ pub struct Derived {
     committed: Arc<Results>,
     preview: Option<(Decisions, Results)>,
     beside: Option<Beside>,
+    /// Updates to come before the next derivation beside the frames.
+    rest: u8,
     findings: Vec<FindingShown>,
     /// How often anything was derived.
     runs: u64,
@@ -56,8 +61,14 @@ impl Derived {
             }
             Some(moving) if self.preview.as_ref().is_some_and(|(d, _)| d == moving) => {}
             Some(moving) if session.recording().breaths.len() > LONG => {
-                changed |= self.receive();
-                if self.beside.is_none() {
+                if self.receive() {
+                    changed = true;
+                    self.rest = REST;
+                    wake();
+                } else if self.rest > 0 {
+                    self.rest -= 1;
+                    wake();
+                } else if self.beside.is_none() {
                     self.runs += 1;
                     self.beside = Some(beside(document, session, moving.clone(), wake));
                 }

@@ -4,7 +4,7 @@ use std::ops::RangeInclusive;
 
 use egui::emath::GuiRounding as _;
 use egui::{Color32, Mesh, Pos2, Rect, Shape, Stroke, Ui, pos2, vec2};
-use egui_plot::{PlotBounds, PlotGeometry, PlotItem, PlotItemBase, PlotPoint, PlotTransform};
+use egui_plot::{PlotBounds, PlotGeometry, PlotItem, PlotItemBase, PlotTransform};
 
 use super::spec::{Dash, Item, Mark, Point};
 use super::thin;
@@ -25,8 +25,15 @@ impl Drawn {
 
 impl PlotItem for Drawn {
     fn shapes(&self, ui: &Ui, transform: &PlotTransform, shapes: &mut Vec<Shape>) {
-        let place = |p: &Point| transform.position_from_point(&PlotPoint::new(p[0], p[1]));
         let frame = transform.frame();
+        // As `position_from_point` does, its divisions done once: a long record has many points.
+        let (low, [across, up]) = (transform.bounds().min(), transform.dpos_dvalue());
+        let origin = [f64::from(frame.left()), f64::from(frame.bottom())];
+        let place = |p: &Point| {
+            let x = origin[0] + (p[0] - low[0]) * across;
+            let y = origin[1] + (p[1] - low[1]) * up;
+            pos2(x as f32, y as f32)
+        };
         let pen = Pen { frame: *frame, pixels_per_point: ui.pixels_per_point() };
         match &self.item {
             Item::Line { pieces, width, color, dash } => {
@@ -141,23 +148,22 @@ impl Pen {
         to: &mut Vec<Shape>,
     ) {
         let frame = self.frame;
-        let shown = points.filter(|p| p.x >= frame.left() && p.x <= frame.right());
-        let (inside, outside): (Vec<Pos2>, Vec<Pos2>) =
-            shown.partition(|p| p.y >= frame.top() && p.y <= frame.bottom());
+        let all: Vec<Pos2> = points.collect();
         let mut last = f32::NEG_INFINITY;
-        for p in outside {
+        for p in &all {
+            let is_beyond = frame.x_range().contains(p.x) && !frame.y_range().contains(p.y);
             // Marks within a pixel of each other are one.
-            if (p.x - last).abs() * self.pixels_per_point >= 1.0 {
-                beyond(p, &frame, color, to);
+            if is_beyond && (p.x - last).abs() * self.pixels_per_point >= 1.0 {
+                beyond(*p, &frame, color, to);
                 last = p.x;
             }
         }
-        if let Some(bars) = thin::cloud(&inside, frame, self.pixels_per_point) {
+        if let Some(bars) = thin::cloud(&all, frame, self.pixels_per_point) {
             self.rects(bars, color, to);
             return;
         }
         let mut squares = Vec::new();
-        for p in inside {
+        for p in all.into_iter().filter(|p| frame.contains(*p)) {
             match square(p, mark, radius) {
                 Some(rect) => squares.push(rect),
                 None => point(p, mark, radius, color, to),

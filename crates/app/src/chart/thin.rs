@@ -76,12 +76,12 @@ fn cross(a: Vec2, b: Vec2) -> f32 {
     a.x * b.y - a.y * b.x
 }
 
-/// Of a cloud of points too dense to be told apart: in each column of pixels the bar from its
-/// lowest to its highest point. `None` for a cloud that is not.
+/// Of a cloud of points too dense to be told apart: in each column of pixels the bar from the
+/// lowest to the highest point inside the frame. `None` for a cloud that is not.
 #[must_use]
 pub fn cloud(points: &[Pos2], frame: Rect, pixels_per_point: f32) -> Option<Vec<Rect>> {
     let mut columns = Columns::of(points, frame, pixels_per_point)?;
-    for p in points {
+    for p in points.iter().filter(|p| frame.contains(**p)) {
         columns.reach(p.x, p.y, p.y);
     }
     Some(columns.bars(1.0 / pixels_per_point))

@@ -44,6 +44,7 @@ fn breaths<'a>(cx: &Context<'a>, quantity: Quantity) -> impl Fn(usize) -> Option
     use Quantity as Q;
     let table = &cx.recording.breaths;
     let own = table.column(quantity);
+    let shown = values::in_shown(quantity, 1.0);
     let (over, under, factor) = match quantity {
         Q::O2Pulse => (table.column(Q::Vo2), table.column(Q::Hr), 1.0),
         Q::Rer => (table.column(Q::Vco2), table.column(Q::Vo2), 1.0),
@@ -54,7 +55,7 @@ fn breaths<'a>(cx: &Context<'a>, quantity: Quantity) -> impl Fn(usize) -> Option
     move |i| {
         let at = |column: Option<&[Option<f64>]>| column?.get(i).copied().flatten();
         if own.is_some() {
-            return at(own).map(|v| values::in_shown(quantity, v));
+            return at(own).map(|v| v * shown);
         }
         let (over, under) = (at(over)?, at(under)?);
         (under > 0.0).then(|| factor * over / under)

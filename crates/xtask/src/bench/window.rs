@@ -63,8 +63,12 @@ fn shell(
     let spent = program.ticks().unwrap_or(0).saturating_sub(ticks) as f64 * 10.0 / MOVES as f64;
     times.sort();
     let share = |percent: usize| ms(times[(times.len() * percent / 100).min(times.len() - 1)]);
-    let bar = if size[0] > 1920 { 33.0 } else { 20.0 };
-    tell(&Figure::at_most(format!("{name}: mouse to pixel, p50"), share(50), "ms", bar));
+    let what = format!("{name}: mouse to pixel, p50");
+    tell(&match (renderer, size[0]) {
+        ("cpu", 1920) => Figure::at_most(what, share(50), "ms", 20.0),
+        ("cpu", _) => Figure::at_most(what, share(50), "ms", 33.0),
+        _ => Figure::free(what, share(50), "ms"),
+    });
     tell(&Figure::free(format!("{name}: mouse to pixel, p99"), share(99), "ms"));
     tell(&Figure::free(format!("{name}: processor time per drag frame"), spent, "ms"));
     if long_drag > 0 {
@@ -72,17 +76,15 @@ fn shell(
         drag.times(&display, long_drag, Duration::ZERO)?;
         let growth = resident_mb(&program) - before;
         let what = format!("{name}: growth over a drag of {long_drag} frames");
-        tell(&Figure::at_most(what, growth, "MB", 1.0));
+        tell(&Figure::at_most(what, growth, "MB", 2.0));
         let each = ms(start.elapsed()) / long_drag as f64;
         tell(&Figure::free(format!("{name}: period of those frames, mean"), each, "ms"));
     }
-    let bar = if size[0] > 1920 { f64::INFINITY } else { 60.0 };
     let resident = resident_mb(&program);
     let what = format!("{name}: resident memory after the drag");
-    tell(&if renderer == "cpu" && bar.is_finite() {
-        Figure::at_most(what, resident, "MB", bar)
-    } else {
-        Figure::free(what, resident, "MB")
+    tell(&match (renderer, size[0]) {
+        ("cpu", 1920) => Figure::at_most(what, resident, "MB", 60.0),
+        _ => Figure::free(what, resident, "MB"),
     });
     drag.release(&display)?;
     Ok((share(50), spent))
