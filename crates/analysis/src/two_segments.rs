@@ -224,9 +224,9 @@ impl Design {
         let n = self.u.len();
         let (mut sum, mut ue) = ([0.0; LANES], [0.0; LANES]);
         for (u, e) in self.u.iter().zip(e) {
-            for l in 0..LANES {
-                sum[l] += e[l];
-                ue[l] += u * e[l];
+            for ((sum, ue), e) in sum.iter_mut().zip(&mut ue).zip(e) {
+                *sum += e;
+                *ue += u * e;
             }
         }
         let level = sum.map(|s| s / n as f64);
@@ -238,9 +238,9 @@ impl Design {
             // Σ (u − k)·e over the points beyond k, taken from one point to the next.
             let step = right - self.u[i];
             right = self.u[i];
-            for l in 0..LANES {
-                now.hinge[l] += step * now.beyond[l];
-                now.beyond[l] += e[i][l];
+            for ((hinge, beyond), e) in now.hinge.iter_mut().zip(&mut now.beyond).zip(&e[i]) {
+                *hinge += step * *beyond;
+                *beyond += e;
             }
             let place = i - self.margin;
             let Some(knot) = knots.get(place) else { continue };

@@ -5,6 +5,7 @@ pub mod ci;
 pub mod demo;
 pub mod display;
 pub mod drag;
+pub mod mutants;
 pub mod program;
 pub mod race;
 pub mod references;

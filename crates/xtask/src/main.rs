@@ -10,6 +10,8 @@ const USAGE: &str = "cargo xtask VERB
           the engine against a Python pipeline on the same tables
   ci      everything the repository checks without a display or outside data
   demo    writes the demo tests below demo-sessions
+  mutants [--seed N] [--count N]
+          how many changes of the engine break a test
   references noise|coverage|errors [--seeds A..B]
           simulations and data behind the calibrated figures
   sheet   contact sheets of all views below target/sheet
@@ -28,6 +30,7 @@ fn main() -> ExitCode {
         Some("bench") => xtask::bench::run(&args[1..]),
         Some("sheet") => xtask::sheet::run(),
         Some("demo") => xtask::demo::run(),
+        Some("mutants") => xtask::mutants::run(&args[1..]),
         Some("references") => xtask::references::run(&args[1..]),
         Some("ci") => xtask::ci::run(),
         Some("tidy") => xtask::tidy::run(),

@@ -1,20 +1,45 @@
-//! One whole test through importer and engine against `tests/golden/whole_test.py`, which reads the
+//! One whole test through the engine against `tests/golden/whole_test.py`, which reads the
 //! same table by the published procedures in numpy and shares no code with the engine.
 
+use analysis::breaths::Breaths;
 use analysis::decisions::{Decisions, PhaseStarts};
 use analysis::facts::{Event, EventKind, Facts, Mode, Rhythm};
+use analysis::quantity::Quantity;
+use analysis::recording::{Recording, Trace};
 use analysis::results::{At, Outcome, Results};
 use analysis::settings::Settings;
-use record::import::{Answers, import};
 
 /// Values in the table of the script, relative to their size; intervals hold logs and roots of sums.
 const TOLERANCE: f64 = 1e-7;
 
+/// The table: times, load and channels; a load holds from the row that first shows it.
+fn recording() -> Recording {
+    const COLUMNS: [Quantity; 9] = [
+        Quantity::Vo2,
+        Quantity::Vco2,
+        Quantity::Ve,
+        Quantity::Vt,
+        Quantity::Fr,
+        Quantity::Hr,
+        Quantity::Peto2,
+        Quantity::Petco2,
+        Quantity::Spo2,
+    ];
+    let text = include_str!("../../../tests/golden/whole-test.csv");
+    let rows: Vec<Vec<f64>> = text
+        .lines()
+        .skip(3)
+        .map(|line| line.split(',').map(|cell| cell.parse().expect("a number")).collect())
+        .collect();
+    let column = |k: usize| rows.iter().map(|row| row[k]).collect::<Vec<f64>>();
+    let columns = COLUMNS.into_iter().zip(2..);
+    let columns = columns.map(|(q, k)| (q, column(k).into_iter().map(Some).collect()));
+    let breaths = Breaths::new(column(0), None, columns.collect()).expect("rising times");
+    let load = Trace { t_s: column(0), value: column(1) };
+    Recording { breaths, load, ..Recording::default() }
+}
+
 fn derived() -> Results {
-    let folder = xtask::root().join("tests/golden");
-    let table = std::fs::read(folder.join("whole-test.csv")).expect("the table");
-    let read = import(&table, "", &Answers::none(), None).unwrap_or_else(|p| panic!("{p}"));
-    assert!(read.questions().is_empty());
     let mut facts = Facts::default();
     facts.subject.age_years = Some(34.0);
     facts.subject.mass_kg = Some(64.0);
@@ -34,7 +59,7 @@ fn derived() -> Results {
     };
     let decisions =
         Decisions { phases, vt1_s: Some(622.0), vt2_s: Some(834.0), ..Decisions::default() };
-    analysis::derive(&read.recording, &facts, &decisions, &Settings::default())
+    analysis::derive(&recording(), &facts, &decisions, &Settings::default())
 }
 
 fn place(code: &str) -> At {
@@ -58,9 +83,8 @@ fn outcome<'r>(results: &'r Results, id: &str, at: At, method: &str) -> &'r Outc
 #[test]
 fn an_independent_reading_of_the_same_test_gives_the_same_outcomes() {
     let results = derived();
-    let path = xtask::root().join("tests/golden/whole-test-outcomes-py.csv");
-    let mut reader =
-        csv::ReaderBuilder::new().comment(Some(b'#')).from_path(path).expect("outcomes");
+    let table = include_str!("../../../tests/golden/whole-test-outcomes-py.csv");
+    let mut reader = csv::ReaderBuilder::new().comment(Some(b'#')).from_reader(table.as_bytes());
     let (mut compared, mut off) = (0, Vec::new());
     for row in reader.records() {
         let row = row.expect("a row");

@@ -25,9 +25,8 @@ struct Row {
 }
 
 fn rows() -> Vec<Row> {
-    let path = xtask::root().join("assets/references/cut-offs.csv");
-    let mut reader =
-        csv::ReaderBuilder::new().comment(Some(b'#')).from_path(path).expect("the table");
+    let table = include_str!("../../../assets/references/cut-offs.csv");
+    let mut reader = csv::ReaderBuilder::new().comment(Some(b'#')).from_reader(table.as_bytes());
     let header = reader.headers().expect("a header").clone();
     reader
         .records()
