@@ -20,7 +20,7 @@ use crate::results::At;
 use crate::stage::Stage;
 use crate::unit::Unit;
 
-pub use curves::{Curve, Curves, Role};
+pub use curves::{Curve, Curves, Pressure, Role, Runs, over_time, over_vo2};
 pub use response::{Inputs, Moment, Response};
 
 /// The overlay, or why it is not drawn.

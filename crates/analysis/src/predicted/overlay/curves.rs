@@ -74,21 +74,27 @@ impl Curves {
 
 /// Pressure at rest, mmHg, and its rise with work rate, mmHg/W.
 #[derive(Clone, Copy, Debug)]
-pub(super) struct Pressure {
+pub struct Pressure {
+    /// Systolic at rest.
     pub systolic: Option<f64>,
+    /// Diastolic at rest.
     pub diastolic: Option<f64>,
+    /// Rise of the systolic one, mmHg/W.
     pub slope: f64,
+    /// Its standard deviation.
     pub slope_sd: f64,
 }
 
 /// The runs that make a picture.
 #[derive(Clone, Copy, Debug)]
-pub(super) struct Runs {
+pub struct Runs {
+    /// The run in the middle.
     pub middle: Response,
     /// Run at the lower limits of peak V̇O₂ and gain.
     pub low: Option<Response>,
     /// Run at the upper limits.
     pub high: Option<Response>,
+    /// Blood pressure, where both its parts are known.
     pub pressure: Option<Pressure>,
     /// Predicted peak HR on a beta-blocker, /min.
     pub hr_beta_blocked: Option<f64>,
@@ -103,7 +109,8 @@ struct At {
 }
 
 /// The curves over time from `from` to `to`, s from the start of the increments at `start`.
-pub(super) fn over_time(runs: &Runs, start: f64, from: f64, to: f64) -> Curves {
+#[must_use]
+pub fn over_time(runs: &Runs, start: f64, from: f64, to: f64) -> Curves {
     let peak = runs.middle.peak_s.unwrap_or(to);
     let step = if to - from > LONG_S { 2.0 * STEP_S } else { STEP_S };
     let count = ((to - from) / step).ceil().clamp(1.0, 4000.0) as usize;
@@ -127,7 +134,8 @@ pub(super) fn over_time(runs: &Runs, start: f64, from: f64, to: f64) -> Curves {
 }
 
 /// The curves over V̇O₂ from rest to the predicted peak.
-pub(super) fn over_vo2(runs: &Runs) -> Curves {
+#[must_use]
+pub fn over_vo2(runs: &Runs) -> Curves {
     let (rest, peak) = (runs.middle.inputs.rest_vo2, runs.middle.inputs.vo2_peak);
     let step = (peak - rest) / (VO2_POINTS - 1) as f64;
     let x: Vec<f64> = (0..VO2_POINTS).map(|i| rest + step * i as f64).collect();
