@@ -9,8 +9,8 @@ use crate::results::Results;
 use crate::settings::Settings;
 use crate::stage::Stage;
 use crate::{
-    clean, effort, fick, o2_pulse, oscillation, peak, phases, predicted, quality, reasoning,
-    recovery, reserve, samples, slopes, table, thresholds,
+    clean, effort, fick, irregularity, o2_pulse, oscillation, peak, phases, predicted, protocol,
+    quality, reasoning, recovery, reserve, samples, slopes, table, thresholds,
 };
 
 /// Derives everything from the recording and the reader's judgement. Pure and total: what cannot
@@ -30,6 +30,8 @@ pub fn derive(
     table::derive(&mut stage);
     recovery::derive(&mut stage);
     samples::derive(&mut stage);
+    protocol::derive(&mut stage);
+    irregularity::derive(&mut stage);
     quality::derive(&mut stage);
 
     predicted::derive(&mut stage);

@@ -46,6 +46,8 @@ pub struct Subject {
     pub cohb: Option<f64>,
     /// FEV₁ before the test, L.
     pub fev1_l: Option<f64>,
+    /// Total lung capacity, L.
+    pub tlc_l: Option<f64>,
     /// Measured maximal voluntary ventilation, L/min.
     pub mvv_l_min: Option<f64>,
 }

@@ -17,6 +17,7 @@ pub mod gas;
 #[cfg(test)]
 mod golden;
 mod hinge;
+mod irregularity;
 mod long_run;
 pub mod methods;
 pub mod model;
@@ -27,6 +28,7 @@ mod peak;
 mod peak_interval;
 mod phases;
 pub mod predicted;
+mod protocol;
 pub mod quality;
 pub mod quantity;
 mod ramp_series;

@@ -52,6 +52,7 @@ methods! {
     "aha-#" "Cycles of at least 15 % of resting ventilation over at least 60 % of exercise, confirmed as periodic, on 10-s averages." "Balady et al., Circulation 2010";
     "ben-dov-#" "At least three cycles of 30 to 60 s in a row with more than 25 % of mean ventilation, on 10-s averages." "Ben-Dov et al. 1992";
     "leite-#" "At least three regular cycles in a row with a mean of at least 5 L/min, on 10-s averages." "Leite et al. 2003";
+    "sun-#" "The same cycles of ventilation, with at least two more of oxygen uptake, carbon dioxide output, exchange ratio and end-tidal tensions repeating in 40 to 140 s." "Sun et al. 2010";
     "sun-#-ventilation" "At least three cycles of 40 to 140 s in a row with more than 30 % of concurrent ventilation, on 10-s averages; ventilation only." "Sun et al. 2010";
     "last-#s-less-#-to-#s" "Mean heart rate of the last 10 s of load less the mean of 55 to 65 s after it." "Cole et al., N Engl J Med 1999, with windows; interval calibrated by simulation";
     "half-of-peak" "Time from load end until the 20-s mean of oxygen uptake falls to half of its peak and stays there for 15 s." "Scrutinio et al. 1998";
@@ -73,6 +74,10 @@ methods! {
     "alveolar-gas-equation" "Alveolar oxygen by the full alveolar gas equation with the measured exchange ratio, less the arterial sample." "alveolar gas equation";
     "jones-#" "Dead space over tidal volume with an arterial tension estimated from end-tidal carbon dioxide and tidal volume; shown, never graded." "Jones, Robertson and Kane, J Appl Physiol 1979";
     "highest-sample" "Highest sample noted." PRACTICE;
+    "tlc-less-ic" "Total lung capacity less the inspiratory capacity of the last manoeuvre of the phase." PRACTICE;
+    "eelv-plus-vt" "End-expiratory lung volume plus the mean tidal volume of the 30 s before the manoeuvre." PRACTICE;
+    "load-rebuilt" "Regular increments found in the work rate; the deviation is the root mean square distance of the work rate from them, once a second." PRACTICE;
+    "approximate-entropy" "Approximate entropy (patterns of 2 breaths, tolerance 0.2 standard deviations) of the last 150 breaths of the increments at most, the rise over ± 45 s taken off; shown, never classified." "Pincus, Proc Natl Acad Sci USA 1991; in exercise breathing: Bansal et al., Respir Physiol Neurobiol 2018 (from memory)";
     "last-under-load-less-rest" "Last manoeuvre under load less the last at rest." PRACTICE;
     "every-set-in-range" "Against the limits of every set in whose range the person lies; low only if low by all of them." PRACTICE;
     "chosen-set" "By the predicted set chosen for this page." PRACTICE;

@@ -53,8 +53,11 @@ pub struct Oscillation {
     pub ben_dov: bool,
     /// Leite 2003: ≥ 3 regular cycles (SD ≤ 20 % of the mean length), amplitude ≥ 5 L/min.
     pub leite: bool,
-    /// Sun 2010: ≥ 3 cycles, amplitude > 30 % of concurrent mean, 40–140 s.
+    /// Sun 2010, ventilation alone: ≥ 3 cycles, amplitude > 30 % of concurrent mean, 40–140 s.
     pub sun: bool,
+    /// Variables (V̇E among them) that repeat with the same period while Sun's criterion of
+    /// ventilation holds; Sun 2010 asks for three.
+    pub together: usize,
 }
 
 impl Oscillation {
@@ -65,6 +68,10 @@ impl Oscillation {
         self.aha == Some(true) || self.leite || self.sun
     }
 }
+
+/// Variables beside V̇E that may oscillate with it (Sun 2010).
+const WITH_IT: [Quantity; 5] =
+    [Quantity::Vo2, Quantity::Vco2, Quantity::Rer, Quantity::Peto2, Quantity::Petco2];
 
 /// Looks for cycles of V̇E over `exercise` (s) given resting V̇E.
 pub(crate) fn find(means: &Means, exercise: (f64, f64), resting: Option<f64>) -> Oscillation {
@@ -83,6 +90,22 @@ pub(crate) fn find(means: &Means, exercise: (f64, f64), resting: Option<f64>) ->
     found
 }
 
+/// Variables that repeat together: V̇E, which does, and the others that do.
+fn together(means: &Means, exercise: (f64, f64)) -> usize {
+    let repeats = |q: &&Quantity| periodicity(&relative_swing(means, **q, exercise)) >= PERIODIC;
+    1 + WITH_IT.iter().filter(repeats).count()
+}
+
+/// (10-s mean − 120-s mean) ÷ 120-s mean, each second; empty without the quantity.
+fn relative_swing(means: &Means, quantity: Quantity, exercise: (f64, f64)) -> Vec<f64> {
+    let here = means.each_second(quantity, SMOOTH_S, exercise);
+    let trend = means.each_second(quantity, TREND_S, exercise);
+    let swing = |(x, m): (&Option<f64>, &Option<f64>)| {
+        x.zip(*m).filter(|(_, m)| *m > 0.0).map_or(0.0, |(x, m)| x / m - 1.0)
+    };
+    here.iter().zip(&trend).map(swing).collect()
+}
+
 /// Looks over warm-up and increments of a recording.
 pub(crate) fn look(breaths: &Breaths, recording: &Recording, phases: &Phases) -> Oscillation {
     let Some(ramp) = phases.ramp() else { return Oscillation::default() };
@@ -93,7 +116,13 @@ pub(crate) fn look(breaths: &Breaths, recording: &Recording, phases: &Phases) ->
     let from = phases.window(Phase::WarmUp).map_or(ramp.0, |w| w.0);
     let rest = phases.window(Phase::Rest).map(|(from, to)| ((to - 60.0).max(from), to));
     let resting = rest.and_then(|w| means.over(Quantity::Ve, w));
-    find(&means, (from, ramp.1), resting)
+    let mut found = find(&means, (from, ramp.1), resting);
+    if found.sun {
+        let gas = [Quantity::Vo2, Quantity::Vco2, Quantity::Peto2, Quantity::Petco2];
+        let means = Means::new(&breaths.only(&gas), &recording.gaps);
+        found.together = together(&means, (from, ramp.1));
+    }
+    found
 }
 
 /// Highest autocorrelation at lags of 40–140 s of a series on a 1-s grid.
@@ -207,6 +236,7 @@ pub(crate) fn derive(stage: &mut Stage<'_>, found: &Oscillation) {
     let others = [
         reading(id, "ben-dov-1992", given(Some(found.ben_dov))).alternative(),
         reading(id, "leite-2003", given(Some(found.leite))).alternative(),
+        reading(id, "sun-2010", given(Some(found.sun && found.together >= 3))).alternative(),
         reading(id, "sun-2010-ventilation", given(Some(found.sun))).alternative(),
     ];
     stage.push(primary);
@@ -233,6 +263,23 @@ mod tests {
         assert!(found.cycles.len() >= 9, "{:?}", found.cycles.len());
         assert!(found.cycles.iter().all(|c| (c.length() - 60.0).abs() <= 4.0));
         assert!(found.aha == Some(true) && found.leite && found.sun && found.present());
+    }
+
+    #[test]
+    fn three_variables_that_swing_together_fulfil_sun() {
+        let end: Vec<f64> = (1..=360).map(|k| 2.0 * f64::from(k)).collect();
+        let triangle = |t: f64| 4.0 * (t / 60.0 - (t / 60.0 + 0.5).floor()).abs() - 1.0;
+        let wave = |level: f64, half: f64| {
+            end.iter().map(|t| Some(level + half * triangle(*t))).collect::<Vec<_>>()
+        };
+        let columns = |vo2: f64, vco2: f64| {
+            let columns =
+                [(Quantity::Vo2, wave(1500.0, vo2)), (Quantity::Vco2, wave(1500.0, vco2))];
+            Means::new(&Breaths::new(end.clone(), None, columns.into()).unwrap(), &[])
+        };
+        // RER swings too, since V̇CO₂ swings more.
+        assert_eq!(together(&columns(150.0, 200.0), (0.0, 720.0)), 4);
+        assert_eq!(together(&columns(0.0, 0.0), (0.0, 720.0)), 1);
     }
 
     #[test]

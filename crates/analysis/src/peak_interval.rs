@@ -12,8 +12,8 @@ use crate::stage::Stage;
 const BIAS: f64 = 0.9;
 const BIAS_THETA: f64 = 1.6;
 /// Calibrated factor, and the one for exports averaged over a few breaths.
-const F: f64 = 0.68;
-const F_PRE_SMOOTHED: f64 = 0.80;
+const F: f64 = 0.72;
+const F_PRE_SMOOTHED: f64 = 0.84;
 /// The only window for which the correction was calibrated, s.
 const WINDOW_S: f64 = 30.0;
 
@@ -85,7 +85,7 @@ mod tests {
         // s30 = 40, rise 200 mL/min per min = 3.333 per s: θ = 100/40 = 2.5, bias 36/5 = 7.2.
         let (bias, half) = bias_and_half(40.0, 200.0 / 60.0, false).unwrap();
         assert!((bias - 7.2).abs() < 1e-9);
-        assert!((half - 1.645 * 0.68 * 40.0).abs() < 1e-9);
+        assert!((half - 1.645 * 0.72 * 40.0).abs() < 1e-9);
         // Without a rise every window competes.
         assert_eq!(bias_and_half(40.0, 0.0, false).unwrap().0, 36.0);
         assert_eq!(bias_and_half(0.0, 1.0, false), None);

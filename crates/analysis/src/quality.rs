@@ -5,6 +5,7 @@
 
 use crate::decisions::Phase;
 use crate::note::{Arg, Note};
+use crate::protocol;
 use crate::quantity::Quantity as Q;
 use crate::regression;
 use crate::results::At;
@@ -57,7 +58,8 @@ pub(crate) fn derive(stage: &mut Stage<'_>) {
     leak(stage, &mut found);
     end_tidal(stage, &mut found);
     saturation(stage, &mut found);
-    protocol(stage, &mut found);
+    length(stage, &mut found);
+    protocol::look(stage, &mut found);
     gaps(stage, &mut found);
     let loud = found.iter().filter(|f| f.severity >= Severity::Caution).map(|f| f.note.clone());
     stage.results.doubts.extend(loud);
@@ -251,7 +253,7 @@ fn saturation(stage: &Stage<'_>, found: &mut Vec<Finding>) {
 
 /// Length of the increments: 8–12 min ideal (Radtke et al., Eur Respir Rev 2019), marked under 6
 /// and over 15.
-fn protocol(stage: &Stage<'_>, found: &mut Vec<Finding>) {
+fn length(stage: &Stage<'_>, found: &mut Vec<Finding>) {
     let Some((from, to)) = stage.results.phases.ramp() else { return };
     let minutes = (to - from) / 60.0;
     if !(6.0..=15.0).contains(&minutes) {

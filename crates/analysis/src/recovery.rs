@@ -12,7 +12,7 @@ use crate::stage::Stage;
 use crate::unit::Unit;
 
 /// Calibrated factor of the HR recovery.
-const F: f64 = 1.37;
+const F: f64 = 1.31;
 const BIN_S: f64 = 5.0;
 /// Fewest HR values in each window.
 const FEWEST: usize = 2;

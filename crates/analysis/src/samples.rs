@@ -40,6 +40,11 @@ pub(crate) fn derive(stage: &mut Stage<'_>) {
     let capacity = inspiratory_capacity(stage, rest);
     stage.push(lactate);
     stage.push(capacity);
+    for (at, window) in [(At::Rest, rest), (At::Peak, peak)] {
+        let [expiratory, inspiratory] = lung_volumes(stage, at, window);
+        stage.push(expiratory);
+        stage.push(inspiratory);
+    }
 }
 
 /// The sample nearest to `window`.
@@ -152,17 +157,47 @@ fn lactate(stage: &Stage<'_>) -> Outcome {
     given("lactate-highest", At::Test, "highest-sample", Unit::MmolPerL, value)
 }
 
+/// Manoeuvres as (s, L): the last at rest or in warm-up, and the last under load.
+fn manoeuvres(stage: &Stage<'_>, rest: Option<(f64, f64)>) -> [Option<(f64, f64)>; 2] {
+    let Some(ramp) = stage.results.phases.ramp() else { return [None, None] };
+    let before = rest.map_or(ramp.0, |r| r.1);
+    let mut at = stage.facts.events.iter().filter_map(|e| match e.kind {
+        EventKind::IcManoeuvre(Some(x)) => Some((e.t_s, x)),
+        _ => None,
+    });
+    let resting = at.clone().rfind(|(t, _)| *t <= before);
+    [resting, at.rfind(|(t, _)| *t > ramp.0 && *t <= ramp.1 + 15.0)]
+}
+
+/// End-expiratory lung volume, TLC − IC, and end-inspiratory, that plus the tidal volume of the 30 s
+/// before the manoeuvre.
+fn lung_volumes(stage: &Stage<'_>, at: At, rest: Option<(f64, f64)>) -> [Outcome; 2] {
+    let found = || {
+        let tlc = stage.facts.subject.tlc_l.filter(|x| *x > 0.0);
+        let tlc = tlc.ok_or_else(|| Note::missing_fact("tlc"))?;
+        let [resting, loaded] = manoeuvres(stage, rest.filter(|_| at == At::Rest));
+        let taken = if at == At::Rest { resting } else { loaded };
+        let (t, ic) = taken.ok_or_else(|| Note::missing_fact("ic-manoeuvre"))?;
+        if ic >= tlc {
+            return Err(Note::new("ic-above-tlc"));
+        }
+        Ok((tlc - ic, t))
+    };
+    let expiratory = found().map(|(volume, t)| (volume, (t, t)));
+    let inspiratory = found().and_then(|(volume, t)| {
+        let before = (t - 35.0, t - 5.0);
+        Ok((volume + mean(stage, Quantity::Vt, before)?, before))
+    });
+    [
+        given("eelv", at, "tlc-less-ic", Unit::Litre, expiratory),
+        given("eilv", at, "eelv-plus-vt", Unit::Litre, inspiratory),
+    ]
+}
+
 /// Inspiratory capacity of the last manoeuvre under load less that at rest, L.
 fn inspiratory_capacity(stage: &Stage<'_>, rest: Option<(f64, f64)>) -> Outcome {
     let value = || {
-        let ramp = stage.results.phases.ramp().ok_or_else(|| stage.no_ramp())?;
-        let before = rest.map_or(ramp.0, |r| r.1);
-        let mut at = stage.facts.events.iter().filter_map(|e| match e.kind {
-            EventKind::IcManoeuvre(Some(x)) => Some((e.t_s, x)),
-            _ => None,
-        });
-        let resting = at.clone().rfind(|(t, _)| *t <= before);
-        let loaded = at.rfind(|(t, _)| *t > ramp.0 && *t <= ramp.1 + 15.0);
+        let [resting, loaded] = manoeuvres(stage, rest);
         let (rest, load) = resting.zip(loaded).ok_or_else(|| Note::missing_fact("ic-manoeuvre"))?;
         Ok((load.1 - rest.1, (rest.0, load.0)))
     };

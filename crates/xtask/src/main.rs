@@ -14,6 +14,8 @@ const USAGE: &str = "cargo xtask VERB
           how many changes of the engine break a test
   references noise|coverage|errors [--seeds A..B]
           simulations and data behind the calibrated figures
+  references score TABLE TRUTH [FACTS] | DIR…
+          the engine against outside tables with a truth file (rampcrest-truth/1)
   sheet   contact sheets of all views below target/sheet
   tidy    rules of the tree: file sizes, banned words, stubs";
 

@@ -111,7 +111,7 @@ pub(crate) fn work_not_as_set(stage: &Stage<'_>, late: (f64, f64)) -> Vec<Note> 
 }
 
 /// Load falls, or a continuous ramp stops rising, inside the late window.
-fn load_fades(load: &Trace, late: (f64, f64), shape: Option<LoadShape>) -> bool {
+pub(crate) fn load_fades(load: &Trace, late: (f64, f64), shape: Option<LoadShape>) -> bool {
     let Some(mut highest) = load.at(late.0) else { return false };
     let start = highest;
     let from = load.t_s.partition_point(|t| *t <= late.0);

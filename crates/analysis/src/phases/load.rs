@@ -29,6 +29,18 @@ pub(crate) enum LoadReading {
     Other,
 }
 
+impl LoadReading {
+    /// The same times, without saying that a load rose linearly.
+    pub fn without_shape(self) -> Self {
+        match self {
+            Self::Incremental { warm_up_s, ramp_s, end_s, .. } => {
+                Self::Incremental { warm_up_s, ramp_s, end_s, shape: LoadShape::Unknown }
+            }
+            other => other,
+        }
+    }
+}
+
 /// A change of the load: from `t_s` on, `w` is held.
 #[derive(Clone, Copy, Debug, PartialEq)]
 struct Level {

@@ -7,8 +7,9 @@ mod response;
 use crate::decisions::{Phase, PhaseStarts};
 use crate::note::Note;
 use crate::quantity::Quantity;
-use crate::recording::Recording;
+use crate::recording::{Recording, Trace};
 use crate::results::{LoadShape, Origin, PhaseSpan, Phases};
+use crate::unit::Unit;
 
 use load::LoadReading;
 
@@ -42,7 +43,14 @@ fn propose(recording: &Recording, span: (f64, f64)) -> Proposal {
         doubts: vec![Note::new(code)],
         ..Proposal::default()
     };
-    match load::read(&recording.load) {
+    let reading = match belt(recording) {
+        Some(belt) => {
+            proposal.doubts.push(Note::new("phases-from-belt"));
+            load::read(&belt).without_shape()
+        }
+        None => load::read(&recording.load),
+    };
+    match reading {
         LoadReading::Constant => return other(LoadShape::Constant, "constant-load-test"),
         LoadReading::Interval => return other(LoadShape::Other, "interval-test"),
         LoadReading::Repeated => return other(LoadShape::Other, "repeated-test"),
@@ -77,6 +85,25 @@ fn propose(recording: &Recording, span: (f64, f64)) -> Proposal {
     proposal
 }
 
+/// Demand of walking on the belt, where the file holds speed but no load: 10·(0.1 v + 1.8 v·grade)
+/// with v in m/min, that is mL/kg/min over rest times ten (walking equation of the ACSM), so that it
+/// has the size of a load in W.
+fn belt(recording: &Recording) -> Option<Trace> {
+    let breaths = &recording.breaths;
+    if !recording.load.t_s.is_empty() || !breaths.has(Quantity::Speed) {
+        return None;
+    }
+    let speed = breaths.column(Quantity::Speed)?;
+    let factor = Quantity::Speed.unit().convert(1.0, Unit::MPerMin)?;
+    let rows = (0..breaths.len()).filter_map(|i| {
+        let m_per_min = factor * speed[i]?;
+        let grade = breaths.value(Quantity::Grade, i).unwrap_or(0.0) / 100.0;
+        Some((breaths.mid_s(i), 10.0 * m_per_min * (0.1 + 1.8 * grade)))
+    });
+    let (t_s, value) = rows.unzip();
+    Some(Trace { t_s, value })
+}
+
 /// Start of unloaded pedalling: by cadence, else by the step of V̇O₂.
 fn warm_up_without_load(recording: &Recording, before: (f64, f64)) -> Option<Start> {
     let breaths = &recording.breaths;
@@ -88,7 +115,9 @@ fn warm_up_without_load(recording: &Recording, before: (f64, f64)) -> Option<Sta
         let t_s = breaths.end_s()[i] - breaths.duration_s()[i];
         return (t_s > before.0 && t_s < before.1).then(|| (t_s, Note::new("phase-from-cadence")));
     }
-    response::step(breaths, before).map(|t| (t, Note::new("phase-from-vo2-step")))
+    let step = response::step(breaths, before)?;
+    let onset = response::onset(breaths, before, step);
+    Some((onset, Note::new("phase-from-vo2-step")))
 }
 
 /// Joins proposal and reader: order kept, each phase at least [`SHORTEST_PHASE_S`].
@@ -157,7 +186,6 @@ fn make_room(starts: &mut Vec<(Phase, f64, Origin)>, span: (f64, f64), doubts: &
 mod tests {
     use super::*;
     use crate::breaths::Breaths;
-    use crate::recording::Trace;
 
     /// Rest 180 s at 0 W, 50 W to 360 s, then 15 W/min in steps to 960 s, recovery to 1140 s.
     fn stepped() -> Recording {
@@ -211,6 +239,39 @@ mod tests {
             assert_eq!(pair[0].to_s, pair[1].from_s);
             assert!(pair[0].to_s - pair[0].from_s >= SHORTEST_PHASE_S);
         }
+    }
+
+    #[test]
+    fn a_treadmill_is_read_from_speed_and_grade() {
+        // 3 min standing, 2 min at 3 km/h, then stages of 3 min (km/h, %), 3 min standing. The slow
+        // walk is the first stage.
+        let stages = [(3.0, 4.0), (4.0, 6.0), (5.0, 8.0), (6.0, 10.0), (7.0, 12.0)];
+        let at = |t: f64| match t {
+            t if t < 180.0 => (0.0, 0.0),
+            t if t < 300.0 => (3.0, 0.0),
+            t if t < 1200.0 => stages[((t - 300.0) / 180.0) as usize],
+            _ => (0.0, 0.0),
+        };
+        let end: Vec<f64> = (1..=460).map(|k| 3.0 * f64::from(k)).collect();
+        let mid = |t: &f64| at(t - 1.5);
+        let columns = [
+            (Quantity::Speed, end.iter().map(|t| Some(mid(t).0)).collect()),
+            (Quantity::Grade, end.iter().map(|t| Some(mid(t).1)).collect()),
+            (Quantity::Vo2, end.iter().map(|t| Some(300.0 + t)).collect()),
+        ];
+        let breaths = Breaths::new(end.clone(), None, columns.into()).unwrap();
+        let recording = Recording { breaths, ..Recording::default() };
+        let (phases, doubts) = derive(&recording, &PhaseStarts::default());
+        let near = |found: f64, true_s: f64| assert!((found - true_s).abs() <= 3.0, "{phases:?}");
+        let found = starts(&phases);
+        let expected = [(Phase::Rest, 0.0), (Phase::Ramp, 180.0), (Phase::Recovery, 1200.0)];
+        assert_eq!(found.len(), expected.len(), "{found:?}");
+        for ((phase, found), (true_phase, true_s)) in found.iter().zip(expected) {
+            assert_eq!(*phase, true_phase);
+            near(*found, true_s);
+        }
+        assert_eq!(phases.load_shape, Some(LoadShape::Unknown));
+        assert!(doubts.iter().any(|d| d.code == "phases-from-belt"));
     }
 
     #[test]

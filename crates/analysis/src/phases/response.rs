@@ -93,9 +93,59 @@ pub(super) fn step(breaths: &Breaths, window: (f64, f64)) -> Option<f64> {
     best.map(|(_, t)| t)
 }
 
+/// Time constant of V̇O₂ after a step of moderate work, s (common practice).
+const TAU_S: f64 = 30.0;
+/// How far before and after the two-mean step the onset is looked for, s.
+const BACK_S: f64 = 45.0;
+const AHEAD_S: f64 = 10.0;
+
+/// Onset of the step near `step_s`: two means split a gradual rise too late, an exponential rise does
+/// not. Start of the best of `y = a + b·(1 − exp(−(t − onset)/τ))₊`, to the nearest end of a breath.
+pub(super) fn onset(breaths: &Breaths, window: (f64, f64), step_s: f64) -> f64 {
+    let Some(vo2) = breaths.column(Quantity::Vo2) else { return step_s };
+    let inside: Vec<(f64, f64, f64)> = (0..breaths.len())
+        .filter(|i| breaths.end_s()[*i] <= window.1)
+        .filter_map(|i| vo2[i].map(|v| (breaths.mid_s(i), breaths.duration_s()[i], v)))
+        .collect();
+    let (time, total) = inside.iter().fold((0.0, 0.0), |(t, s), (_, d, v)| (t + d, s + d * v));
+    let mean = total / time;
+    let gain = |onset: f64| {
+        let shape = |t: f64| 1.0 - libm::exp(-(t - onset).max(0.0) / TAU_S);
+        let middle = inside.iter().map(|(t, d, _)| d * shape(*t)).sum::<f64>() / time;
+        let (mut xx, mut xy) = (0.0, 0.0);
+        for (t, d, v) in &inside {
+            let x = shape(*t) - middle;
+            xx += d * x * x;
+            xy += d * x * (v - mean);
+        }
+        if xy > 0.0 && xx > 0.0 { xy * xy / xx } else { 0.0 }
+    };
+    let candidates = breaths.end_s().iter().copied();
+    let near = candidates.filter(|t| step_s - BACK_S <= *t && *t <= step_s + AHEAD_S);
+    near.map(|t| (gain(t), t)).max_by(|a, b| a.0.total_cmp(&b.0)).map_or(step_s, |(_, t)| t)
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn an_exponential_rise_is_dated_at_its_onset() {
+        // 280 mL/min to 150 s, then towards 560 with 38 s: not the time constant of the procedure.
+        let end: Vec<f64> = (1..=100).map(|k| 3.0 * f64::from(k)).collect();
+        let wobble = |k: usize| 12.0 * [1.0, -0.5, -1.0, 0.5, 0.0][k % 5];
+        let vo2 = end.iter().enumerate().map(|(k, t)| {
+            let mid: f64 = t - 1.5;
+            let rise = 280.0 * (1.0 - libm::exp(-(mid - 150.0).max(0.0) / 38.0));
+            Some(280.0 + rise + wobble(k))
+        });
+        let breaths = Breaths::new(end.clone(), None, [(Quantity::Vo2, vo2.collect())].into());
+        let breaths = breaths.unwrap();
+        let by_means = step(&breaths, (0.0, 300.0)).unwrap();
+        let found = onset(&breaths, (0.0, 300.0), by_means);
+        assert!(by_means - 150.0 > 12.0, "{by_means}");
+        assert!((found - 150.0).abs() <= 6.0, "{found}");
+    }
 
     #[test]
     fn phases_are_found_in_the_response() {

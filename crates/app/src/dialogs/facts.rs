@@ -35,6 +35,7 @@ const FACTS: &[(&str, &str, Ask)] = &[
         Ask::Choice(&[("g/L", "g/L"), ("g/dL", "g/dL"), ("mmol/L", "mmol/L")]),
     ),
     ("subject.fev1_l", "FEV₁, L", Ask::Number),
+    ("subject.tlc_l", "Total lung capacity, L", Ask::Number),
     (
         "test.rhythm",
         "Rhythm",

@@ -18,6 +18,7 @@ fn ranges(file: &FactsFile) -> Vec<(&'static str, Option<f64>, f64, f64)> {
         ("subject.mass_kg", s.mass_kg, 8.0, 400.0),
         ("subject.cohb", s.cohb, 0.0, 0.6),
         ("subject.fev1_l", s.fev1_l, 0.1, 10.0),
+        ("subject.tlc_l", s.tlc_l, 0.5, 15.0),
         ("subject.mvv_l_min", s.mvv_l_min, 5.0, 400.0),
         ("test.fio2", t.fio2, 0.08, 1.0),
         ("test.rate_slowing_drug.last_dose_h", drug.and_then(|d| d.last_dose_h), 0.0, 1000.0),

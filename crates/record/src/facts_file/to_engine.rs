@@ -28,6 +28,7 @@ fn subject(s: &Subject) -> engine::Subject {
         hb: s.hb.as_ref().and_then(haemoglobin),
         cohb: s.cohb,
         fev1_l: s.fev1_l,
+        tlc_l: s.tlc_l,
         mvv_l_min: s.mvv_l_min,
     }
 }

@@ -77,6 +77,8 @@ fields! {
         cohb: f64,
         /// FEV₁ before the test, L.
         fev1_l: f64,
+        /// Total lung capacity, L.
+        tlc_l: f64,
         /// Measured maximal voluntary ventilation, L/min.
         mvv_l_min: f64,
     }

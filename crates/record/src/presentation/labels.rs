@@ -140,6 +140,12 @@ const LABELS: &[(&str, &str)] = &[
     ("effort-lactate", "Effort criterion, lactate"),
     ("vo2-plateau", "V̇O₂ plateau"),
     ("lactate-highest", "Lactate, highest"),
+    ("load-rise", "Rise of the load"),
+    ("load-step", "Step of the load"),
+    ("load-step-length", "Length of a step"),
+    ("load-deviation", "Load off its protocol"),
+    ("vt-irregularity", "Irregularity of VT"),
+    ("ve-irregularity", "Irregularity of V̇E"),
 ];
 
 /// Labels to which the place is added.
@@ -150,6 +156,8 @@ const PLACED: &[(&str, &str)] = &[
     ("pa-a-o2", "P(A–a)O₂"),
     ("pa-et-co2", "P(a–ET)CO₂"),
     ("ic-change", "Change of inspiratory capacity"),
+    ("eelv", "End-expiratory lung volume"),
+    ("eilv", "End-inspiratory lung volume"),
 ];
 
 /// The label of `id` at `at`.

@@ -1,5 +1,6 @@
 //! `cargo xtask references noise|coverage|errors [--seeds A..B]`: simulations and data behind the
-//! calibrated figures. Tables go to standard output and to `assets/references`.
+//! calibrated figures. Tables go to standard output and to `assets/references`. `references score`
+//! compares the engine with tables from outside whose truth is known.
 
 pub mod bends;
 pub mod binomial;
@@ -7,6 +8,7 @@ pub mod coverage;
 pub mod errors;
 pub mod noise;
 mod pool;
+pub mod score;
 
 use std::fs;
 use std::ops::Range;
@@ -18,8 +20,13 @@ const REPORTED_FROM: u64 = 10_000;
 /// Runs `references` with the arguments after the verb.
 #[must_use]
 pub fn run(args: &[String]) -> ExitCode {
+    if let [what, paths @ ..] = args
+        && what == "score"
+    {
+        return score::run(paths);
+    }
     let Some((what, seeds)) = parse(args) else {
-        eprintln!("cargo xtask references noise|coverage|errors [--seeds A..B]");
+        eprintln!("cargo xtask references noise|coverage|errors [--seeds A..B] | score PATH…");
         return ExitCode::from(2);
     };
     let tuning = seeds.start < REPORTED_FROM;
@@ -55,9 +62,10 @@ pub fn run(args: &[String]) -> ExitCode {
     }
 }
 
-/// The table asked for, and the seeds (reported on 10,000 and above when none are given).
+/// The table asked for, and the seeds (ones that served for no tuning when none are given).
 fn parse(args: &[String]) -> Option<(&str, Range<u64>)> {
     match args {
+        [what] if what == "coverage" => Some((what, 20_000..24_000)),
         [what] => Some((what, 10_000..12_000)),
         [what, flag, seeds] if flag == "--seeds" => {
             let (a, b) = seeds.split_once("..")?;
@@ -75,7 +83,8 @@ mod tests {
     #[test]
     fn seeds_are_parsed_and_refused() {
         let args = |s: &str| s.split(' ').map(String::from).collect::<Vec<_>>();
-        assert_eq!(parse(&args("errors")), Some(("errors", 10_000..12_000)));
+        assert_eq!(parse(&args("errors")), Some(("errors", 20_000..24_000)));
+        assert_eq!(parse(&args("coverage")), Some(("coverage", 20_000..24_000)));
         assert_eq!(parse(&args("errors --seeds 5..9")), Some(("errors", 5..9)));
         assert_eq!(parse(&args("errors --seeds 9..5")), None);
         assert_eq!(parse(&args("errors --seeds x")), None);
