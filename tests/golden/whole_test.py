@@ -18,7 +18,7 @@ VT1, VT2 = 622.0, 834.0
 AGE, MASS, FEV1, MVV_FACTOR = 34.0, 64.0, 3.4, 40.0
 SAMPLES = {"rest": (150.0, 96.0, 38.0), "peak": (980.0, 101.0, 36.0)}   # s, PaO2, PaCO2
 Z, K, MAD = 1.645, 4.0, 1.4826
-F = {"ve-vco2-slope-to-vt2": 1.50, "ve-vco2-slope-full": 1.47, "oues": 1.28, "dvo2-dwr": 0.95, "hr": 1.37, "peak": 0.68}
+F = {"ve-vco2-slope-to-vt2": 1.57, "ve-vco2-slope-full": 1.55, "oues": 1.33, "dvo2-dwr": 0.95, "hr": 1.31, "peak": 0.72}
 NAMES = ["t", "load", "vo2", "vco2", "ve", "vt", "fr", "hr", "peto2", "petco2", "spo2"]
 
 
