@@ -51,7 +51,8 @@ pub(crate) fn derive(stage: &mut Stage<'_>) {
         LoadShape::Steps { step_w, length_s } => Ok(part(step_w, length_s)),
         _ => Err(Note::new("load-without-steps")),
     };
-    let rise = rebuilt.clone().and_then(|_| stage.ramp_rate().ok_or_else(|| stage.no_ramp()));
+    let rate = || stage.ramp_rate().filter(|r| r.is_finite()).ok_or_else(|| stage.no_ramp());
+    let rise = rebuilt.clone().and_then(|_| rate());
     let off = rebuilt.clone().and_then(|r| deviation(stage, &r).ok_or_else(|| stage.no_ramp()));
     let outcomes = [
         given("load-rise", Unit::WattPerMin, rise),

@@ -96,8 +96,9 @@ fn belt(recording: &Recording) -> Option<Trace> {
     let speed = breaths.column(Quantity::Speed)?;
     let factor = Quantity::Speed.unit().convert(1.0, Unit::MPerMin)?;
     let rows = (0..breaths.len()).filter_map(|i| {
-        let m_per_min = factor * speed[i]?;
-        let grade = breaths.value(Quantity::Grade, i).unwrap_or(0.0) / 100.0;
+        let plausible = Quantity::Speed.row().plausible;
+        let m_per_min = factor * speed[i].filter(|v| (plausible.0..=plausible.1).contains(v))?;
+        let grade = breaths.value(Quantity::Grade, i).unwrap_or(0.0).clamp(-10.0, 40.0) / 100.0;
         Some((breaths.mid_s(i), 10.0 * m_per_min * (0.1 + 1.8 * grade)))
     });
     let (t_s, value) = rows.unzip();
