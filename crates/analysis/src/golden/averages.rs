@@ -11,6 +11,7 @@ fn window_means_and_the_highest_agree_with_numpy() {
     let (end, d) = (series.column("end_s"), series.column("d_s"));
     let within = (end[0] - d[0], end[end.len() - 1]);
     let column = series.column("x").into_iter().map(Some).collect();
+    let steps: Vec<(f64, f64)> = end.iter().zip(&d).map(|(e, d)| (e - d, *e)).collect();
     let breaths = Breaths::new(end, Some(d), [(Quantity::Vo2, column)].into()).unwrap();
     let means = Means::new(&breaths, &[]);
     for row in &table.rows {
@@ -23,4 +24,9 @@ fn window_means_and_the_highest_agree_with_numpy() {
     near(found.0, highest, 1e-10);
     let lowest = table.rows.iter().map(|row| row[1]).fold(f64::MAX, f64::min);
     near(means.lowest(Quantity::Vo2, 30.0, (within.0, last)).unwrap().0, lowest, 1e-10);
+    // A breath counts where any part of it lies in the window.
+    for window in [(100.0, 130.0), (within.0, within.1), (steps[9].0, steps[19].1)] {
+        let reach = steps.iter().filter(|(s, e)| *e > window.0 + 1e-9 && *s < window.1 - 1e-9);
+        assert_eq!(means.breaths_in(window), reach.count(), "{window:?}");
+    }
 }

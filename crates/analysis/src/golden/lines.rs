@@ -66,3 +66,11 @@ fn the_normal_distribution_agrees_with_scipy() {
         assert!((found / row[1] - 1.0).abs() < 1e-12, "{found} against {}", row[1]);
     }
 }
+
+#[test]
+fn candidate_knots_are_equally_spaced_in_time() {
+    let times = hinge::candidate_times(100.0, 340.0);
+    // 121 of them, 2 s apart.
+    let expected: Vec<f64> = (0..121).map(|k| 100.0 + 2.0 * f64::from(k)).collect();
+    all_near(&times, &expected, 1e-14);
+}

@@ -250,3 +250,37 @@ pub(super) fn body_input(which: Input, person: &Person) -> Result<f64, Note> {
         Input::Sex | Input::Mode => Err(Note::new("set-lacks-code")),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn limits_of_every_form_by_hand() {
+        // 2000 ∓ 1.645·200 = 1671 and 2329.
+        let (low, high, see) = limits(Limits::See(200.0), 2000.0);
+        assert!((low.unwrap() - 1671.0).abs() < 1e-9 && (high.unwrap() - 2329.0).abs() < 1e-9);
+        assert_eq!(see, Some(200.0));
+        let share = limits(Limits::Share { low: Some(0.75), high: Some(1.25) }, 2000.0);
+        assert_eq!(share, (Some(1500.0), Some(2500.0), None));
+        let offset = limits(Limits::Offset { low: Some(-300.0), high: Some(400.0) }, 2000.0);
+        assert_eq!(offset, (Some(1700.0), Some(2400.0), None));
+        let table = limits(Limits::Table { low: Some(1400.0), high: None }, 2000.0);
+        assert_eq!(table, (Some(1400.0), None, None));
+        assert_eq!(limits(Limits::NotPublished, 2000.0), (None, None, None));
+    }
+
+    #[test]
+    fn a_standard_score_needs_a_published_error() {
+        let of = |see| Prediction {
+            value: 2000.0,
+            low: None,
+            high: None,
+            see,
+            fits: Vec::new(),
+            doubts: Vec::new(),
+        };
+        assert_eq!(of(Some(200.0)).z(1500.0), Some(-2.5));
+        assert_eq!((of(Some(0.0)).z(1500.0), of(None).z(1500.0)), (None, None));
+    }
+}

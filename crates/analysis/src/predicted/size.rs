@@ -66,3 +66,26 @@ pub(super) fn dead_space_bias(stage: &Stage<'_>) -> Note {
         _ => Note::new("nadir-includes-dead-space-unknown"),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn mass_index_and_predicted_mass_by_hand() {
+        // 81 kg at 180 cm: 81/3.24 = 25. Men 0.79·180 − 60.7 = 81.5, women 0.65·160 − 42.8 = 61.2.
+        let man = Person {
+            sex: Some(Sex::Male),
+            height_cm: Some(180.0),
+            mass_kg: Some(81.0),
+            ..Person::default()
+        };
+        assert!((bmi(&man).unwrap() - 25.0).abs() < 1e-12);
+        assert!((predicted_mass(&man).unwrap() - 81.5).abs() < 1e-12);
+        let woman = Person { sex: Some(Sex::Female), height_cm: Some(160.0), ..man };
+        assert!((predicted_mass(&woman).unwrap() - 61.2).abs() < 1e-12);
+        assert_eq!(bmi(&Person { height_cm: Some(0.0), ..man }), None);
+        // 0.79·90 − 60.7 = 10.4 kg is nobody's mass.
+        assert_eq!(predicted_mass(&Person { height_cm: Some(90.0), ..man }), None);
+    }
+}
