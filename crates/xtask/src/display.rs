@@ -14,6 +14,9 @@ use x11rb::wrapper::ConnectionExt as _;
 /// Anything may go wrong on a display, and nothing can be done about it.
 pub type Result<T> = std::result::Result<T, Box<dyn Error>>;
 
+/// A machine may be busy with other things for so long.
+const PATIENCE: Duration = Duration::from_secs(180);
+
 /// A virtual display, ended with this value.
 pub struct Display {
     server: Child,
@@ -175,11 +178,11 @@ impl Display {
     /// Waits until the screen stands still for `calm`, and returns it.
     ///
     /// # Errors
-    /// It never does within a minute, or the display does not answer.
+    /// It never does within three minutes, or the display does not answer.
     pub fn still(&self, calm: Duration) -> Result<Vec<u8>> {
         let start = Instant::now();
         let mut before = self.picture()?;
-        while start.elapsed() < Duration::from_secs(60) {
+        while start.elapsed() < PATIENCE {
             std::thread::sleep(calm);
             let now = self.picture()?;
             if now == before {
@@ -193,7 +196,7 @@ impl Display {
     /// Waits for the program's window and returns it.
     ///
     /// # Errors
-    /// None appears within a minute.
+    /// None appears in three minutes.
     pub fn window(&self) -> Result<Window> {
         let mut found = None;
         self.wait("the window", |display| {
@@ -263,7 +266,7 @@ impl Display {
     /// Asks the window manager to minimise `window`, or to show it again.
     ///
     /// # Errors
-    /// It does not within a minute, or the display does not answer.
+    /// It does not within three minutes, or the display does not answer.
     pub fn minimise(&self, window: Window, away: bool) -> Result<()> {
         if away {
             // Iconic state (3), as the Inter-Client Communication Conventions Manual has it.
@@ -281,7 +284,7 @@ impl Display {
 
     fn wait(&self, what: &str, mut done: impl FnMut(&Self) -> Result<bool>) -> Result<()> {
         let start = Instant::now();
-        while start.elapsed() < Duration::from_secs(60) {
+        while start.elapsed() < PATIENCE {
             if done(self)? {
                 return Ok(());
             }
