@@ -81,7 +81,7 @@ fn shell(
         drag.times(&display, long_drag, Duration::ZERO)?;
         let growth = resident_mb(&program) - before;
         let what = format!("{name}: growth over a drag of {long_drag} frames");
-        tell(&Figure::at_most(what, growth, "MB", 2.0));
+        tell(&Figure::at_most(what, growth, "MB", 5.0));
         let each = ms(start.elapsed()) / long_drag as f64;
         tell(&Figure::free(format!("{name}: period of those frames, mean"), each, "ms"));
     }
