@@ -5,9 +5,12 @@ use std::hint::black_box;
 use analysis::breaths::Breaths;
 use analysis::decisions::Decisions;
 use analysis::facts::{Facts, Mode, Rhythm};
+use analysis::model::course_sim::{Design, Null, simulate};
 use analysis::model::plan::Plan;
 use analysis::model::test::generate;
+use analysis::o2_pulse::{CourseInput, classify};
 use analysis::quantity::Quantity;
+use analysis::reasoning::robustness::robustness;
 use analysis::recording::{Recording, Trace};
 use analysis::settings::Settings;
 use criterion::{BenchmarkId, Criterion, Throughput, criterion_group, criterion_main};
@@ -84,5 +87,27 @@ fn whole_test(c: &mut Criterion) {
     group.finish();
 }
 
-criterion_group!(benches, whole_test, length);
+/// The course alone, and the strip of 27 derivations.
+fn circulation(c: &mut Criterion) {
+    let ramp = simulate(&Design::normal(Null::Matched, 12.0), 1);
+    let input = CourseInput {
+        t_s: &ramp.t_s,
+        vo2: &ramp.vo2,
+        hr: &ramp.hr,
+        load: &ramp.load,
+        ramp_start_s: ramp.ramp_start_s,
+        load_end_s: ramp.load_end_s,
+    };
+    let mut group = c.benchmark_group("circulation");
+    group.bench_function("course of a 12-min ramp", |b| b.iter(|| classify(black_box(&input))));
+    let (recording, _) = generate(&Plan::healthy(1));
+    let (facts, decisions, settings) = (facts(), Decisions::default(), Settings::default());
+    group.sample_size(20);
+    group.bench_function("robustness", |b| {
+        b.iter(|| robustness(black_box(&recording), &facts, &decisions, &settings));
+    });
+    group.finish();
+}
+
+criterion_group!(benches, whole_test, length, circulation);
 criterion_main!(benches);

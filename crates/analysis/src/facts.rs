@@ -230,6 +230,8 @@ pub struct TestFacts {
     pub spo2_confirmed: Option<bool>,
     /// Perceived breathlessness and legs at the end, as numbers, with the scale's top.
     pub borg: Option<Borg>,
+    /// The person's own earlier or off-drug test.
+    pub own_test: Option<OwnTest>,
     /// Recovery posture and activity; `None` = not stated.
     pub recovery_mode: Option<RecoveryMode>,
 }
@@ -243,6 +245,15 @@ pub struct Borg {
     pub breathlessness: Option<f64>,
     /// Legs.
     pub legs: Option<f64>,
+}
+
+/// The person's own earlier or off-drug test, as two instants of it: V̇O₂ (mL/min) and HR (/min).
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct OwnTest {
+    /// At a low load.
+    pub low: (f64, f64),
+    /// At its peak.
+    pub peak: (f64, f64),
 }
 
 /// How the person recovered.

@@ -84,6 +84,15 @@ methods! {
     "#-and-#-percent" "Share of predicted peak oxygen uptake: from 40 % within limits, below 33 % low, between them borderline." "40 %: Hansen et al. 1984; 33 %: CanCOLD study";
     "percent-of-predicted-#-#-#" "Mild below 85 %, moderate below 70 %, severe below 50 % of predicted, only where the value is low by every set in range." PRACTICE;
     "hansen-predicted-mass" "Divided by the mass predicted from height (men 0.79 H − 60.7, women 0.65 H − 42.8 kg)." "Hansen, Sue and Wasserman 1984";
+    "joint-bend-score" "Oxygen uptake and heart rate in 10-s bins, fitted together on lagged load with a natural bend; the score is the log odds of a late levelling against such a bend, with the late slope and the test's own bend as covariates." "own procedure; shape after Donne et al. 2024, noise after Chabert et al. 2022, error rates by simulation";
+    "a#" "Extraction closes oxygen pulse = stroke volume × extraction under the named assumption; log-normal propagation." "A1: Stringer, Hansen and Wasserman 1997; A3: Crisafulli 2007; A2: pooled slopes of output on oxygen uptake";
+    "b" "Stroke volume taken as unchanged within 5 %; solves for extraction." PRACTICE;
+    "cautious-inputs" "100 × oxygen pulse ÷ (0.92 × arterial content), every input at the end that lowers it." "the Fick relation";
+    "hb-and-saturation" "1.34 × haemoglobin × saturation, less carboxyhaemoglobin, plus dissolved oxygen." "the content equation; 1.34 mL/g";
+    "rest-to-predicted-peak" "Straight line of heart rate on oxygen uptake from measured rest to the predicted peak." PRACTICE;
+    "own-earlier-test" "Straight line of heart rate on oxygen uptake through two instants of the person's own earlier test, ± 5 per minute between tests." PRACTICE;
+    "ln-saturation" "Change of the logarithm of saturation from rest to the end of the increments." "the content equation";
+    "simultaneous-step" "Sustained simultaneous step of end-tidal carbon dioxide, end-tidal oxygen and RER, then of saturation." "after a series of pulmonary hypertension with shunts shown by echocardiography";
     "weber-janicki-#" "Class of peak oxygen uptake per kg: A above 20, B 16 to 20, C 10 to below 16, D below 10 mL/kg/min." "Weber, Janicki et al., Circulation 1982";
     "arena-#" "Class of the ventilatory slope over all increments: I below 30, II below 36, III below 45, IV from 45." "Arena et al., Circulation 2007";
     "cole-#" "Fall of heart rate in the first minute: at most 12, or above." "Cole et al., N Engl J Med 1999";

@@ -2,9 +2,11 @@
 
 use std::sync::{Arc, LazyLock};
 
+use analysis::decisions::Decisions;
 use analysis::recording::Recording;
 use egui::{Rect, Theme, Ui, pos2};
 use record::facts_file::FactsFile;
+use record::session::Edit;
 
 use crate::background::{Background, Picked};
 use crate::chart::handles::{self, HandleKind};
@@ -17,6 +19,7 @@ use crate::dispatch;
 use crate::document::Document;
 use crate::opening::{self, Reading};
 use crate::preferences::Preferences;
+use crate::robustness::Strip;
 use crate::theme::{self, Tokens};
 use crate::view_state::{Dialog, View, ViewState};
 use crate::{panels, views};
@@ -35,6 +38,8 @@ pub struct App {
     pub view: ViewState,
     /// Taste.
     pub preferences: Preferences,
+    /// How the statements on the circulation hold over defensible choices.
+    pub robustness: Strip,
     /// What runs beside the window.
     pub background: Background,
 }
@@ -67,6 +72,7 @@ impl App {
     pub fn show(&mut self, document: Document) {
         self.document = document;
         self.derived = Derived::default();
+        self.robustness.clear();
         self.view = ViewState { view: self.view.view, ..ViewState::default() };
     }
 
@@ -106,6 +112,9 @@ impl App {
         commands.extend(self.arrivals(ui));
         self.carry_out(ui, commands);
         self.derive(ui);
+        if self.view.view == View::Circulation {
+            self.robustness.update(&self.document, ui.ctx());
+        }
         let commands = self.draw(ui, window);
         self.carry_out(ui, commands);
     }
@@ -126,7 +135,7 @@ impl App {
             recording.breaths.end_s(),
         );
         for interact::Moved::To(kind, t_s) in moved {
-            out.push(dispatch::moved(kind, t_s));
+            out.push(self.moved(kind, t_s));
         }
         if let Some(drag) = self.view.drag.filter(|d| d.kind == HandleKind::Cursor) {
             self.view.cursor_s = Some(drag.t_s);
@@ -160,6 +169,9 @@ impl App {
         let whole = self.document.recording().and_then(|r| r.span_s()).unwrap_or((0.0, 60.0));
         let results = self.derived.shown();
         let mut all = handles::handles(results, &self.document.decisions(), whole);
+        if self.view.view == View::Circulation {
+            all.extend(handles::points(results, &self.document.decisions()));
+        }
         if let Some(drag) = self.view.drag.filter(|d| d.kind != HandleKind::Cursor) {
             for handle in all.iter_mut().filter(|h| h.kind == drag.kind) {
                 handle.t_s = drag.t_s;
@@ -171,13 +183,32 @@ impl App {
 
     /// Brings the results up to date with the session and the handle under way.
     fn derive(&mut self, ui: &Ui) {
-        let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor).map(|d| {
-            let mut decisions = self.document.decisions();
-            d.kind.set(&mut decisions, d.t_s);
-            decisions
-        });
+        let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor);
+        let moving = moving.map(|d| self.decided(d.kind, d.t_s));
         let ctx = ui.ctx().clone();
         self.derived.update(&self.document, moving.as_ref(), move || ctx.request_repaint());
+    }
+
+    /// The decisions with one handle at `t_s`.
+    fn decided(&self, kind: HandleKind, t_s: f64) -> Decisions {
+        let mut decisions = self.document.decisions();
+        if let HandleKind::Point(_) = kind {
+            // The point that does not move stays where it was, proposed or decided.
+            let table = self.derived.committed().fick.table.as_ref();
+            decisions.two_factor_s = decisions.two_factor_s.or(table.map(|t| t.between_s));
+        }
+        kind.set(&mut decisions, t_s);
+        decisions
+    }
+
+    /// The command of a handle that came to rest at `t_s`.
+    fn moved(&self, kind: HandleKind, t_s: f64) -> Command {
+        match (kind, self.decided(kind, t_s).two_factor_s) {
+            (HandleKind::Point(_), Some((from, to))) => {
+                Command::Edit(Edit::SetTwoFactor { from_s: Some(from), to_s: Some(to) })
+            }
+            _ => dispatch::moved(kind, t_s),
+        }
     }
 
     fn carry_out(&mut self, ui: &Ui, commands: Outbox) {
@@ -199,10 +230,10 @@ impl App {
         let mut form = std::mem::take(&mut self.view.form);
         let recording = self.document.recording().unwrap_or(&NO_TEST);
         let moving = self.view.drag.filter(|d| d.moved && d.kind != HandleKind::Cursor);
-        let mut decisions = self.document.decisions();
-        if let Some(drag) = moving {
-            drag.kind.set(&mut decisions, drag.t_s);
-        }
+        let decisions = match moving {
+            Some(drag) => self.decided(drag.kind, drag.t_s),
+            None => self.document.decisions(),
+        };
         let open = self.document.recording().is_some();
         let label = self.document.label();
         let mut cx = Context {
@@ -213,6 +244,8 @@ impl App {
             settings: self.document.settings(),
             results: self.derived.shown(),
             committed: self.derived.committed(),
+            robustness: self.robustness.shown(),
+            robustness_behind: self.robustness.behind(&self.document),
             view: &self.view,
             tokens,
             grid,

@@ -2,6 +2,7 @@
 
 use analysis::decisions::Decisions;
 use analysis::facts::Facts;
+use analysis::reasoning::robustness::Robustness;
 use analysis::recording::Recording;
 use analysis::results::Results;
 use analysis::settings::Settings;
@@ -31,6 +32,10 @@ pub struct Context<'a> {
     pub results: &'a Results,
     /// The committed results.
     pub committed: &'a Results,
+    /// How the statements on the circulation hold over defensible choices, once derived.
+    pub robustness: Option<&'a Robustness>,
+    /// Whether that belongs to an earlier state of the session.
+    pub robustness_behind: bool,
     /// State of the view.
     pub view: &'a ViewState,
     /// Colours.

@@ -18,7 +18,8 @@ pub fn moved(kind: HandleKind, t_s: f64) -> Command {
     match kind {
         HandleKind::Boundary(phase) => Command::Edit(Edit::SetBoundary { phase, t_s }),
         HandleKind::Mark(mark) => Command::Edit(Edit::SetMark { mark, t_s }),
-        HandleKind::Cursor => Command::Cursor(t_s),
+        // Both points change together, which only the window knows.
+        HandleKind::Point(_) | HandleKind::Cursor => Command::Cursor(t_s),
     }
 }
 

@@ -19,6 +19,7 @@ pub mod picture;
 pub mod preferences;
 pub mod reimport;
 pub mod ribbon;
+pub mod robustness;
 pub mod shell;
 pub mod shown;
 pub mod theme;

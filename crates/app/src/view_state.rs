@@ -136,6 +136,8 @@ pub enum Dialog {
     Sets(Predicts),
     /// Parameters of the model of a normal response.
     Overlay,
+    /// The measured course among simulated ones.
+    LineUp,
     /// Inputs of the stroke-volume sentence.
     Inputs,
     /// Edit a statement.

@@ -191,12 +191,13 @@ fn expected_rate(stage: &Stage<'_>) -> Option<rate::ExpectedRate> {
     (peak.0 > rest.0 + 200.0 && peak.1 > rest.1 + 10.0).then_some(rate::ExpectedRate { rest, peak })
 }
 
-pub(crate) use expected::deficit_at_peak;
+pub(crate) use expected::{deficit_at_peak, own_rate_at_peak};
 
 mod expected {
-    //! The HR deficit at peak V̇O₂ with its interval.
+    //! The HR deficit at peak V̇O₂ with its interval, and the share of the rate by the own test.
 
-    use super::{At, Interval, Ranged, Stage, expected_rate};
+    use super::rate::{ExpectedRate, OwnRate, own};
+    use super::{At, Interval, Note, Ranged, Stage, expected_rate};
 
     /// Expected less measured HR at peak V̇O₂, /min.
     pub(crate) fn deficit_at_peak(stage: &Stage<'_>) -> Option<Ranged> {
@@ -205,6 +206,15 @@ mod expected {
         let pulse = stage.results.number("o2-pulse-at-peak", At::Peak)?;
         let value = line.at(vo2) - vo2 / pulse;
         Some(Ranged { value, interval: Interval::around(value, 1.645 * line.sd(vo2)) })
+    }
+
+    /// The share of the rate at peak V̇O₂ by the person's own earlier test, or why there is none.
+    pub(crate) fn own_rate_at_peak(stage: &Stage<'_>) -> Result<OwnRate, Note> {
+        let test = stage.facts.test.own_test.ok_or(Note::missing_fact("own_test"))?;
+        let line = ExpectedRate { rest: test.low, peak: test.peak };
+        let number = |id| stage.results.number(id, At::Peak).ok_or(Note::new("no-pulse-at-peak"));
+        let (vo2, pulse) = (number("vo2-peak")?, number("o2-pulse-at-peak")?);
+        own(&line, vo2, vo2 / pulse).ok_or(Note::new("outside-own-test"))
     }
 }
 

@@ -2,7 +2,7 @@
 
 use super::bound::spo2_error;
 use super::detail::{FickDetail, Model, Ranged};
-use super::{deficit_at_peak, spo2_usable};
+use super::{deficit_at_peak, own_rate_at_peak, spo2_usable};
 use crate::quantity::Quantity;
 use crate::results::{At, Interval, Kind, Note, Outcome};
 use crate::stage::Stage;
@@ -13,6 +13,7 @@ pub(crate) fn all(stage: &Stage<'_>, detail: &FickDetail) -> Vec<Outcome> {
     let mut outcomes = vec![forward_bound(stage, detail), arterial(stage, detail)];
     outcomes.extend(changes(stage, detail));
     outcomes.push(rate(stage));
+    outcomes.extend(own_rate(stage));
     outcomes.push(content_share(stage));
     outcomes.push(shunt(stage, detail));
     outcomes
@@ -120,6 +121,21 @@ fn rate(stage: &Stage<'_>) -> Outcome {
                 .unwrap_or_else(|| Note::new("no-predicted-rate-line"));
             Outcome::absent(id, At::Peak, method, reason).in_unit(unit)
         }
+    }
+}
+
+/// Share of the rate and the O₂ pulse at the rate of the own earlier test.
+fn own_rate(stage: &Stage<'_>) -> [Outcome; 2] {
+    let method = "own-earlier-test";
+    let ids = [("fick-rate-share", Unit::Percent), ("fick-pulse-at-own-rate", Unit::MlPerBeat)];
+    match own_rate_at_peak(stage) {
+        Err(reason) => {
+            ids.map(|(id, u)| Outcome::absent(id, At::Peak, method, reason.clone()).in_unit(u))
+        }
+        Ok(own) => [
+            ranged(ids[0].0, At::Peak, method, ids[0].1, own.share),
+            ranged(ids[1].0, At::Peak, method, ids[1].1, own.pulse),
+        ],
     }
 }
 

@@ -24,7 +24,7 @@ impl Variable {
     }
 
     /// Prior of the natural bend, scaled to the rise `r` of this variable over the bins.
-    fn prior(self, r: f64) -> Prior {
+    pub fn prior(self, r: f64) -> Prior {
         let (mean, sd) = match self {
             Variable::Vo2 => ((0.0, -0.12), (0.18, 0.30)),
             Variable::Hr => ((-0.18, -0.04), (0.27, 0.35)),

@@ -10,6 +10,7 @@ mod design;
 mod detail;
 mod fit;
 mod linalg;
+mod line_up;
 mod noise;
 mod outcomes;
 mod score;
@@ -25,6 +26,7 @@ pub use classify::{
     CourseInput, FEWEST_LATE_BREATHS, LATE_S, SHORTEST_RAMP_S, classify, vo2_fell_late,
 };
 pub use detail::{Bin, Course, CourseDetail, CourseNumbers, CurvePoint, Estimate, Line, Onset};
+pub use line_up::{COURSES, LineUp, line_up};
 pub use score::{LINE_LOWER, LINE_UPPER};
 
 /// Margin of "level", %/min.

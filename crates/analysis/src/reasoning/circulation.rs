@@ -1,6 +1,7 @@
 //! Statements on the circulation: course, pattern, explanations, the two factors.
 
 use super::compose::{Draft, words};
+use super::own_rate;
 use super::rules::{self, Match};
 use super::seen::{Seen, low_in};
 use crate::facts::{Diagnosis, Facts};
@@ -20,6 +21,7 @@ pub(crate) fn draft(stage: &Stage<'_>) -> Vec<Statement> {
     statements.extend(two_factors(stage));
     statements.extend(bound(stage));
     statements.extend(rate(stage));
+    statements.extend(own_rate::statement(stage));
     statements.extend(content(stage));
     statements.push(
         Draft::new(

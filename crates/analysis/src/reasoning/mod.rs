@@ -3,6 +3,7 @@
 
 mod circulation;
 mod compose;
+mod own_rate;
 pub mod robustness;
 mod rules;
 mod sections;

@@ -140,7 +140,7 @@ pub(crate) fn vertical(ui: &Ui, cx: &Context<'_>, column: &Column, scale: &Scale
     let held = cx.view.drag.filter(|d| d.kind == handle.kind);
     let ends = [pos2(x, span.top()), pos2(x, bottom)];
     match handle.kind {
-        HandleKind::Mark(_) => {
+        HandleKind::Mark(_) | HandleKind::Point(_) => {
             let stroke = Stroke::new(1.2, t.movable_edge);
             ui.painter().extend(egui::Shape::dashed_line(&ends, stroke, 1.2, 4.0));
         }
@@ -286,7 +286,9 @@ pub(crate) fn areas(
         let y = match handle.kind {
             HandleKind::Cursor => span.top()..=(span.top() + 16.0),
             // A mark is taken at its diamond and along its dotted line.
-            HandleKind::Boundary(_) | HandleKind::Mark(_) => span.top()..=(span.bottom() + 4.0),
+            HandleKind::Boundary(_) | HandleKind::Mark(_) | HandleKind::Point(_) => {
+                span.top()..=(span.bottom() + 4.0)
+            }
         };
         let rect = Rect::from_x_y_ranges((x - left)..=(x + right), y);
         let response = ui.interact(rect, pointer_id(handle.kind, index), Sense::DRAG);

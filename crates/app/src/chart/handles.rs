@@ -10,19 +10,32 @@ pub enum HandleKind {
     Boundary(Phase),
     /// A threshold.
     Mark(Mark),
+    /// An instant of the two-factor table.
+    Point(End),
     /// The time cursor.
     Cursor,
 }
 
+/// Which instant of the two-factor table.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum End {
+    /// The first.
+    First,
+    /// The second.
+    Second,
+}
+
 impl HandleKind {
     /// Every handle there can be.
-    pub const ALL: [HandleKind; 7] = [
+    pub const ALL: [HandleKind; 9] = [
         HandleKind::Boundary(Phase::Rest),
         HandleKind::Boundary(Phase::WarmUp),
         HandleKind::Boundary(Phase::Ramp),
         HandleKind::Boundary(Phase::Recovery),
         HandleKind::Mark(Mark::Vt1),
         HandleKind::Mark(Mark::Vt2),
+        HandleKind::Point(End::First),
+        HandleKind::Point(End::Second),
         HandleKind::Cursor,
     ];
 
@@ -36,6 +49,8 @@ impl HandleKind {
             HandleKind::Boundary(Phase::Recovery) => "Load end",
             HandleKind::Mark(Mark::Vt1) => "VT1",
             HandleKind::Mark(Mark::Vt2) => "VT2",
+            HandleKind::Point(End::First) => "First point",
+            HandleKind::Point(End::Second) => "Second point",
             HandleKind::Cursor => "Time cursor",
         }
     }
@@ -46,6 +61,8 @@ impl HandleKind {
         match self {
             HandleKind::Boundary(phase) => phase.code(),
             HandleKind::Mark(mark) => mark.code(),
+            HandleKind::Point(End::First) => "first-point",
+            HandleKind::Point(End::Second) => "second-point",
             HandleKind::Cursor => "cursor",
         }
     }
@@ -56,6 +73,14 @@ impl HandleKind {
             HandleKind::Boundary(phase) => decisions.phases.set(phase, Some(t_s)),
             HandleKind::Mark(Mark::Vt1) => decisions.vt1_s = Some(t_s),
             HandleKind::Mark(Mark::Vt2) => decisions.vt2_s = Some(t_s),
+            HandleKind::Point(end) => {
+                if let Some((first, second)) = &mut decisions.two_factor_s {
+                    *match end {
+                        End::First => first,
+                        End::Second => second,
+                    } = t_s;
+                }
+            }
             HandleKind::Cursor => {}
         }
     }
@@ -104,6 +129,29 @@ pub fn handles(results: &Results, decisions: &Decisions, whole: (f64, f64)) -> V
         }
     }
     all
+}
+
+/// Least distance of the two points, s: their windows of 30 s must not overlap.
+const POINTS_APART_S: f64 = 30.0;
+
+/// The two instants of the two-factor table, where there is one.
+#[must_use]
+pub fn points(results: &Results, decisions: &Decisions) -> Vec<Handle> {
+    let (Some(table), Some(ramp)) = (&results.fick.table, results.phases.ramp()) else {
+        return Vec::new();
+    };
+    let (first, second) = table.between_s;
+    let proposed = decisions.two_factor_s.is_none();
+    let point = |end, t_s, low: f64, high: f64| Handle {
+        kind: HandleKind::Point(end),
+        t_s,
+        proposed,
+        range_s: (low, high.max(low)),
+    };
+    vec![
+        point(End::First, first, ramp.0 + 15.0, second - POINTS_APART_S),
+        point(End::Second, second, first + POINTS_APART_S, ramp.1 - 15.0),
+    ]
 }
 
 fn proposed_mark(results: &Results, mark: Mark) -> Option<f64> {

@@ -25,6 +25,7 @@ pub fn show(args: &Args) -> Result<Exit, Failure> {
 }
 
 fn content(mut app: App) -> Content {
+    app.robustness.beside = true;
     let build = Box::new(move |ctx: &egui::Context| -> Paint {
         app.setup(ctx);
         Box::new(move |ui| app.ui(ui))

@@ -79,6 +79,10 @@ const FACTS: &[(&str, &str, Ask)] = &[
     ("test.limiting_symptom", "Limiting symptom", Ask::Text),
     ("test.ecg.change", "ECG change", Ask::Choice(YES_NO)),
     ("test.ecg.read_by", "ECG read by", Ask::Text),
+    ("test.own_test.low.vo2_ml_min", "Own earlier test, low: V̇O₂, mL/min", Ask::Number),
+    ("test.own_test.low.hr", "Own earlier test, low: HR, /min", Ask::Number),
+    ("test.own_test.peak.vo2_ml_min", "Own earlier test, peak: V̇O₂, mL/min", Ask::Number),
+    ("test.own_test.peak.hr", "Own earlier test, peak: HR, /min", Ask::Number),
     ("test.spo2_confirmed", "Oximeter trace confirmed", Ask::Choice(YES_NO)),
 ];
 

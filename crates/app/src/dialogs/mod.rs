@@ -6,6 +6,7 @@ pub mod facts;
 pub mod files;
 pub mod inputs;
 pub mod keys;
+pub mod line_up;
 pub mod overlay;
 pub mod sets;
 pub mod sign;
@@ -85,6 +86,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, form: &mut Form, out: &mut Outbox) {
                 Dialog::Exclude(stretch) => exclude::show(ui, cx, form, out, *stretch),
                 Dialog::Sets(quantity) => sets::show(ui, cx, form, out, *quantity),
                 Dialog::Overlay => overlay::show(ui, cx, form, out),
+                Dialog::LineUp => line_up::show(ui, cx, form),
                 Dialog::Inputs => inputs::show(ui, cx, form, out),
                 Dialog::Statement(id) => statement::show(ui, cx, form, out, id),
                 Dialog::Unsaved(next) => files::unsaved(ui, out, next),

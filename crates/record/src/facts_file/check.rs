@@ -2,7 +2,7 @@
 //! fit the event, phases in order.
 
 use super::codes::EventKind;
-use super::types::{Event, FactsFile, Hb};
+use super::types::{Event, FactsFile, Hb, OwnPoint, OwnTest};
 
 /// A broken rule: the path and what is wrong.
 pub(super) type Broken = (String, String);
@@ -39,6 +39,9 @@ pub(super) fn check(file: &FactsFile) -> Result<(), Broken> {
         within("test.borg.breathlessness", borg.breathlessness, low, high)?;
         within("test.borg.legs", borg.legs, low, high)?;
     }
+    if let Some(own) = &file.test.own_test {
+        check_own_test(own)?;
+    }
     for (i, event) in file.events.iter().enumerate() {
         check_event(event).map_err(|(path, what)| (format!("events[{i}].{path}"), what))?;
     }
@@ -71,6 +74,22 @@ fn check_hb(hb: &Hb) -> Result<(), Broken> {
         (Some(_), None) => broken("a haemoglobin needs its unit: g/L, g/dL or mmol/L".into()),
         (None, _) => Ok(()),
     }
+}
+
+/// Plausible instants, the peak above the low one in both.
+fn check_own_test(own: &OwnTest) -> Result<(), Broken> {
+    let get = |p: &Option<OwnPoint>| p.as_ref().map_or((None, None), |p| (p.vo2_ml_min, p.hr));
+    let (low, peak) = (get(&own.low), get(&own.peak));
+    for (path, point) in [("test.own_test.low", low), ("test.own_test.peak", peak)] {
+        within(&format!("{path}.vo2_ml_min"), point.0, 100.0, 8000.0)?;
+        within(&format!("{path}.hr"), point.1, 30.0, 240.0)?;
+    }
+    let (Some(v), Some(h)) = (low.0.zip(peak.0), low.1.zip(peak.1)) else { return Ok(()) };
+    if v.1 < v.0 + 200.0 || h.1 <= h.0 {
+        let what = "peak does not lie above the low instant: V̇O₂ by 200 mL/min and HR";
+        return Err(("test.own_test.peak".into(), what.into()));
+    }
+    Ok(())
 }
 
 /// The numbers an event of `kind` may hold, with their ranges.

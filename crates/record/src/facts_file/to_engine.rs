@@ -4,7 +4,7 @@ use analysis::decisions::PhaseStarts;
 use analysis::facts as engine;
 
 use super::codes::{Device, EventKind};
-use super::types::{Event, FactsFile, Hb, Subject, Test};
+use super::types::{Event, FactsFile, Hb, OwnPoint, OwnTest, Subject, Test};
 
 /// The engine's facts.
 pub(super) fn facts(file: &FactsFile) -> engine::Facts {
@@ -70,8 +70,14 @@ fn test(t: &Test) -> engine::TestFacts {
                 legs: b.legs,
             })
         }),
+        own_test: t.own_test.as_ref().and_then(own_test),
         recovery_mode: t.recovery_mode.map(super::RecoveryMode::to_engine),
     }
+}
+
+fn own_test(own: &OwnTest) -> Option<engine::OwnTest> {
+    let point = |p: &Option<OwnPoint>| p.as_ref().and_then(|p| Some((p.vo2_ml_min?, p.hr?)));
+    Some(engine::OwnTest { low: point(&own.low)?, peak: point(&own.peak)? })
 }
 
 fn event(e: &Event) -> engine::Event {

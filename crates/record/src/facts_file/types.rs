@@ -135,6 +135,8 @@ fields! {
         ecg: Ecg,
         /// Whether the oximeter's pulse followed the ECG, or a reader confirmed its trace.
         spo2_confirmed: bool,
+        /// The person's own earlier or off-drug test.
+        own_test: OwnTest,
         /// Recovery: active, passive (seated) or supine.
         recovery_mode: RecoveryMode,
     }
@@ -149,6 +151,22 @@ fields! {
         last_dose_h: f64,
         /// Whether it is a beta-blocker.
         beta_blocker: bool,
+    }
+
+    /// The person's own earlier or off-drug test: two instants of it.
+    OwnTest {
+        /// At a low load.
+        low: OwnPoint,
+        /// At its peak.
+        peak: OwnPoint,
+    }
+
+    /// An instant of an earlier test.
+    OwnPoint {
+        /// V̇O₂, mL/min.
+        vo2_ml_min: f64,
+        /// HR, /min.
+        hr: f64,
     }
 
     /// Protocol as stated.

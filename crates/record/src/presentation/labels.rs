@@ -41,6 +41,8 @@ const LABELS: &[(&str, &str)] = &[
     ("fick-sv-change", "Stroke volume, change under the assumption"),
     ("fick-extraction-change", "Extraction, change under the assumption"),
     ("fick-hr-deficit", "HR below the line to predicted peak"),
+    ("fick-rate-share", "O₂ pulse due to a lower rate than in the own earlier test"),
+    ("fick-pulse-at-own-rate", "O₂ pulse at the rate of the own earlier test"),
     ("fick-content-share", "O₂ pulse lost to saturation"),
     ("fick-shunt-signature", "Simultaneous end-tidal step"),
     ("predicted-vo2-peak", "Predicted peak V̇O₂"),

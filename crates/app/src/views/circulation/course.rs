@@ -5,7 +5,7 @@ use analysis::quantity::Quantity as Q;
 use egui::{Align, Rect, Stroke, Ui, pos2, vec2};
 
 use crate::chart::column;
-use crate::chart::handles::HandleKind;
+use crate::chart::handles::{End, HandleKind};
 use crate::chart::interact::Geometry;
 use crate::chart::layout::Scale;
 use crate::chart::paint;
@@ -245,9 +245,28 @@ fn handles(
         }
         ribbon::slider(ui, cx, grips, scale, handle);
     }
+    points(ui, cx, frame, scale);
     column::areas(ui, cx, out, &column, scale, 0);
     if let Some((rect, words)) = column::active_label(ui, cx, &column, scale, 0) {
         column::yellow_label(ui, cx, rect.translate(vec2(0.0, 2.0)), &words);
+    }
+}
+
+/// The two instants of the two-factor table: numbered badges on their lines.
+fn points(ui: &mut Ui, cx: &Context<'_>, frame: Rect, scale: &Scale) {
+    let t = cx.tokens;
+    for handle in cx.handles.iter().filter(|h| scale.holds(h.t_s)) {
+        let HandleKind::Point(end) = handle.kind else {
+            continue;
+        };
+        let at = pos2(scale.place(handle.t_s), frame.top() + 30.0);
+        let fill = if handle.proposed { t.plot } else { t.movable };
+        let badge = Rect::from_center_size(at, vec2(16.0, 16.0));
+        let edge = Stroke::new(1.5, t.movable_edge);
+        ui.painter().rect(badge, 8.0, fill, edge, egui::StrokeKind::Inside);
+        let number = if end == End::First { "1" } else { "2" };
+        let ink = if handle.proposed { t.ink } else { t.on_movable };
+        text::paint(ui, at + vec2(0.0, 4.5), Align::Center, &[Run::new(number, size::BODY, ink)]);
     }
 }
 

@@ -27,7 +27,7 @@ pub fn headline(cx: &Context<'_>) -> String {
 /// Draws the box and the lines beside it.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let t = cx.tokens;
-    let wide = if cx.grid.narrow { 352.0 } else { 388.0 };
+    let wide = if cx.grid.narrow { 352.0 } else { 372.0 };
     let frame = Rect::from_min_size(rect.min, vec2(wide, rect.height()));
     let edge = Stroke::new(1.5, t.ink);
     ui.painter().rect(frame, 2.0, t.panel, edge, StrokeKind::Inside);
@@ -58,8 +58,7 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) {
     let at = pos2(frame.right() + 18.0, rect.top());
     match why_withheld(cx) {
         Some(why) => withheld(ui, cx, out, at, rect.right() - at.x, &why),
-        None if !cx.grid.narrow => beside(ui, cx, at),
-        None => {}
+        None => beside(ui, cx, at, rect),
     }
 }
 
@@ -123,14 +122,20 @@ fn withheld(
 }
 
 /// The difference from the own early line and its parts, and what could have been seen.
-fn beside(ui: &mut Ui, cx: &Context<'_>, at: egui::Pos2) {
+fn beside(ui: &mut Ui, cx: &Context<'_>, at: egui::Pos2, rect: Rect) {
+    const SCALE: f32 = 140.0;
+    let right = rect.right() - if cx.grid.narrow { 8.0 } else { 16.0 };
+    super::score::show(ui, cx, pos2(right - SCALE, at.y), SCALE);
+    if cx.grid.narrow {
+        return;
+    }
     let mut y = at.y + 11.0;
     let step = 16.5;
     for (lead, id) in [
-        ("difference from own early line ", "o2-pulse-deficit"),
+        ("against own early line ", "o2-pulse-deficit"),
         ("of which V̇O₂ slowing ", "o2-pulse-deficit-vo2-part"),
         ("of which HR acceleration ", "o2-pulse-deficit-hr-part"),
-        ("this test could have seen a levelling of ", "o2-pulse-detection-limit"),
+        ("shortest levelling it could see ", "o2-pulse-detection-limit"),
     ] {
         number_line(ui, cx, pos2(at.x, y), lead, id, "");
         y += step;

@@ -3,7 +3,9 @@
 mod course;
 mod course_box;
 mod plane;
+mod score;
 mod slopes;
+mod strip;
 mod table;
 
 use egui::{Rect, ScrollArea, Ui, UiBuilder, pos2, vec2};
@@ -23,7 +25,7 @@ struct Places {
 
 impl Places {
     fn of(rect: Rect) -> Self {
-        let split = rect.top() + (rect.height() * 0.53).floor();
+        let split = rect.top() + (rect.height() * 0.51).floor();
         let row = |from: f32, to: f32, top: f32, bottom: f32| {
             let x = |share: f32| rect.left() + (rect.width() * share).floor();
             Rect::from_min_max(pos2(x(from), top), pos2(x(to), bottom))
@@ -40,7 +42,7 @@ impl Places {
 
     /// On a narrow window the course takes the whole width, the table what is left.
     fn narrow(rect: Rect) -> Self {
-        let split = rect.top() + (rect.height() * 0.50).floor();
+        let split = rect.top() + (rect.height() * 0.46).floor();
         let low = split + 6.0;
         let third = (rect.width() / 3.0).floor();
         let part = |i: f32, n: f32| {
@@ -62,6 +64,8 @@ impl Places {
 
 /// Draws the view.
 pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<Geometry> {
+    let (rect, row) = rect.split_top_bottom_at_y(rect.bottom() - strip::HEIGHT - 4.0);
+    let row = Rect::from_min_max(pos2(row.left() + cx.grid.ticks.0, row.top() + 4.0), row.max);
     let places = if cx.grid.narrow { Places::narrow(rect) } else { Places::of(rect) };
     let geometry = course::show(ui, cx, out, places.course);
     slopes::on_hr(ui, cx, places.on_hr);
@@ -74,5 +78,6 @@ pub fn show(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> Vec<
         ui.spacing_mut().item_spacing.y = 0.0;
         table::show(ui, cx, out, places.table.size() - vec2(4.0, 0.0));
     });
+    strip::show(ui, cx, out, row);
     vec![geometry]
 }

@@ -25,7 +25,18 @@ fn parts(ui: &mut Ui, cx: &Context<'_>, out: &mut Outbox, rect: Rect) -> f32 {
     let fick = &cx.results.fick;
     if let Some(table) = &fick.table {
         let (a, b) = table.between_s;
-        let words = format!("   {} to {}, late window", clock(a), clock(b));
+        let start = cx.results.phases.ramp().map_or(0.0, |r| r.0);
+        let which = match (cx.decisions.two_factor_s, cx.provisional) {
+            (None, _) => "late window",
+            (Some(_), true) => "points 1 and 2, provisional",
+            (Some(_), false) => "points 1 and 2",
+        };
+        let (from, to) = (clock(a - start), clock(b - start));
+        let words = if cx.grid.narrow {
+            format!("   {from} to {to}")
+        } else {
+            format!("   ramp {from} to {to}, {which}")
+        };
         head.push(Run::new(words, size::BODY, t.ink2));
     }
     text::line(ui, pos2(rect.left(), rect.top() + 14.0), Align::Min, &head);

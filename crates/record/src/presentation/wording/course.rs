@@ -77,6 +77,7 @@ pub const TEXTS: &[Entry] = &[
     ("bound-cohb", "carboxyhaemoglobin {value}"),
     ("bound-extraction", "extraction up to {value} of arterial content"),
     ("bound-hufner", "{value} mL of O₂ per gram of haemoglobin"),
+    ("outside-own-test", "V̇O₂ at peak lies outside the span of the own earlier test."),
     ("no-pulse-at-peak", "There is no O₂ pulse at peak."),
     (
         "fick-cannot-be",

@@ -29,6 +29,7 @@ pub const TEXTS: &[Entry] = &[
     ("no-published-repeatability", "No repeatability is published for this value."),
     ("word-mass", "Body mass"),
     ("word-hb", "Haemoglobin"),
+    ("word-own_test", "The person's own earlier test"),
     ("word-age", "Age"),
     ("word-fev1", "FEV₁ (or measured MVV)"),
     ("word-lactate", "Lactate"),

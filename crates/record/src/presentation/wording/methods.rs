@@ -83,5 +83,6 @@ pub const TEXTS: &[Entry] = &[
     ("method-hb-and-saturation", "Haemoglobin and saturation"),
     ("method-ln-saturation", "Logarithm of saturation"),
     ("method-rest-to-predicted-peak", "Line from rest to predicted peak"),
+    ("method-own-earlier-test", "The person's own earlier test"),
     ("method-simultaneous-step", "Simultaneous step"),
 ];

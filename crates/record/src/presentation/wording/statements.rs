@@ -181,6 +181,18 @@ pub const TEXTS: &[Entry] = &[
         "rate-deficit-pulse-not-reassuring",
         "HR at peak V̇O₂ was {deficit} below the line from rest to the predicted peak: this O₂ pulse is not reassuring.",
     ),
+    (
+        "rate-share",
+        "Against the own earlier test {share} (ln) of O₂ pulse is due to the lower rate; at the earlier rate it would be {pulse}. How stroke volume and extraction share this is not known.",
+    ),
+    (
+        "rate-hides-low-pulse",
+        "Against the own earlier test {share} (ln) of O₂ pulse is due to the lower rate; at the earlier rate it would be {pulse}, below 80 % of predicted. The low rate may hide (mask) a low O₂ pulse.",
+    ),
+    (
+        "rate-as-in-own-test",
+        "At this V̇O₂ the heart rate is that of the own earlier test within its error; {share} (ln) of O₂ pulse is due to the rate.",
+    ),
     ("content-share", "The fall of saturation alone explains about {share} of O₂ pulse."),
     ("low-perfusion-possible", "Low finger perfusion would also explain a falling SpO₂ reading"),
     ("not-measured", "Not measured: {sign}"),

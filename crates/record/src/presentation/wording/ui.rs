@@ -4,6 +4,40 @@ use super::Entry;
 
 /// Code and template.
 pub const TEXTS: &[Entry] = &[
+    ("line-up-title", "Line-up…"),
+    ("line-up-tooltip", "This course among eleven simulated ones: can the eye find it?"),
+    (
+        "line-up-about",
+        "Twelve courses of the O₂ pulse in 10-s bins. One is this test; eleven are simulated people without disease, with this test's ramp, noise, and early slopes of V̇O₂ and HR, each with a natural bend of its own. Pick the one that looks different. It is a look, not a test for disease.",
+    ),
+    ("line-up-none", "There is no fitted course to show."),
+    ("line-up-ask", "Which one is this test? Press it."),
+    ("line-up-found", "Found: this test is number {own}. By chance one pick in twelve finds it."),
+    (
+        "line-up-missed",
+        "You picked number {picked}; this test is number {own}. The eye alone does not tell it from simulated normal courses.",
+    ),
+    ("line-up-hide", "Hide it again"),
+    ("line-up-course", "Course {number}"),
+    ("line-up-this", "this test"),
+    ("strip-title", "Over {variants} defensible choices:"),
+    ("strip-title-behind", "Over {variants} defensible choices (before the last change):"),
+    (
+        "strip-about",
+        "Start of the increments ± 20 s, load end up to 20 s earlier, averages over 20, 30 and 60 s, thresholds within their intervals; lows also over every predicted set in range. A statement is counted where the same message is drafted.",
+    ),
+    ("strip-none", "Robustness is being derived, or there are no increments."),
+    ("strip-count", "{count} of {of}"),
+    ("strip-course", "course {word}"),
+    ("strip-pulse-low", "O₂ pulse low"),
+    ("strip-vo2-low", "peak V̇O₂ low"),
+    ("strip-circulation-pattern", "same pattern"),
+    ("strip-circulation-explanations", "same explanations"),
+    ("strip-fick-two-factors", "same two-factor sentence"),
+    ("strip-fick-forward-bound", "stroke-volume bound given"),
+    ("strip-rate-deficit", "same HR deficit sentence"),
+    ("strip-rate-own-test", "same rate sentence"),
+    ("strip-content-share", "saturation share given"),
     (
         "caution",
         "Decision support for qualified readers. Not assessed, certified or cleared as a medical device; whether it may be used in patient care is for the local service and its regulator. Not for use during a test. Local protocols and licensed practice prevail.",
