@@ -10,12 +10,14 @@ use super::{Fate, ITEMS, Scored, Tested};
 
 /// Tests of each protocol, with its name.
 type ByProtocol<'a> = [(&'a str, Vec<Tested>)];
+/// Tests of a class of people, by protocol.
+type OfClass<'a> = (Class, Vec<(&'a str, Vec<Tested>)>);
 
 /// The whole report.
 pub(super) fn text(
     seeds: &Range<u64>,
     both: &ByProtocol<'_>,
-    without: &[(Class, Vec<(&str, Vec<Tested>)>)],
+    without: &[OfClass<'_>],
     particular: &[(Class, Vec<Tested>)],
 ) -> String {
     let mut out = String::new();
@@ -173,7 +175,7 @@ fn reason_table(out: &mut String, all: &ByProtocol<'_>) {
 }
 
 /// Proposals where there is no such threshold, by protocol.
-fn false_table(out: &mut String, without: &[(Class, Vec<(&str, Vec<Tested>)>)]) {
+fn false_table(out: &mut String, without: &[OfClass<'_>]) {
     let names: Vec<&str> =
         without.first().map_or(&[][..], |w| &w.1).iter().map(|(name, _)| *name).collect();
     let _ = writeln!(

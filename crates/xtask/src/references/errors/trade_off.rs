@@ -7,6 +7,9 @@ use analysis::model::course_sim::{Break, Design, Null};
 
 use super::{Count, Read, cell, part};
 
+/// A score of a read test.
+type Score = fn(&Read) -> f64;
+
 /// Normals of each null (T 8–12) and four abnormal cells (b, T 10).
 struct Cells {
     normals: Vec<Vec<Read>>,
@@ -87,8 +90,7 @@ fn gain(out: &mut String, cells: &Cells) {
          | b above the line, % | score | mid, % | lin, % | level 3 / 4 min | r 0.45, 3 / 4 min |\n\
          |---|---|---|---|---|---|"
     );
-    let scores: [(&str, fn(&Read) -> f64); 2] =
-        [("without", |r| r.plain_score), ("with", |r| r.score)];
+    let scores: [(&str, Score); 2] = [("without", |r| r.plain_score), ("with", |r| r.score)];
     for share in [0.025, 0.05, 0.08, 0.11, 0.15] {
         for (name, score) in scores {
             let line = line_at(&cells.normals[0], share, score);
