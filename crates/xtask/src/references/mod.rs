@@ -66,7 +66,7 @@ pub fn run(args: &[String]) -> ExitCode {
 fn parse(args: &[String]) -> Option<(&str, Range<u64>)> {
     match args {
         [what] if what == "coverage" => Some((what, 20_000..24_000)),
-        [what] => Some((what, 10_000..12_000)),
+        [what] => Some((what, 20_000..22_000)),
         [what, flag, seeds] if flag == "--seeds" => {
             let (a, b) = seeds.split_once("..")?;
             let range = a.parse().ok()?..b.parse().ok()?;
@@ -83,7 +83,7 @@ mod tests {
     #[test]
     fn seeds_are_parsed_and_refused() {
         let args = |s: &str| s.split(' ').map(String::from).collect::<Vec<_>>();
-        assert_eq!(parse(&args("errors")), Some(("errors", 20_000..24_000)));
+        assert_eq!(parse(&args("errors")), Some(("errors", 20_000..22_000)));
         assert_eq!(parse(&args("coverage")), Some(("coverage", 20_000..24_000)));
         assert_eq!(parse(&args("errors --seeds 5..9")), Some(("errors", 5..9)));
         assert_eq!(parse(&args("errors --seeds 9..5")), None);

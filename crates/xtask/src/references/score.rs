@@ -206,7 +206,7 @@ mod tests {
     /// found, and the phases of the truth are used.
     #[test]
     fn a_table_with_its_truth_is_scored() {
-        let tests = files(&demo("avocet")).unwrap();
+        let tests = files(&demo("kittiwake")).unwrap();
         let lines = score(&tests[0]).unwrap();
         let peak = lines.iter().find(|l| l.id == "vo2-peak").unwrap();
         assert!(peak.error_pct().unwrap().abs() < 6.0, "{peak:?}");
