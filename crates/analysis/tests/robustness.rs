@@ -1,6 +1,6 @@
 //! No input makes the engine panic: what cannot be derived is a reason.
 
-use analysis::breaths::{Breaths, Column};
+use analysis::breaths::{Breaths, BreathsError, Column};
 use analysis::decisions::{Decisions, Exclusion, PhaseStarts};
 use analysis::derive;
 use analysis::facts::Facts;
@@ -48,6 +48,15 @@ fn nothing_one_breath_and_constant_columns() {
         let empty = Recording { breaths: table(n, |_, _| None), ..loaded };
         let results = run(&empty, &Decisions::default());
         assert!(results.number("vo2-peak", analysis::results::At::Peak).is_none());
+    }
+}
+
+/// Time that goes back, stands still or is no number never becomes a table.
+#[test]
+fn time_only_rises() {
+    for bad in [3.0, 6.0, f64::NAN, f64::INFINITY] {
+        let formed = Breaths::new(vec![3.0, 6.0, bad, 12.0], None, Default::default());
+        assert_eq!(formed.err(), Some(BreathsError::Time(2)), "{bad}");
     }
 }
 
