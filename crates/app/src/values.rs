@@ -2,6 +2,7 @@
 
 use analysis::quantity::Quantity;
 use analysis::unit::Unit;
+use record::presentation::values::fixed;
 
 use crate::context::Context;
 
@@ -49,10 +50,7 @@ pub fn raw_at(cx: &Context<'_>, quantity: Quantity, t_s: f64) -> Option<f64> {
 pub fn at(cx: &Context<'_>, quantity: Quantity, t_s: f64) -> (String, String) {
     let (unit, decimals) = shown_unit(quantity);
     match raw_at(cx, quantity, t_s) {
-        Some(value) => {
-            let text = format!("{:.decimals$}", in_shown(quantity, value)).replace('-', "−");
-            (text, unit.shown().to_owned())
-        }
+        Some(value) => (fixed(in_shown(quantity, value), decimals), unit.shown().to_owned()),
         None => ("–".into(), String::new()),
     }
 }

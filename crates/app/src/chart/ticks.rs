@@ -1,5 +1,7 @@
 //! Sensible ticks: time at 0.5, 1, 2, 3, 5 or 10 min, values at 1, 2 or 5 times a power of ten.
 
+use record::presentation::values::fixed;
+
 /// Steps of the time axis, s.
 const TIME_STEPS_S: [f64; 10] = [5.0, 10.0, 30.0, 60.0, 120.0, 180.0, 300.0, 600.0, 1200.0, 1800.0];
 
@@ -57,7 +59,7 @@ impl Axis {
     pub fn label(&self, value: f64) -> String {
         let decimals = decimals(self.step);
         let value = if value.abs() < 0.5 * self.step * 1e-6 { 0.0 } else { value };
-        format!("{value:.decimals$}").replace('-', "−")
+        fixed(value, decimals)
     }
 }
 

@@ -3,6 +3,7 @@
 use analysis::o2_pulse::Line;
 use analysis::quantity::Quantity as Q;
 use egui::{Align, Rect, Ui, pos2, vec2};
+use record::presentation::values::fixed;
 
 use crate::chart::paint;
 use crate::chart::spec::{CARRIED, Chart, Dash, Item, Mark, Point, Title};
@@ -152,13 +153,12 @@ fn slopes_table(ui: &mut Ui, cx: &Context<'_>, frame: Rect) {
         return;
     };
     let late = cx.results.course.as_ref().and_then(|c| c.late).map(|l| l.slope());
-    let number = |v: f64, d: usize| format!("{v:.d$}").replace('-', "−");
     let short = frame.width() < 320.0;
     let first = if short { "slope ÷ pulse" } else { "local slope ÷ O₂ pulse (1 = level)" };
     let rows = [
-        (first, number(n.rho_early, 2), number(n.rho_late, 2)),
-        ("slope, mL/beat", number(n.asymptote.value, 1), late.map_or("–".into(), |s| number(s, 1))),
-        ("late ÷ early slope", String::new(), number(n.slope_ratio.value, 2)),
+        (first, fixed(n.rho_early, 2), fixed(n.rho_late, 2)),
+        ("slope, mL/beat", fixed(n.asymptote.value, 1), late.map_or("–".into(), |s| fixed(s, 1))),
+        ("late ÷ early slope", String::new(), fixed(n.slope_ratio.value, 2)),
     ];
     let wide = 300.0_f32.min(frame.width() - 8.0);
     let right = frame.right() - 8.0;
@@ -263,7 +263,7 @@ fn rates(ui: &mut Ui, cx: &Context<'_>, frame: Rect, q: Q) {
             continue;
         };
         text::plain(ui, pos2(x, y), Align::Min, name, size::BODY, t.ink2);
-        let value = format!("{value:.1}").replace('-', "−");
+        let value = fixed(value, 1);
         text::plain(ui, pos2(x, y + 18.0), Align::Min, value, size::SECTION, t.ink);
         y += 40.0;
     }

@@ -2,6 +2,7 @@
 
 use analysis::fick::{FactorRow, Model, Ranged};
 use egui::{Align, Rect, Sense, Stroke, StrokeKind, Ui, Vec2, pos2, vec2};
+use record::presentation::values::fixed;
 
 use crate::chart::ticks::clock;
 use crate::command::{Command, Outbox};
@@ -112,7 +113,7 @@ fn percent(value: f64) -> String {
 }
 
 fn range(r: &Ranged) -> String {
-    format!("[{:.0}, {:.0}]", r.interval.low, r.interval.high).replace('-', "−")
+    format!("[{}, {}]", fixed(r.interval.low, 0), fixed(r.interval.high, 0))
 }
 
 fn words(model: Model) -> [&'static str; 2] {
