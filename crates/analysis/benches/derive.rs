@@ -8,7 +8,7 @@ use analysis::facts::{Facts, Mode, Rhythm};
 use analysis::model::course_sim::{Design, Null, simulate};
 use analysis::model::plan::Plan;
 use analysis::model::test::generate;
-use analysis::o2_pulse::{CourseInput, classify};
+use analysis::o2_pulse::classify;
 use analysis::quantity::Quantity;
 use analysis::reasoning::robustness::robustness;
 use analysis::recording::{Recording, Trace};
@@ -90,14 +90,7 @@ fn whole_test(c: &mut Criterion) {
 /// The course alone, and the strip of 27 derivations.
 fn circulation(c: &mut Criterion) {
     let ramp = simulate(&Design::normal(Null::Matched, 12.0), 1);
-    let input = CourseInput {
-        t_s: &ramp.t_s,
-        vo2: &ramp.vo2,
-        hr: &ramp.hr,
-        load: &ramp.load,
-        ramp_start_s: ramp.ramp_start_s,
-        load_end_s: ramp.load_end_s,
-    };
+    let input = ramp.input();
     let mut group = c.benchmark_group("circulation");
     group.bench_function("course of a 12-min ramp", |b| b.iter(|| classify(black_box(&input))));
     let (recording, _) = generate(&Plan::healthy(1));

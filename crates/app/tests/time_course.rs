@@ -1,5 +1,7 @@
 //! The time course as a reader uses it, found by role and label.
 
+#[path = "support/drag.rs"]
+mod drag;
 mod support;
 #[path = "support/window.rs"]
 mod window_harness;
@@ -25,12 +27,7 @@ fn a_dragged_boundary_changes_the_phases_in_the_same_step_and_is_one_undo_step()
     let grip = h.get_by_label("Ramp start").rect().center();
     // Anywhere on the line takes it, not only the grip: here in the frame of HR.
     let at = grip - vec2(0.0, 300.0);
-    h.hover_at(at);
-    h.run();
-    h.drag_at(at);
-    h.step();
-    h.hover_at(at + vec2(30.0, 0.0));
-    h.step();
+    drag::hold(&mut h, at, vec2(30.0, 0.0));
     let moved = ramp_start(&h);
     assert!(moved > before + 20.0, "{before} -> {moved}");
     assert_eq!(h.state().document.revision(), committed, "nothing is committed while it moves");
@@ -54,12 +51,7 @@ fn escape_cancels_a_drag() {
     let mut h = window([1280.0, 800.0]);
     let before = ramp_start(&h);
     let at = h.get_by_label("Ramp start").rect().center();
-    h.hover_at(at);
-    h.run();
-    h.drag_at(at);
-    h.step();
-    h.hover_at(at + vec2(40.0, 0.0));
-    h.step();
+    drag::hold(&mut h, at, vec2(40.0, 0.0));
     assert_ne!(ramp_start(&h), before);
     h.key_press(Key::Escape);
     h.step();
@@ -116,13 +108,7 @@ fn a_click_sets_the_cursor_and_a_drag_in_x_zooms_until_a_double_click() {
     h.drop_at(at);
     h.run();
     assert!(h.state().view.cursor_s.is_some());
-    h.hover_at(at);
-    h.drag_at(at);
-    h.step();
-    h.hover_at(at + vec2(60.0, 0.0));
-    h.step();
-    h.drop_at(at + vec2(60.0, 0.0));
-    h.run();
+    drag::whole(&mut h, at, vec2(60.0, 0.0));
     let zoom = h.state().view.zoom_s.expect("zoomed");
     assert!(zoom.1 - zoom.0 > 60.0 && zoom.1 - zoom.0 < 240.0, "{zoom:?}");
     h.key_press(Key::Num0);

@@ -1,5 +1,7 @@
 //! What else a hand does to the window: the wheel, a file dropped on it, a mark, a long record.
 
+#[path = "support/drag.rs"]
+mod drag;
 mod support;
 #[path = "support/window.rs"]
 mod window_harness;
@@ -77,14 +79,7 @@ fn a_mark_is_dragged_like_a_boundary() {
     let decided = |h: &Harness<'_, App>| h.state().document.decisions().vt1_s;
     assert_eq!(decided(&h), None);
     let slider = h.get_by_role_and_label(egui::accesskit::Role::Slider, "VT1").rect().center();
-    h.hover_at(slider);
-    h.run();
-    h.drag_at(slider);
-    h.step();
-    h.hover_at(slider + vec2(40.0, 0.0));
-    h.step();
-    h.drop_at(slider + vec2(40.0, 0.0));
-    h.run();
+    drag::whole(&mut h, slider, vec2(40.0, 0.0));
     assert!(decided(&h).is_some(), "the mark is the reader's now");
 }
 
@@ -109,12 +104,7 @@ fn a_record_longer_than_any_test_is_derived_beside_the_drag() {
     let mut h = window_harness::open(long, [1920.0, 1080.0]);
     let shown = |h: &Harness<'_, App>| h.state().derived.shown().phases.ramp().expect("a ramp").0;
     let (was, at) = (shown(&h), h.get_by_label("Ramp start").rect().center());
-    h.hover_at(at);
-    h.run();
-    h.drag_at(at);
-    h.step();
-    h.hover_at(at + vec2(30.0, 0.0));
-    h.step();
+    drag::hold(&mut h, at, vec2(30.0, 0.0));
     let wanted = h.state().view.drag.expect("a drag").t_s;
     assert!(wanted > was + 20.0, "the handle itself follows at once");
     let start = std::time::Instant::now();

@@ -7,6 +7,7 @@
 //! way a break comes about are assumed.
 
 use super::rng::{Drift, Rng};
+use crate::o2_pulse::CourseInput;
 use crate::recording::Trace;
 
 /// How the V̇O₂–HR relation of people without disease bends.
@@ -108,6 +109,21 @@ pub struct Simulated {
     pub late_slope: f64,
     /// The factor put in (1 = none).
     pub ratio: f64,
+}
+
+impl Simulated {
+    /// What the reading of the course takes of it.
+    #[must_use]
+    pub fn input(&self) -> CourseInput<'_> {
+        CourseInput {
+            t_s: &self.t_s,
+            vo2: &self.vo2,
+            hr: &self.hr,
+            load: &self.load,
+            ramp_start_s: self.ramp_start_s,
+            load_end_s: self.load_end_s,
+        }
+    }
 }
 
 const WARM_UP_S: f64 = 180.0;

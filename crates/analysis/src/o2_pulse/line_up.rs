@@ -114,19 +114,11 @@ pub fn line_up(detail: &CourseDetail) -> Option<LineUp> {
 mod tests {
     use super::*;
     use crate::model::course_sim::{Break, Design, Null, simulate};
-    use crate::o2_pulse::{CourseInput, classify};
+    use crate::o2_pulse::classify;
 
     fn detail(broken: Break, seed: u64) -> CourseDetail {
         let s = simulate(&Design { broken, ..Design::normal(Null::Matched, 10.0) }, seed);
-        classify(&CourseInput {
-            t_s: &s.t_s,
-            vo2: &s.vo2,
-            hr: &s.hr,
-            load: &s.load,
-            ramp_start_s: s.ramp_start_s,
-            load_end_s: s.load_end_s,
-        })
-        .unwrap()
+        classify(&s.input()).unwrap()
     }
 
     #[test]

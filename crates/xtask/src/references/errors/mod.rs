@@ -10,7 +10,7 @@ use std::fmt::Write as _;
 use std::ops::Range;
 
 use analysis::model::course_sim::{Design, simulate};
-use analysis::o2_pulse::{Course, CourseInput, CourseNumbers, classify};
+use analysis::o2_pulse::{Course, CourseNumbers, classify};
 use analysis::results::Interval;
 
 use super::binomial::Count;
@@ -33,15 +33,7 @@ struct Read {
 
 fn read(design: &Design, seed: u64) -> Option<Read> {
     let s = simulate(design, seed);
-    let detail = classify(&CourseInput {
-        t_s: &s.t_s,
-        vo2: &s.vo2,
-        hr: &s.hr,
-        load: &s.load,
-        ramp_start_s: s.ramp_start_s,
-        load_end_s: s.load_end_s,
-    })
-    .ok()?;
+    let detail = classify(&s.input()).ok()?;
     let n = detail.numbers?;
     Some(Read {
         course: detail.course,
