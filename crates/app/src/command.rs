@@ -1,6 +1,7 @@
 //! What the reader can do. A command owns its label, tooltip, shortcut and availability; buttons,
 //! the list of keys and help are made from it.
 
+use analysis::predicted::sets::Predicts;
 use egui::{Key, KeyboardShortcut, Modifiers};
 
 use crate::context::Context;
@@ -81,6 +82,7 @@ impl Command {
             Command::Undo,
             Command::Redo,
             Command::Show(Dialog::Facts),
+            Command::Show(Dialog::Sets(Predicts::Vo2Peak)),
             Command::Show(Dialog::Event),
             Command::Show(Dialog::Exclude(None)),
             Command::ToggleOverlay,
@@ -191,6 +193,7 @@ impl Command {
             Command::Show(Dialog::Export) => command(Key::E),
             Command::Show(Dialog::Sign) => command(Key::I),
             Command::Show(Dialog::Facts) => plain(Key::P),
+            Command::Show(Dialog::Sets(Predicts::Vo2Peak)) => plain(Key::N),
             Command::Show(Dialog::Event) => plain(Key::E),
             Command::Show(Dialog::Exclude(None)) => plain(Key::X),
             Command::Show(Dialog::Keys) => plain(Key::Questionmark),

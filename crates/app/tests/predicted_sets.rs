@@ -20,3 +20,12 @@ fn the_chooser_tells_the_fit_and_unlocking_is_an_edit_that_can_be_undone() {
     assert!(h.state().document.settings().predicted.unconfirmed);
     assert!(h.state().document.can_undo().is_some());
 }
+
+/// The spread between the sets is one key away.
+#[test]
+fn one_key_opens_the_sets_with_what_they_give() {
+    let mut h = window_harness::open(App::on_demo(), [1280.0, 800.0]);
+    h.key_press(egui::Key::N);
+    h.run();
+    assert!(h.query_all_by(|n| n.value().is_some_and(|l| l.starts_with("● In range"))).count() > 0);
+}
